@@ -1,0 +1,2 @@
+//! Throughput of the lifetime engine.
+fn main() {}

@@ -1,0 +1,1 @@
+//! The `authority` room of the pipeline.

@@ -1,0 +1,1 @@
+//! The `config` room of the pipeline.

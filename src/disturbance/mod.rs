@@ -1,0 +1,1 @@
+//! The `disturbance` room of the pipeline.

@@ -1,0 +1,1 @@
+//! The `environment` room of the pipeline.

@@ -1,0 +1,1 @@
+//! The `lifetime` room of the pipeline.

@@ -1,0 +1,2 @@
+//! The `couplet` command.
+fn main() {}

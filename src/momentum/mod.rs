@@ -1,0 +1,1 @@
+//! The `momentum` room of the pipeline.

@@ -1,0 +1,1 @@
+//! The `montecarlo` room of the pipeline.

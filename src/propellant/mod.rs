@@ -1,0 +1,1 @@
+//! The `propellant` room of the pipeline.

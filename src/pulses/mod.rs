@@ -1,0 +1,1 @@
+//! The `pulses` room of the pipeline.

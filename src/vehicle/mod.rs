@@ -1,0 +1,1 @@
+//! The `vehicle` room of the pipeline.
