@@ -1,0 +1,161 @@
+//! What the user writes about the spacecraft: the keys, with their meaning, unit and default.
+//!
+//! The doc comments become the JSON Schema and the reference in docs/config.md.
+
+use schemars::JsonSchema;
+use serde::Deserialize;
+
+use super::leaf::{Quantity, SpreadQuantity, SpreadTriple, Triple};
+use crate::units::kind;
+
+/// Mass properties and the disturbances that the spacecraft itself makes.
+#[derive(Debug, Clone, Deserialize, JsonSchema)]
+#[serde(deny_unknown_fields)]
+pub struct Spacecraft {
+    /// Name that the reports carry.
+    pub name: String,
+    /// Mass without propellant, such as `446 ± 9 kg`.
+    pub dry_mass: SpreadQuantity<kind::Mass>,
+    /// Centre of mass without propellant, in the body frame, such as `0.01 0 0.74 m`.
+    pub centre_of_mass: SpreadTriple<kind::Length>,
+    /// Moments of inertia Ixx, Iyy, Izz without propellant about that centre of mass, such as `92 118 85 kg m2`.
+    pub inertia: SpreadTriple<kind::Inertia>,
+    /// Elements Ixy, Ixz, Iyz of the inertia matrix (with their sign in the matrix), such as `1.5 -0.8 2 kg m2`. Default: zero.
+    pub products_of_inertia: Option<SpreadTriple<kind::Inertia>>,
+    /// Residual magnetic dipole in the body frame, such as `0.6 0.3 0.4 ± 0.2 A m2`. Default: zero.
+    pub residual_dipole: Option<SpreadTriple<kind::Dipole>>,
+    /// Constant torque of the spacecraft on itself in the body frame (heat rejection, antenna recoil, outgassing), such as `2 0 -1 uN m`. Default: zero.
+    pub body_torque: Option<SpreadTriple<kind::Torque>>,
+}
+
+/// One flat facet of the outside of the spacecraft.
+#[derive(Debug, Clone, Deserialize, JsonSchema)]
+#[serde(deny_unknown_fields)]
+pub struct Surface {
+    /// Name of the facet.
+    pub name: String,
+    /// Area, such as `3.2 m2`.
+    pub area: Quantity<kind::Area>,
+    /// Centre of pressure in the body frame, such as `0.9 0 0.7 m`.
+    pub centre: Triple<kind::Length>,
+    /// Outward normal in the body frame, any length but zero, such as `1 0 0`.
+    pub normal: Triple<kind::Number>,
+    /// Share of light reflected like a mirror, 0 to 1, such as `0.1 ± 0.03`.
+    pub specular: SpreadQuantity<kind::Number>,
+    /// Share of light reflected diffusely, 0 to 1, such as `0.2 ± 0.05`.
+    pub diffuse: SpreadQuantity<kind::Number>,
+    /// Drag coefficient of this facet. Default: `environment.drag_coefficient`.
+    pub drag_coefficient: Option<SpreadQuantity<kind::Number>>,
+    /// Whether the back of the facet sees Sun and air as well, such as a solar array. Default: false.
+    #[serde(default)]
+    pub both_sides: bool,
+    /// Body axis about which the facet turns so that its normal follows the Sun, such as `0 1 0`. Default: fixed.
+    pub follows_sun_about: Option<Triple<kind::Number>>,
+}
+
+/// What all thrusters share, unless one says otherwise.
+#[derive(Debug, Clone, Deserialize, JsonSchema)]
+#[serde(deny_unknown_fields)]
+pub struct Propulsion {
+    /// Thrust of one thruster, such as `1 N ± 3 %`.
+    pub thrust: Option<SpreadQuantity<kind::Force>>,
+    /// Specific impulse in steady firing, such as `215 s ± 2 %`; or give `exhaust_speed`.
+    pub isp: Option<SpreadQuantity<kind::Time>>,
+    /// Exhaust speed in steady firing, such as `2108 m/s`; or give `isp`.
+    pub exhaust_speed: Option<SpreadQuantity<kind::Speed>>,
+    /// Shortest on-time of a pulse, such as `20 ms`.
+    pub shortest_pulse: Quantity<kind::Time>,
+    /// Longest on-time of a pulse, such as `500 ms`.
+    pub longest_pulse: Quantity<kind::Time>,
+    /// How much of the steady exhaust speed a pulse reaches, by on-time. Between the entries a straight line; beyond them the last value. Default: all of it.
+    #[serde(default)]
+    pub pulse_performance: Vec<PulsePerformance>,
+    /// Largest share of the time a thruster may be on during an unload, such as `10 %`. Default: `10 %`.
+    pub duty_cycle: Option<Quantity<kind::Number>>,
+    /// Whether an unload may leave a net force: `zero` fires couples only, `any` takes the least propellant. Default: `zero`.
+    #[serde(default)]
+    pub net_force: NetForceChoice,
+    /// Pulses that one thruster is qualified for. Default: not stated, not checked.
+    pub qualified_pulses: Option<Quantity<kind::Number>>,
+}
+
+/// Whether an unload may push the spacecraft.
+#[derive(Debug, Clone, Copy, Default, PartialEq, Eq, Deserialize, JsonSchema)]
+#[serde(rename_all = "snake_case")]
+pub enum NetForceChoice {
+    /// Couples only: the forces add up to nothing.
+    #[default]
+    Zero,
+    /// Whatever takes the least propellant.
+    Any,
+}
+
+/// One point of the pulse performance: at this on-time, this share of the steady exhaust speed.
+#[derive(Debug, Clone, Deserialize, JsonSchema)]
+#[serde(deny_unknown_fields)]
+pub struct PulsePerformance {
+    /// On-time, such as `20 ms`.
+    pub on_time: Quantity<kind::Time>,
+    /// Share of the steady exhaust speed, such as `72 %`.
+    pub share: Quantity<kind::Number>,
+}
+
+/// One thruster.
+#[derive(Debug, Clone, Deserialize, JsonSchema)]
+#[serde(deny_unknown_fields)]
+pub struct Thruster {
+    /// Name, such as `A1`.
+    pub name: String,
+    /// String: the group of thrusters behind one latch valve, such as `A`. Default: a string of its own.
+    pub string: Option<String>,
+    /// Position of the nozzle in the body frame, such as `0.9 0.6 0.1 m`.
+    pub position: Triple<kind::Length>,
+    /// Direction in which it pushes the spacecraft, any length but zero, such as `0 0 1`; or give `plume`.
+    pub push: Option<Triple<kind::Number>>,
+    /// Direction in which the plume leaves, opposite to the push; or give `push`.
+    pub plume: Option<Triple<kind::Number>>,
+    /// Thrust of this one. Default: `propulsion.thrust`.
+    pub thrust: Option<SpreadQuantity<kind::Force>>,
+    /// Specific impulse of this one. Default: that of `propulsion`.
+    pub isp: Option<SpreadQuantity<kind::Time>>,
+    /// Exhaust speed of this one. Default: that of `propulsion`.
+    pub exhaust_speed: Option<SpreadQuantity<kind::Speed>>,
+}
+
+/// The propellant tank; its feed pressure is taken as constant.
+#[derive(Debug, Clone, Deserialize, JsonSchema)]
+#[serde(deny_unknown_fields)]
+pub struct Tank {
+    /// Propellant loaded, such as `34 kg`.
+    pub loaded: Quantity<kind::Mass>,
+    /// Centre of the tank in the body frame, such as `0 0 0.5 m`.
+    pub position: Triple<kind::Length>,
+    /// Propellant that cannot be used, as a share of what is loaded, such as `2 %`. Default: none.
+    pub residual: Option<SpreadQuantity<kind::Number>>,
+    /// Propellant lost through valves, such as `15 g/yr`. Default: none.
+    pub leakage: Option<SpreadQuantity<kind::MassRate>>,
+}
+
+/// The wheel array.
+#[derive(Debug, Clone, Deserialize, JsonSchema)]
+#[serde(deny_unknown_fields)]
+pub struct Wheels {
+    /// Momentum that one wheel can hold either way, such as `12 N m s`.
+    pub capacity: Quantity<kind::Momentum>,
+    /// Torque that one wheel can make either way, such as `0.1 N m`.
+    pub torque: Quantity<kind::Torque>,
+    /// Momentum that must stay free for slews and bias, such as `2 N m s`. Default: none.
+    pub reserve: Option<Quantity<kind::Momentum>>,
+    /// The wheels.
+    pub axes: Vec<Wheel>,
+}
+
+/// One wheel.
+#[derive(Debug, Clone, Deserialize, JsonSchema)]
+#[serde(deny_unknown_fields)]
+pub struct Wheel {
+    /// Name, such as `W1`.
+    pub name: String,
+    /// Spin axis in the body frame, any length but zero, such as `1 1 1`.
+    pub axis: Triple<kind::Number>,
+}
