@@ -9,6 +9,9 @@
 mod decode;
 mod diagnostic;
 mod document;
+mod leaf;
+mod long_form;
+mod mission;
 mod nearest;
 mod node;
 mod overlay;
@@ -17,14 +20,23 @@ mod render;
 mod schema;
 mod setting;
 mod source;
+mod spacecraft;
 mod spans;
+mod spec;
 mod walk;
 
 pub use decode::decode;
 pub use diagnostic::{Diagnostic, Mark, Related, Severity, Site};
 pub use document::Document;
+pub use leaf::{Quantity, SpreadQuantity, SpreadTriple, Triple};
+pub use mission::{
+    ActivityLevel, Attitude, Budget, Environment, Event, Figure, Mission, Orbit, Phase, RateDamping, Requirement, ResolutionChoice, Slews,
+    SolarActivity, Unload,
+};
 pub use nearest::{did_you_mean, known, nearest};
 pub use path::{Path, Segment};
 pub use render::{render_all, sort, to_json};
 pub use source::{Place, Source};
+pub use spacecraft::{Material, NetForceChoice, Propulsion, PulsePerformance, Spacecraft, Surface, Tank, Thruster, Wheel, Wheels};
+pub use spec::{Spec, read, schema};
 pub use walk::{Leaf, check_structure};

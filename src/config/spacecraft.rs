@@ -28,6 +28,20 @@ pub struct Spacecraft {
     pub body_torque: Option<SpreadTriple<kind::Torque>>,
 }
 
+/// How a kind of surface meets light and air.
+#[derive(Debug, Clone, Deserialize, JsonSchema)]
+#[serde(deny_unknown_fields)]
+pub struct Material {
+    /// Name, such as `solar cell`.
+    pub name: String,
+    /// Share of light reflected like a mirror, 0 to 1, such as `0.1 ± 0.01`.
+    pub specular: SpreadQuantity<kind::Number>,
+    /// Share of light reflected diffusely, 0 to 1, such as `0.2 ± 0.02`.
+    pub diffuse: SpreadQuantity<kind::Number>,
+    /// Drag coefficient. Default: `environment.drag_coefficient`.
+    pub drag_coefficient: Option<SpreadQuantity<kind::Number>>,
+}
+
 /// One flat facet of the outside of the spacecraft.
 #[derive(Debug, Clone, Deserialize, JsonSchema)]
 #[serde(deny_unknown_fields)]
@@ -40,12 +54,8 @@ pub struct Surface {
     pub centre: Triple<kind::Length>,
     /// Outward normal in the body frame, any length but zero, such as `1 0 0`.
     pub normal: Triple<kind::Number>,
-    /// Share of light reflected like a mirror, 0 to 1, such as `0.1 ± 0.03`.
-    pub specular: SpreadQuantity<kind::Number>,
-    /// Share of light reflected diffusely, 0 to 1, such as `0.2 ± 0.05`.
-    pub diffuse: SpreadQuantity<kind::Number>,
-    /// Drag coefficient of this facet. Default: `environment.drag_coefficient`.
-    pub drag_coefficient: Option<SpreadQuantity<kind::Number>>,
+    /// Name of its material, one of `materials`.
+    pub material: String,
     /// Whether the back of the facet sees Sun and air as well, such as a solar array. Default: false.
     #[serde(default)]
     pub both_sides: bool,

@@ -1,0 +1,72 @@
+//! The whole configuration, and reading it: structure first, then values.
+
+use schemars::JsonSchema;
+use serde::Deserialize;
+use serde_yaml::Value;
+
+use super::leaf::{self, Form};
+use super::{
+    Budget, Diagnostic, Document, Environment, Material, Mission, Path, Propulsion, Requirement, Spacecraft, Surface, Tank, Thruster,
+    Wheels, check_structure, decode,
+};
+
+/// A spacecraft, its mission and what is asked of it.
+#[derive(Debug, Clone, Deserialize, JsonSchema)]
+#[serde(deny_unknown_fields)]
+pub struct Spec {
+    /// Mass properties and the disturbances that the spacecraft itself makes.
+    pub spacecraft: Spacecraft,
+    /// Kinds of surface, which `surfaces` names.
+    #[serde(default)]
+    pub materials: Vec<Material>,
+    /// Flat facets of the outside; light and air meet them.
+    #[serde(default)]
+    pub surfaces: Vec<Surface>,
+    /// What all thrusters share.
+    pub propulsion: Propulsion,
+    /// The thrusters.
+    pub thrusters: Vec<Thruster>,
+    /// The propellant tank.
+    pub tank: Tank,
+    /// The wheel array. Default: no wheels.
+    pub wheels: Option<Wheels>,
+    /// When and where the spacecraft flies, and what it does.
+    pub mission: Mission,
+    /// Surroundings, and how well they are known.
+    pub environment: Environment,
+    /// How the budget is made.
+    #[serde(default)]
+    pub budget: Budget,
+    /// What must hold; the exit status is 1 if something does not.
+    #[serde(default)]
+    pub requirements: Vec<Requirement>,
+}
+
+/// JSON Schema (draft 2020-12) of the configuration, made from the types above.
+#[must_use]
+pub fn schema() -> serde_json::Value {
+    schemars::schema_for!(Spec).to_value()
+}
+
+/// Reads the values of a document.
+///
+/// # Errors
+/// Every unknown or missing key, wrong kind of value, and quantity that cannot be read.
+pub fn read(document: &Document) -> Result<Spec, Vec<Diagnostic>> {
+    let faults = check_structure(document, &schema(), &check_leaf);
+    if faults.is_empty() { decode(document) } else { Err(faults) }
+}
+
+fn check_leaf(schema: &serde_json::Value, value: &Value, path: &Path) -> Vec<Diagnostic> {
+    let word = |key: &str| schema.get(key).and_then(serde_json::Value::as_str).unwrap_or_default();
+    let (Some(words), Some(form)) = (leaf::kind_named(word("x-quantity")), Form::named(word("x-form"))) else {
+        return Vec::new();
+    };
+    match leaf::read(value, words, form) {
+        Ok(_) => Vec::new(),
+        Err(error) => {
+            let fault = Diagnostic::error(path.clone(), format!("`{path}`: {}", error.message)).help(error.help);
+            vec![if value.is_string() && !error.range.is_empty() { fault.within(error.range) } else { fault }]
+        }
+    }
+}

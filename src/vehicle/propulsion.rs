@@ -1,0 +1,216 @@
+//! Thrusters: where they stand, which way they push, and how well they do it in pulses.
+
+use nalgebra::{Unit, UnitVector3, Vector3};
+
+use super::{Faults, STANDARD_GRAVITY};
+use crate::config::{self, NetForceChoice, Spec, SpreadQuantity};
+use crate::uncertain::{Draw, Parameters, Spread, Uncertain};
+use crate::units::{Kind, kind};
+
+/// Steady exhaust speed, written either as such or as specific impulse (u = g0·Isp).
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct ExhaustSpeed {
+    written: Uncertain,
+    factor: f64,
+}
+
+impl ExhaustSpeed {
+    /// Nominal value, m/s.
+    #[must_use]
+    pub fn nominal(&self) -> f64 {
+        self.written.nominal() * self.factor
+    }
+
+    /// Value in a draw, m/s.
+    #[must_use]
+    pub fn in_draw(&self, draw: &Draw) -> f64 {
+        self.written.in_draw(draw) * self.factor
+    }
+
+    /// Whether it is uncertain.
+    #[must_use]
+    pub fn is_uncertain(&self) -> bool {
+        self.written.parameter().is_some()
+    }
+}
+
+/// One thruster.
+#[derive(Debug, Clone)]
+pub struct Thruster {
+    /// Name.
+    pub name: String,
+    /// Name of its string.
+    pub string: String,
+    /// Position in the body frame, m.
+    pub position_m: Vector3<f64>,
+    /// Direction in which it pushes the spacecraft, body frame.
+    pub push: UnitVector3<f64>,
+    /// Thrust, N.
+    pub thrust_n: Uncertain,
+    /// Steady exhaust speed.
+    pub exhaust_speed: ExhaustSpeed,
+}
+
+/// What valves can do, and what a pulse loses.
+#[derive(Debug, Clone)]
+pub struct PulseLimits {
+    /// Shortest on-time, s.
+    pub shortest_s: f64,
+    /// Longest on-time, s.
+    pub longest_s: f64,
+    /// Largest share of the time on.
+    pub duty_cycle: f64,
+    /// On-time, s, and the share of the steady exhaust speed reached; rising on-times.
+    pub performance: Vec<(f64, f64)>,
+}
+
+impl PulseLimits {
+    /// Share of the steady exhaust speed that a pulse of this on-time reaches: straight lines
+    /// between the points given, constant beyond them, 1 without any.
+    #[must_use]
+    pub fn share(&self, on_time_s: f64) -> f64 {
+        let table = &self.performance;
+        let above = table.partition_point(|(time, _)| *time < on_time_s);
+        match (above.checked_sub(1).and_then(|below| table.get(below)), table.get(above)) {
+            (Some((t0, s0)), Some((t1, s1))) => s0 + (s1 - s0) * (on_time_s - t0) / (t1 - t0),
+            (Some((_, share)), None) | (None, Some((_, share))) => *share,
+            (None, None) => 1.0,
+        }
+    }
+}
+
+/// The thrusters and what they share.
+#[derive(Debug, Clone)]
+pub struct Propulsion {
+    /// The thrusters; at least one.
+    pub thrusters: Vec<Thruster>,
+    /// Pulses.
+    pub pulses: PulseLimits,
+    /// Whether an unload may leave a net force.
+    pub net_force: NetForceChoice,
+    /// Pulses that one thruster is qualified for.
+    pub qualified_pulses: Option<f64>,
+}
+
+impl Propulsion {
+    pub(super) fn new(spec: &Spec, parameters: &mut Parameters, faults: &mut Faults) -> Option<Self> {
+        let pulses = pulse_limits(&spec.propulsion, faults);
+        if spec.thrusters.is_empty() {
+            faults.push("thrusters", "expected at least one thruster, got an empty list", "describe the thrusters");
+        }
+        faults.unique("thrusters", spec.thrusters.iter().map(|thruster| thruster.name.as_str()));
+        let shared_written = &spec.propulsion;
+        let shared_thrust = match &shared_written.thrust {
+            Some(thrust) => faults
+                .positive_spread("propulsion.thrust", thrust.0, "a thrust")
+                .map(|spread| parameters.register("propulsion.thrust", kind::Force::UNIT, spread)),
+            None => None,
+        };
+        let both = (shared_written.isp.as_ref(), shared_written.exhaust_speed.as_ref());
+        let shared_speed = exhaust_speed("propulsion", "propulsion", both, parameters, faults);
+        let mut thrusters = Vec::new();
+        for (index, written) in spec.thrusters.iter().enumerate() {
+            thrusters.extend(thruster(index, written, shared_thrust, shared_speed, parameters, faults));
+        }
+        let qualified_pulses = spec.propulsion.qualified_pulses.map(|pulses| pulses.0);
+        let net_force = spec.propulsion.net_force;
+        Some(Self { thrusters, pulses: pulses?, net_force, qualified_pulses })
+    }
+}
+
+fn pulse_limits(written: &config::Propulsion, faults: &mut Faults) -> Option<PulseLimits> {
+    let shortest = faults.positive("propulsion.shortest_pulse", written.shortest_pulse.0, "an on-time");
+    let longest = faults.positive("propulsion.longest_pulse", written.longest_pulse.0, "an on-time");
+    let duty_cycle = faults.within("propulsion.duty_cycle", written.duty_cycle.map_or(0.1, |duty| duty.0), 1e-6, 1.0, "a share of the time");
+    let mut performance: Vec<(f64, f64)> = Vec::new();
+    for (index, point) in written.pulse_performance.iter().enumerate() {
+        let at = format!("propulsion.pulse_performance[{index}]");
+        let on_time = faults.positive(&format!("{at}.on_time"), point.on_time.0, "an on-time")?;
+        let share = faults.within(&format!("{at}.share"), point.share.0, 1e-3, 1.0, "a share of the exhaust speed")?;
+        if performance.last().is_some_and(|(before, _)| *before >= on_time) {
+            faults.push(&format!("{at}.on_time"), "expected a longer on-time than in the entry before", "sort the entries by rising on-time");
+            return None;
+        }
+        performance.push((on_time, share));
+    }
+    let (shortest_s, longest_s) = (shortest?, longest?);
+    if shortest_s > longest_s {
+        faults.push_also(
+            "propulsion.shortest_pulse",
+            format!("the shortest pulse, {shortest_s} s, is longer than the longest, {longest_s} s"),
+            "swap them or correct one",
+            "propulsion.longest_pulse",
+            "the longest",
+        );
+        return None;
+    }
+    Some(PulseLimits { shortest_s, longest_s, duty_cycle: duty_cycle?, performance })
+}
+
+type Written<'a> = (Option<&'a SpreadQuantity<kind::Time>>, Option<&'a SpreadQuantity<kind::Speed>>);
+
+fn exhaust_speed(at: &str, name: &str, written: Written<'_>, parameters: &mut Parameters, faults: &mut Faults) -> Option<ExhaustSpeed> {
+    let (key, spread, factor, unit): (&str, Spread, f64, &'static str) = match written {
+        (Some(isp), None) => ("isp", isp.0, STANDARD_GRAVITY, kind::Time::UNIT),
+        (None, Some(speed)) => ("exhaust_speed", speed.0, 1.0, kind::Speed::UNIT),
+        (None, None) => return None,
+        (Some(_), Some(_)) => {
+            let other = format!("{at}.isp");
+            faults.push_also(&format!("{at}.exhaust_speed"), "given together with `isp`", "keep one of the two", &other, "here");
+            return None;
+        }
+    };
+    let spread = faults.positive_spread(&format!("{at}.{key}"), spread, "an exhaust speed")?;
+    Some(ExhaustSpeed { written: parameters.register(format!("{name}.{key}"), unit, spread), factor })
+}
+
+fn thruster(
+    index: usize,
+    written: &config::Thruster,
+    shared_thrust: Option<Uncertain>,
+    shared_speed: Option<ExhaustSpeed>,
+    parameters: &mut Parameters,
+    faults: &mut Faults,
+) -> Option<Thruster> {
+    let at = format!("thrusters[{index}]");
+    let name = format!("thrusters[{}]", written.name);
+    let push = push_direction(&at, written, faults);
+    let thrust_n = match &written.thrust {
+        Some(thrust) => faults
+            .positive_spread(&format!("{at}.thrust"), thrust.0, "a thrust")
+            .map(|spread| parameters.register(format!("{name}.thrust"), kind::Force::UNIT, spread)),
+        None => shared_thrust,
+    };
+    if thrust_n.is_none() && written.thrust.is_none() {
+        faults.push(&at, "expected a thrust, here or as `propulsion.thrust`", "add `thrust: 1 N` under `propulsion`");
+    }
+    let own = exhaust_speed(&at, &name, (written.isp.as_ref(), written.exhaust_speed.as_ref()), parameters, faults);
+    let speed = own.or(shared_speed);
+    if speed.is_none() && written.isp.is_none() && written.exhaust_speed.is_none() {
+        faults.push(&at, "expected `isp` or `exhaust_speed`, here or under `propulsion`", "add `isp: 215 s` under `propulsion`");
+    }
+    Some(Thruster {
+        name: written.name.clone(),
+        string: written.string.clone().unwrap_or_else(|| written.name.clone()),
+        position_m: Vector3::from(written.position.0),
+        push: push?,
+        thrust_n: thrust_n?,
+        exhaust_speed: speed?,
+    })
+}
+
+fn push_direction(at: &str, written: &config::Thruster, faults: &mut Faults) -> Option<UnitVector3<f64>> {
+    match (&written.push, &written.plume) {
+        (Some(push), None) => faults.direction(&format!("{at}.push"), push.0).map(Unit::new_unchecked),
+        (None, Some(plume)) => faults.direction(&format!("{at}.plume"), plume.0).map(|plume| Unit::new_unchecked(-plume)),
+        (Some(_), Some(_)) => {
+            let other = format!("{at}.push");
+            faults.push_also(&format!("{at}.plume"), "given together with `push`", "keep one of the two: the plume leaves against the push", &other, "here");
+            None
+        }
+        (None, None) => {
+            faults.push(at, "expected a direction, `push` or `plume`", "add `push: 0 0 1`, the way it pushes the spacecraft");
+            None
+        }
+    }
+}
