@@ -8,6 +8,7 @@ pub mod config;
 pub mod vehicle;
 pub mod authority;
 pub mod environment;
+pub mod mission;
 pub mod disturbance;
 pub mod momentum;
 pub mod pulses;
