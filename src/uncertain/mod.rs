@@ -1,10 +1,12 @@
 //! Numbers with a spread.
 //!
-//! In: a distribution's parameters in SI. Out: its nominal value, its quantiles, the values it can
-//! take. Knows nothing of what the number stands for.
+//! In: text with units, or a distribution's parameters in SI. Out: its nominal value, its quantiles,
+//! the values it can take; the registry of named parameters. Knows nothing of what a number stands for.
 
 mod parameter;
 mod spread;
+mod text;
 
 pub use parameter::{Draw, Parameter, ParameterId, Parameters, Uncertain};
-pub use spread::Spread;
+pub use spread::{Spread, SpreadError};
+pub use text::{parse_spread, parse_spread_triple, parse_triple};

@@ -57,6 +57,9 @@ pub mod kind {
                 const UNIT: &'static str = $unit;
                 const EXAMPLE: &'static str = $example;
             })*
+
+            /// Dimension, SI unit and name of every kind.
+            pub(super) const NAMED: &[(Dimension, &str, &str)] = &[$((Dimension::new($exponents), $unit, $name)),*];
         };
     }
 
@@ -99,5 +102,47 @@ pub mod kind {
         Density [-3, 1, 0, 0, 0, 0], "a density", "kg/m3", "1008 kg/m3";
         /// Price: propellant per angular impulse, kg/(N·m·s).
         Price [-2, 0, 1, 0, 0, 0], "a price of angular impulse", "kg/(N m s)", "1.2 g/(N m s)";
+    }
+}
+
+impl Dimension {
+    /// A pure number.
+    pub const NONE: Self = Self::new([0; 6]);
+
+    /// The exponents of m, kg, s, A, K, rad.
+    #[must_use]
+    pub const fn exponents(self) -> [i8; 6] {
+        [self.length, self.mass, self.time, self.current, self.temperature, self.angle]
+    }
+
+    /// Dimension of a product with `other` raised to `power`; `None` if an exponent grows past what anyone needs.
+    #[must_use]
+    pub fn times(self, other: Self, power: i8) -> Option<Self> {
+        let mut sum = [0_i8; 6];
+        for ((place, own), more) in sum.iter_mut().zip(self.exponents()).zip(other.exponents()) {
+            *place = own.checked_add(more.checked_mul(power)?)?;
+        }
+        Some(Self::new(sum))
+    }
+}
+
+impl std::fmt::Display for Dimension {
+    /// The trade's name where there is one, else base units: `N m`, `kg m2/s3`.
+    fn fmt(&self, f: &mut std::fmt::Formatter<'_>) -> std::fmt::Result {
+        if let Some((_, unit, name)) = kind::NAMED.iter().find(|(dimension, _, _)| dimension == self) {
+            return if unit.is_empty() { write!(f, "{name}") } else { write!(f, "{unit} ({name})") };
+        }
+        let units = ["m", "kg", "s", "A", "K", "rad"];
+        let part = |sign: i8| -> Vec<String> {
+            let listed = units.iter().zip(self.exponents()).filter(|(_, power)| power.signum() == sign);
+            listed.map(|(unit, power)| if power.abs() == 1 { (*unit).to_owned() } else { format!("{unit}{}", power.abs()) }).collect()
+        };
+        let (above, below) = (part(1), part(-1));
+        let above = if above.is_empty() { "1".to_owned() } else { above.join(" ") };
+        match below.len() {
+            0 => f.write_str(&above),
+            1 => write!(f, "{above}/{}", below.join(" ")),
+            _ => write!(f, "{above}/({})", below.join(" ")),
+        }
     }
 }

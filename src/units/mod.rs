@@ -4,5 +4,11 @@
 //! wrong and where in the text. Knows nothing of YAML, files or spacecraft.
 
 mod dimension;
+mod expression;
+mod parse;
+mod table;
 
 pub use dimension::{Dimension, Kind, kind};
+pub use expression::unit_factor;
+pub(crate) use parse::{expect_unit, finite, for_kind};
+pub use parse::{QuantityError, number_prefix, parse, parse_kind};

@@ -11,7 +11,7 @@ mod tank;
 mod wheels;
 
 pub use faults::Faults;
-pub use mass::{MassProperties, MassState};
+pub use mass::{INERTIA_ELEMENTS, MassProperties, MassState, symmetric};
 pub use propulsion::{ExhaustSpeed, Propulsion, PulseLimits, Thruster};
 pub use surface::{Hinge, Material, Surface};
 pub use tank::Tank;
