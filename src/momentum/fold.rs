@@ -1,0 +1,183 @@
+//! Folding what is certain into the basis, so that only uncertain quantities remain as features.
+
+use std::collections::BTreeMap;
+
+use nalgebra::{DMatrix, Vector3};
+
+use super::{RawBasis, Stratum};
+use crate::disturbance::{Factor, Feature};
+use crate::mission::{Phase, Scenario};
+use crate::uncertain::{Draw, ParameterId};
+use crate::vehicle::{INERTIA_ELEMENTS, MassState};
+
+/// One uncertain factor of a feature of the folded basis.
+#[derive(Debug, Clone, Copy, PartialEq, Eq, PartialOrd, Ord, Hash)]
+pub enum PlanFactor {
+    /// A parameter as it is.
+    Value(ParameterId),
+    /// A parameter less its nominal value.
+    Deviation(ParameterId),
+    /// Weight of a level of solar activity.
+    Activity(usize),
+}
+
+/// Propellant on board over the nominal mission: points in order of time, straight lines between.
+#[derive(Debug, Clone, PartialEq)]
+pub struct MassHistory(Vec<(f64, f64)>);
+
+impl MassHistory {
+    /// The same amount all the time, kg.
+    #[must_use]
+    pub fn constant(propellant_kg: f64) -> Self {
+        Self(vec![(0.0, propellant_kg)])
+    }
+
+    /// Time after the start of the mission, s, and propellant on board, kg; rising times, at least one.
+    #[must_use]
+    pub fn new(points: Vec<(f64, f64)>) -> Self {
+        Self(points)
+    }
+
+    /// Propellant on board at a time, kg.
+    #[must_use]
+    pub fn at(&self, time_s: f64) -> f64 {
+        let after = self.0.partition_point(|(time, _)| *time < time_s);
+        match (after.checked_sub(1).and_then(|k| self.0.get(k)), self.0.get(after)) {
+            (Some((t0, m0)), Some((t1, m1))) if t1 > t0 => m0 + (m1 - m0) * (time_s - t0) / (t1 - t0),
+            (_, Some((_, m))) | (Some((_, m)), None) => *m,
+            (None, None) => 0.0,
+        }
+    }
+}
+
+/// The basis in uncertain features alone.
+#[derive(Debug, Clone)]
+pub struct FoldedBasis {
+    /// The features, sorted; the first is the empty product, 1.
+    pub features: Vec<Vec<PlanFactor>>,
+    /// Columns × features: momentum, N·m·s, per unit of the feature. Three rows a vector, in the order
+    /// of `offsets`.
+    pub matrix: DMatrix<f64>,
+    /// For each stratum, the row of its first window and of its first excursion.
+    pub offsets: Vec<(usize, usize)>,
+    /// Nominal mass properties in each stratum.
+    pub masses: Vec<MassState>,
+}
+
+/// Values of the features of a [`FoldedBasis`] in draws.
+#[derive(Debug, Clone, Copy)]
+pub struct FeatureValues<'a> {
+    scenario: &'a Scenario,
+    nominal: &'a Draw,
+}
+
+impl<'a> FeatureValues<'a> {
+    /// For the parameters of a scenario, whose nominal draw is `nominal`.
+    #[must_use]
+    pub fn new(scenario: &'a Scenario, nominal: &'a Draw) -> Self {
+        Self { scenario, nominal }
+    }
+
+    /// Value of one feature in a draw.
+    #[must_use]
+    pub fn of(&self, feature: &[PlanFactor], draw: &Draw) -> f64 {
+        let activity = &self.scenario.mission.activity;
+        let factor = |factor: &PlanFactor| match factor {
+            PlanFactor::Value(id) => draw.value(*id),
+            PlanFactor::Deviation(id) => draw.value(*id) - self.nominal.value(*id),
+            PlanFactor::Activity(level) => activity.weight(*level, activity.f107().in_draw(draw)),
+        };
+        feature.iter().map(factor).product()
+    }
+}
+
+/// A number times uncertain factors.
+type Term = (f64, Vec<PlanFactor>);
+
+/// Writes a feature as a sum of products of uncertain factors, with the mass properties of a stratum.
+fn expand(feature: &Feature, scenario: &Scenario, phase: &Phase, mass: &MassState) -> Vec<Term> {
+    let dry = &scenario.vehicle.dry;
+    let mut terms: Vec<Term> = vec![(1.0, Vec::new())];
+    for factor in feature.factors() {
+        let options: Vec<(f64, Option<PlanFactor>)> = match *factor {
+            Factor::Parameter(id) => vec![(1.0, Some(PlanFactor::Value(id)))],
+            Factor::Activity(level) => vec![(1.0, Some(PlanFactor::Activity(level)))],
+            Factor::CentreOfMass(axis) => {
+                // Propellant holds the whole centre back: a shift of the dry one counts by its share of the mass.
+                let share = dry.mass_kg.nominal() / mass.mass_kg;
+                let deviation = dry.centre_of_mass_m[axis].parameter().map(|id| (share, Some(PlanFactor::Deviation(id))));
+                [Some((mass.centre_of_mass_m[axis], None)), deviation].into_iter().flatten().collect()
+            }
+            Factor::Inertia(element) => {
+                let deviation = dry.inertia_kg_m2[element].parameter().map(|id| (1.0, Some(PlanFactor::Deviation(id))));
+                [Some((mass.inertia_kg_m2[INERTIA_ELEMENTS[element]], None)), deviation].into_iter().flatten().collect()
+            }
+            Factor::Bias(axis) => phase.attitude.bias_rad[axis].parameter().map(|id| (1.0, Some(PlanFactor::Deviation(id)))).into_iter().collect(),
+        };
+        terms = terms
+            .iter()
+            .flat_map(|(scale, factors)| {
+                options.iter().map(move |(by, more)| (scale * by, factors.iter().copied().chain(*more).collect::<Vec<_>>()))
+            })
+            .collect();
+    }
+    for (_, factors) in &mut terms {
+        factors.sort_unstable();
+    }
+    terms
+}
+
+impl FoldedBasis {
+    /// Folds the raw basis of a scenario along a mass history.
+    #[must_use]
+    pub fn new(scenario: &Scenario, strata: &[Stratum], raw: &RawBasis, history: &MassHistory) -> Self {
+        let masses: Vec<MassState> =
+            strata.iter().map(|stratum| scenario.vehicle.mass_state(history.at(stratum.start_s + stratum.duration_s / 2.0))).collect();
+        let mut rows = 0;
+        let mut offsets = Vec::with_capacity(strata.len());
+        for span in &raw.spans {
+            let windows = rows;
+            rows += 3 * span.windows.len();
+            offsets.push((windows, rows));
+            rows += 3 * span.excursions.len();
+        }
+        let expanded: Vec<Vec<Vec<Term>>> = strata
+            .iter()
+            .zip(&masses)
+            .map(|(stratum, mass)| {
+                let phase = &scenario.mission.phases[stratum.phase];
+                raw.features[stratum.phase].iter().map(|f| expand(&f.feature, scenario, phase, mass)).collect()
+            })
+            .collect();
+        let mut index: BTreeMap<&[PlanFactor], usize> = BTreeMap::new();
+        index.insert(&[], 0);
+        for (_, factors) in expanded.iter().flatten().flatten() {
+            index.insert(factors, 0);
+        }
+        for (place, column) in index.values_mut().enumerate() {
+            *column = place;
+        }
+        let mut matrix = DMatrix::zeros(rows, index.len());
+        for ((span, offset), terms) in raw.spans.iter().zip(&offsets).zip(&expanded) {
+            let listed = |vectors: &[Vec<Vector3<f64>>], first: usize, matrix: &mut DMatrix<f64>| {
+                for (k, vectors) in vectors.iter().enumerate() {
+                    add(vectors, terms, &index, first + 3 * k, matrix);
+                }
+            };
+            listed(&span.windows, offset.0, &mut matrix);
+            listed(&span.excursions, offset.1, &mut matrix);
+        }
+        let features = index.keys().map(|key| key.to_vec()).collect();
+        Self { features, matrix, offsets, masses }
+    }
+}
+
+fn add(vectors: &[Vector3<f64>], terms: &[Vec<Term>], index: &BTreeMap<&[PlanFactor], usize>, row: usize, matrix: &mut DMatrix<f64>) {
+    for (vector, terms) in vectors.iter().zip(terms) {
+        for (scale, factors) in terms {
+            let Some(column) = index.get(factors.as_slice()) else { continue };
+            let mut place = matrix.fixed_view_mut::<3, 1>(row, *column);
+            place += vector * *scale;
+        }
+    }
+}
