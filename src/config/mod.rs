@@ -6,18 +6,22 @@
 
 #![deny(clippy::expect_used, clippy::indexing_slicing)]
 
+mod choose;
 mod decode;
 mod diagnostic;
 mod document;
 mod nearest;
 mod node;
+mod offsets;
 mod overlay;
 mod path;
+mod refuse;
 mod render;
 mod schema;
 mod setting;
 mod source;
 mod spans;
+mod syntax;
 mod walk;
 
 pub use decode::decode;
