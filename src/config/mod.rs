@@ -6,6 +6,7 @@
 
 #![deny(clippy::expect_used, clippy::indexing_slicing)]
 
+mod choose;
 mod decode;
 mod diagnostic;
 mod document;
@@ -14,8 +15,10 @@ mod long_form;
 mod mission;
 mod nearest;
 mod node;
+mod offsets;
 mod overlay;
 mod path;
+mod refuse;
 mod render;
 mod schema;
 mod setting;
@@ -23,6 +26,7 @@ mod source;
 mod spacecraft;
 mod spans;
 mod spec;
+mod syntax;
 mod walk;
 
 pub use decode::decode;

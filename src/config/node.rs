@@ -80,12 +80,11 @@ impl Map {
 
     /// Puts an entry at the place of the one with the same key, or at the end.
     pub(crate) fn set(&mut self, entry: Entry) {
-        match self.get_mut(&entry.key) {
-            Some(old) => *old = entry,
-            None => {
-                self.index.insert(entry.key.clone(), self.entries.len());
-                self.entries.push(entry);
-            }
+        if let Some(old) = self.get_mut(&entry.key) {
+            *old = entry;
+        } else {
+            self.index.insert(entry.key.clone(), self.entries.len());
+            self.entries.push(entry);
         }
     }
 }

@@ -4,6 +4,7 @@
 //! the end. Everything else replaces what was there.
 
 use std::collections::HashMap;
+use std::sync::Arc;
 
 use super::diagnostic::Diagnostic;
 use super::node::{Body, Map, Node};
@@ -32,7 +33,7 @@ fn lay_map(below: &mut Map, above: Map, faults: &mut Vec<Diagnostic>) {
             Some(old) => {
                 lay(&mut old.node, entry.node, faults);
                 // A replaced value belongs to the overlay with its key; a merged one stays below.
-                if old.node.place.source == entry.key_place.source {
+                if Arc::ptr_eq(&old.node.place.source, &entry.key_place.source) {
                     old.key_place = entry.key_place;
                 }
             }

@@ -90,7 +90,7 @@ impl fmt::Display for Path {
             match segment {
                 Segment::Index(index) => write!(f, "[{index}]")?,
                 Segment::Key(key) if key.contains(['.', '[', ']']) => {
-                    write!(f, "[{}]", short(key))?
+                    write!(f, "[{}]", short(key))?;
                 }
                 Segment::Key(key) if position == 0 => f.write_str(&short(key))?,
                 Segment::Key(key) => write!(f, ".{}", short(key))?,
@@ -135,7 +135,8 @@ pub(crate) fn parts(text: &str) -> Vec<Part<'_>> {
             continue;
         }
         // `a[0].b` and `a[0][1]`: nothing stands between the bracket and the next sign.
-        if !(after_bracket && at == start) && !(c == '[' && at == 0) {
+        let nothing = at == start && (after_bracket || c == '[' && at == 0);
+        if !nothing {
             found.push(Part {
                 text: text.get(start..at).unwrap_or_default(),
                 start,

@@ -230,13 +230,9 @@ impl<'a> Schema<'a> {
         (!sentence.is_empty()).then(|| sentence.to_owned())
     }
 
-    /// The first example, or else the default, as one writes it in YAML.
+    /// The first example as one writes it in YAML.
     pub(crate) fn example(&self) -> Option<String> {
-        let first = self
-            .get("examples")
-            .and_then(Json::as_array)
-            .and_then(|examples| examples.first());
-        match first.or_else(|| self.get("default"))? {
+        match self.get("examples")?.as_array()?.first()? {
             Json::String(text) => Some(text.clone()),
             other => Some(other.to_string()),
         }

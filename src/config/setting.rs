@@ -6,8 +6,8 @@
 use std::ops::Range;
 use std::sync::Arc;
 
-use super::diagnostic::{Diagnostic, Severity, Site};
-use super::nearest::did_you_mean;
+use super::diagnostic::Diagnostic;
+use super::nearest::nearest;
 use super::node::{Body, Entry, Node};
 use super::path::{Part, parts, short};
 use super::source::{Place, Source};
@@ -16,8 +16,6 @@ use super::source::{Place, Source};
 const FLAG: &str = "--set ";
 
 /// Puts the value of one flag into the configuration.
-///
-/// Returns the flag's text as a source.
 ///
 /// # Errors
 /// No `=`, no value, a value that is not valid YAML, a map or list on the way to the key that does
@@ -42,7 +40,7 @@ pub(crate) fn apply(root: &mut Node, flag: &str, rank: usize) -> Result<(), Vec<
             }
         })
         .collect();
-    put(root, &steps, node).map_err(|fault| vec![fault])
+    put(root, &steps, node).map_err(|fault| vec![*fault])
 }
 
 /// One step of KEY and where it stands in the flag.
@@ -110,10 +108,10 @@ fn read_value(source: &Arc<Source>, value: &Range<usize>) -> Result<Node, Vec<Di
 }
 
 /// Follows the steps and puts `node` at the last.
-fn put(root: &mut Node, steps: &[Step<'_>], node: Node) -> Result<(), Diagnostic> {
+fn put(root: &mut Node, steps: &[Step<'_>], node: Node) -> Result<(), Box<Diagnostic>> {
+    // `parts` gives at least one step.
     let Some((last, way)) = steps.split_last() else {
-        let message = "`--set` needs KEY=VALUE";
-        return Err(Diagnostic::new(Severity::Error, Site::Nowhere, message));
+        return Ok(());
     };
     let mut holder = root;
     for step in way {
@@ -133,7 +131,7 @@ fn put(root: &mut Node, steps: &[Step<'_>], node: Node) -> Result<(), Diagnostic
 }
 
 /// The value one step down.
-fn enter<'a>(holder: &'a mut Node, step: &Step<'_>) -> Result<&'a mut Node, Diagnostic> {
+fn enter<'a>(holder: &'a mut Node, step: &Step<'_>) -> Result<&'a mut Node, Box<Diagnostic>> {
     let word = step.part.text;
     let known: Vec<String> = match &holder.body {
         Body::Map(map) => map.keys().map(str::to_owned).collect(),
@@ -156,7 +154,7 @@ fn enter<'a>(holder: &'a mut Node, step: &Step<'_>) -> Result<&'a mut Node, Diag
         }
         Body::Scalar(_) => (None, None),
     };
-    found.ok_or_else(|| missing(step, kind, &known, count))
+    found.ok_or_else(|| Box::new(missing(step, kind, &known, count)))
 }
 
 fn missing(step: &Step<'_>, kind: &str, known: &[String], count: Option<usize>) -> Diagnostic {
@@ -164,7 +162,7 @@ fn missing(step: &Step<'_>, kind: &str, known: &[String], count: Option<usize>) 
     let (message, otherwise) = match (kind, count) {
         (_, Some(0)) => (
             format!("`--set` names the item `{word}` of an empty list"),
-            String::new(),
+            "set the list as a whole".to_owned(),
         ),
         (_, Some(count)) => (
             format!("`--set` names `{word}`, which is no item of this list"),
@@ -179,13 +177,12 @@ fn missing(step: &Step<'_>, kind: &str, known: &[String], count: Option<usize>) 
             format!("the value is {kind}; set it as a whole"),
         ),
     };
-    let hint = did_you_mean(step.part.text, known.iter().map(String::as_str));
-    let help = match (hint, otherwise.is_empty()) {
-        (Some(hint), true) => hint,
-        (Some(hint), false) if hint.starts_with("known") => format!("{hint}; or {otherwise}"),
-        (Some(hint), false) => hint,
-        (None, true) => "set the list as a whole".to_owned(),
-        (None, false) => otherwise,
+    let names = || known.iter().map(String::as_str);
+    let help = match nearest(step.part.text, names()) {
+        Some(name) => format!("did you mean `{}`?", short(name)),
+        None => super::nearest::known(names()).map_or(otherwise.clone(), |list| {
+            format!("known here: {list}; or {otherwise}")
+        }),
     };
     Diagnostic::error_at(step.place.clone(), message)
         .label("not found")

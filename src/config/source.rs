@@ -76,25 +76,26 @@ impl Source {
     }
 
     /// As [`Source::new`], without a byte-order mark and refusing control characters. YAML forbids
-    /// them, and one of the two parsers would take U+0000 for the end of the file.
+    /// them (U+0085 apart), a terminal would obey them, and one of the two parsers would take U+0000
+    /// for the end of the file.
     pub(crate) fn checked(
         name: impl Into<String>,
         text: &str,
         rank: usize,
     ) -> Result<Arc<Self>, ReadError> {
-        let source = Self::new(name, text.strip_prefix('\u{FEFF}').unwrap_or(text), rank);
-        let control = |&(_, c): &(usize, char)| c.is_ascii_control() && !"\t\n\r".contains(c);
-        let found = source.text.char_indices().find(control);
-        match found {
-            None => Ok(source),
-            Some((start, character)) => {
-                let place = Place {
-                    source,
-                    range: start..start + character.len_utf8(),
-                };
-                Err(ReadError::Control { place, character })
-            }
-        }
+        let text = text.strip_prefix('\u{FEFF}').unwrap_or(text);
+        let is_control = |c: char| c.is_control() && !"\t\n\r\u{85}".contains(c);
+        let Some((start, character)) = text.char_indices().find(|&(_, c)| is_control(c)) else {
+            return Ok(Self::new(name, text, rank));
+        };
+        // The message shows the line, so there too no control character may be left.
+        let stand_in = char::REPLACEMENT_CHARACTER;
+        let source = Self::new(name, text.replace(is_control, &stand_in.to_string()), rank);
+        let place = Place {
+            source,
+            range: start..start + stand_in.len_utf8(),
+        };
+        Err(ReadError::Control { place, character })
     }
 
     /// The file's name as given, or `command line` for a flag.
@@ -119,8 +120,7 @@ impl Source {
     #[must_use]
     pub fn line_column(&self, offset: usize) -> (usize, usize) {
         let line_start = self.line_start(offset);
-        let before = self.text.as_bytes().get(..line_start).unwrap_or_default();
-        let line = 1 + before.iter().filter(|&&byte| byte == b'\n').count();
+        let line = 1 + self.slice(&(0..line_start)).matches('\n').count();
         (line, 1 + self.slice(&(line_start..offset)).chars().count())
     }
 
@@ -245,6 +245,6 @@ mod tests {
     fn control_characters_are_refused_where_they_stand() {
         let error = Source::checked("x", "a: b\0\nc: d", 0).unwrap_err();
         assert_eq!(error.to_string(), "`x` holds a control character, U+0000");
-        assert!(matches!(error, ReadError::Control { place, .. } if place.range == (4..5)));
+        assert!(matches!(error, ReadError::Control { place, .. } if place.range == (4..7)));
     }
 }

@@ -9,11 +9,13 @@ use std::collections::HashMap;
 use std::ops::Range;
 use std::sync::Arc;
 
-use saphyr_parser::{Event, Parser, ScalarStyle, ScanError, Span};
+use saphyr_parser::{Event, Parser, ScalarStyle};
 
 use super::diagnostic::Diagnostic;
+use super::offsets::Offsets;
 use super::path::short;
-use super::source::{Place, Source};
+use super::refuse::empty;
+use super::source::Source;
 
 /// Deepest nesting of maps and lists. A spacecraft needs about six.
 pub(crate) const DEEPEST: usize = 64;
@@ -79,54 +81,16 @@ pub(crate) fn scan(source: &Arc<Source>, within: &Range<usize>) -> Result<Marked
     }
 }
 
-/// Byte offsets of characters; the parser counts characters.
-struct Offsets {
-    start: usize,
-    /// Offset of every character and of the end, or `None` if all characters are one byte.
-    table: Option<Vec<usize>>,
-}
-
-impl Offsets {
-    fn new(start: usize, text: &str) -> Self {
-        let ends = || {
-            text.char_indices()
-                .map(|(at, _)| at)
-                .chain([text.len()])
-                .collect()
-        };
-        Self {
-            start,
-            table: (!text.is_ascii()).then(ends),
-        }
-    }
-
-    fn byte(&self, character: usize) -> usize {
-        let relative = match &self.table {
-            None => character,
-            Some(table) => table
-                .get(character)
-                .or(table.last())
-                .copied()
-                .unwrap_or_default(),
-        };
-        self.start + relative
-    }
-
-    fn range(&self, span: Span) -> Range<usize> {
-        let start = self.byte(span.start.index());
-        start..self.byte(span.end.index()).max(start)
-    }
-}
-
 /// A map or list that is still open.
-struct Frame {
-    start: usize,
+pub(crate) struct Frame {
+    pub(crate) start: usize,
     /// End of the last thing in it.
     end: usize,
     open: Open,
 }
 
-enum Open {
+/// What is open.
+pub(crate) enum Open {
     List(Vec<Marked>),
     Map {
         entries: Vec<(Key, Marked)>,
@@ -135,15 +99,16 @@ enum Open {
     },
 }
 
-struct Scan<'a> {
-    source: &'a Arc<Source>,
-    text: &'a str,
-    offsets: Offsets,
-    frames: Vec<Frame>,
+/// A pass under way.
+pub(crate) struct Scan<'a> {
+    pub(crate) source: &'a Arc<Source>,
+    pub(crate) text: &'a str,
+    pub(crate) offsets: Offsets,
+    pub(crate) frames: Vec<Frame>,
     root: Option<Marked>,
     documents: usize,
     nodes: usize,
-    faults: Vec<Diagnostic>,
+    pub(crate) faults: Vec<Diagnostic>,
 }
 
 impl<'a> Scan<'a> {
@@ -204,37 +169,6 @@ impl<'a> Scan<'a> {
             Event::Nothing | Event::StreamStart | Event::StreamEnd | Event::DocumentEnd => {}
         }
         Some(())
-    }
-
-    fn place(&self, range: &Range<usize>) -> Place {
-        let end = range.end.min(self.source.text().len());
-        Place {
-            source: Arc::clone(self.source),
-            range: range.start.min(end)..end,
-        }
-    }
-
-    fn fault(&self, range: &Range<usize>, message: impl Into<String>, label: &str) -> Diagnostic {
-        Diagnostic::error_at(self.place(range).first_line(), message).label(label)
-    }
-
-    fn anchored(&mut self, range: &Range<usize>) {
-        let message = "anchors (`&name`) and aliases (`*name`) are not allowed";
-        let fault = self.fault(range, message, "part of an anchor or alias");
-        self.faults.push(
-            fault.help("write the value out; start text that begins with `&` or `*` with a quote"),
-        );
-    }
-
-    fn properties(&mut self, range: &Range<usize>, anchor: usize, tagged: bool) {
-        if anchor > 0 {
-            self.anchored(range);
-        }
-        if tagged {
-            let fault = self.fault(range, "tags (`!name`) are not allowed", "has a tag");
-            self.faults
-                .push(fault.help("delete the tag; start text that begins with `!` with a quote"));
-        }
     }
 
     fn count(&mut self, range: &Range<usize>) -> Option<()> {
@@ -338,7 +272,9 @@ impl<'a> Scan<'a> {
             return;
         };
         *end = range.end;
-        let first = seen.insert(key.text.clone(), range.clone());
+        let first = seen.get(&key.text).cloned();
+        seen.entry(key.text.clone())
+            .or_insert_with(|| range.clone());
         let message = format!("the key `{}` stands twice in this map", short(&key.text));
         *pending = Some(key);
         if let Some(first) = first {
@@ -364,91 +300,22 @@ impl<'a> Scan<'a> {
             Open::List(items) => items.push(node),
             Open::Map {
                 entries, pending, ..
-            } => match pending.take() {
-                Some(key) => entries.push((key, node)),
-                None => {
-                    // Keeps the order of keys and values in step.
-                    *pending = Some(Key {
-                        text: String::new(),
-                        range: range.clone(),
-                    });
-                    let fault = self.fault(&range, "a key must be text", "this is no text");
-                    self.faults.push(fault.help(
+            } => {
+                if let Some(key) = pending.take() {
+                    entries.push((key, node));
+                    return;
+                }
+                // Something must stand for the key, or its value would be taken for the next one.
+                *pending = Some(Key {
+                    text: String::new(),
+                    range: range.clone(),
+                });
+                let fault = self.fault(&range, "a key must be text", "this is no text");
+                self.faults
+                    .push(fault.help(
                         "write `key: value`; put text that begins with `{` or `[` in quotes",
                     ));
-                }
-            },
+            }
         }
     }
-
-    fn syntax(&mut self, error: &ScanError) -> Option<()> {
-        let at = self.offsets.byte(error.marker().index());
-        let mut at = at.min(self.source.text().len());
-        // At the end of the text there is nothing to mark: take the last character before it.
-        let trimmed = self.text.trim_end().len() + self.offsets.start;
-        let label = if at >= trimmed && trimmed > self.offsets.start {
-            let last = self
-                .source
-                .slice(&(self.offsets.start..trimmed))
-                .char_indices()
-                .next_back();
-            at = self.offsets.start + last.map_or(0, |(start, _)| start);
-            "the text ends here, too early"
-        } else {
-            "here"
-        };
-        let next = self
-            .source
-            .slice(&(at..self.source.text().len()))
-            .chars()
-            .next();
-        let range = at..at + next.map_or(0, char::len_utf8);
-        let line = self
-            .source
-            .slice(&(self.source.line_start(at)..self.source.line_end(at)));
-        let help = remedy(error.info(), line);
-        let message = format!("this is not valid YAML: {}", error.info());
-        let fault = self.fault(&range, message, label).help(help);
-        self.faults.push(fault);
-        None
-    }
-}
-
-/// What most likely mends a syntax error on this line.
-fn remedy(info: &str, line: &str) -> &'static str {
-    let indentation = line
-        .get(..line.len() - line.trim_start().len())
-        .unwrap_or_default();
-    if indentation.contains('\t') || info.contains("tab") {
-        "indent with spaces: YAML does not allow tabs there"
-    } else if info.contains("mapping values") || info.contains("illegal placement of ':'") {
-        "put text that holds `: ` in quotes, or check the indentation of this line and the one above"
-    } else if info.contains("simple key") {
-        "write `key: value` with a space after the colon, and check the indentation"
-    } else if info.contains("quoted scalar") || info.contains("double-quoted") {
-        "close the quotes on the same line; inside \"…\" write `\\\\` for a backslash"
-    } else if info.contains("flow") || info.contains("bracket") {
-        "close each `[` and `{`, and put a comma between items"
-    } else if info.contains("unknown anchor") {
-        "put text that begins with `*` in quotes; aliases are not allowed"
-    } else if info.contains("unexpected character") || info.contains("cannot start") {
-        "put text that begins with this character in quotes"
-    } else {
-        "check the indentation of this line and the one above: keys of one map start in the same column"
-    }
-}
-
-fn empty(source: &Arc<Source>, within: &Range<usize>) -> Diagnostic {
-    let place = Place {
-        source: Arc::clone(source),
-        range: within.start..within.start,
-    };
-    let help = if source.rank() == 0 {
-        "`couplet new FILE` writes a commented example to start from"
-    } else {
-        "write `key: value` into it, or leave it out"
-    };
-    Diagnostic::error_at(place, format!("`{}` is empty", source.name()))
-        .label("expected `key: value`")
-        .help(help)
 }

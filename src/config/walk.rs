@@ -36,13 +36,14 @@ pub fn check_structure(document: &Document, schema: &Json, leaf: &Leaf<'_>) -> V
     walk.faults
 }
 
-struct Walk<'a> {
-    leaf: &'a Leaf<'a>,
-    faults: Vec<Diagnostic>,
+/// A walk under way.
+pub(crate) struct Walk<'a> {
+    pub(crate) leaf: &'a Leaf<'a>,
+    pub(crate) faults: Vec<Diagnostic>,
 }
 
 impl Walk<'_> {
-    fn value(&mut self, schema: &Schema<'_>, value: &Value, path: &Path) {
+    pub(crate) fn value(&mut self, schema: &Schema<'_>, value: &Value, path: &Path) {
         if self.faults.len() >= MOST_FAULTS {
             return;
         }
@@ -74,141 +75,7 @@ impl Walk<'_> {
         }
     }
 
-    /// Finds the alternative that is meant and checks against it.
-    fn choose(&mut self, whole: &Schema<'_>, options: Vec<Schema<'_>>, value: &Value, path: &Path) {
-        let (nulls, mut options): (Vec<_>, Vec<_>) = options
-            .into_iter()
-            .partition(|option| option.types() == ["null"]);
-        if value.is_null() && !nulls.is_empty() {
-            return;
-        }
-        if let [only] = options.as_slice() {
-            return self.value(only, value, path);
-        }
-        let variants: Vec<&str> = options.iter().filter_map(Schema::variant).collect();
-        match value {
-            Value::String(text) => {
-                let words: Vec<&str> = options.iter().flat_map(Schema::words).collect();
-                options.retain(|option| option.words().is_empty());
-                if !options.iter().any(|option| option.takes(value))
-                    && !(words.is_empty() && variants.is_empty())
-                {
-                    return self.word_or_variant(&words, &variants, text, path);
-                }
-                if words.contains(&text.as_str()) {
-                    return;
-                }
-            }
-            Value::Mapping(map) => {
-                let tags: Vec<(&str, &str)> = options.iter().filter_map(Schema::tag).collect();
-                let maps = options.iter().filter(|option| option.takes(value)).count();
-                if let Some(&(tag, _)) = tags.first().filter(|_| tags.len() == maps) {
-                    return self.tagged(tag, &options, map, path);
-                }
-                if !variants.is_empty() && variants.len() == maps {
-                    return self.variant(&options, &variants, map, path);
-                }
-            }
-            _ => {}
-        }
-        options.retain(|option| option.takes(value));
-        let best = options
-            .iter()
-            .map(|option| {
-                let mut trial = Walk {
-                    leaf: self.leaf,
-                    faults: Vec::new(),
-                };
-                trial.value(option, value, path);
-                trial.faults
-            })
-            .min_by_key(Vec::len);
-        match best {
-            Some(faults) => self.faults.extend(faults),
-            None => self.wrong_kind(whole, value, path),
-        }
-    }
-
-    /// An enum whose variants carry data, written as a map with one key.
-    fn variant(&mut self, options: &[Schema<'_>], variants: &[&str], map: &Mapping, path: &Path) {
-        let keys: Vec<&str> = map.keys().filter_map(Value::as_str).collect();
-        if let [only] = keys.as_slice() {
-            let option = options
-                .iter()
-                .find(|option| option.variant() == Some(*only));
-            match option.and_then(|option| Some((option.property(only)?, map.get(*only)?))) {
-                Some((inner, value)) => self.value(&inner, value, &path.key(*only)),
-                None => self.unknown_key(only, variants, path),
-            }
-            return;
-        }
-        let list = known(variants.iter().copied()).unwrap_or_default();
-        let message = format!("`{path}` must have exactly one key, got {}", keys.len());
-        let fault = Diagnostic::error(path.clone(), message).label("choose one");
-        self.faults.push(fault.help(format!("write one of {list}")));
-    }
-
-    /// An enum whose variants are told apart by the key `tag`.
-    fn tagged(&mut self, tag: &str, options: &[Schema<'_>], map: &Mapping, path: &Path) {
-        let words: Vec<&str> = options.iter().filter_map(|o| Some(o.tag()?.1)).collect();
-        let meant = |word: &str| {
-            options
-                .iter()
-                .find(|o| o.tag().is_some_and(|(_, w)| w == word))
-        };
-        match map.get(tag) {
-            Some(Value::String(word)) => match meant(word) {
-                Some(option) => self.map(option, map, path),
-                None => self.word(&words, word, &path.key(tag)),
-            },
-            Some(other) => {
-                let at = path.key(tag);
-                let message = format!("`{at}` must be text, got {}", got(other));
-                let list = known(words).unwrap_or_default();
-                self.faults
-                    .push(Diagnostic::error(at, message).help(format!("write one of {list}")));
-            }
-            None => {
-                let at = path.key(tag);
-                let list = known(words).unwrap_or_default();
-                let fault = Diagnostic::error(at.clone(), format!("`{at}` is missing"));
-                let fault = fault.label(format!("`{tag}` belongs here"));
-                self.faults
-                    .push(fault.help(format!("add `{tag}`, one of {list}")));
-            }
-        }
-    }
-
-    fn word_or_variant(&mut self, words: &[&str], variants: &[&str], text: &str, path: &Path) {
-        if variants.contains(&text) {
-            let message = format!("`{path}` must give the keys of `{text}`, got only the word");
-            let fault = Diagnostic::error(path.clone(), message).label("a map is needed");
-            return self
-                .faults
-                .push(fault.help(format!("write `{text}: {{…}}` on the next line")));
-        }
-        let all: Vec<&str> = words.iter().chain(variants).copied().collect();
-        self.word(&all, text, path);
-    }
-
-    fn word(&mut self, words: &[&str], text: &str, path: &Path) {
-        if words.contains(&text) {
-            return;
-        }
-        let list = known(words.iter().copied()).unwrap_or_default();
-        let message = format!("`{path}` must be one of {list}, got `{}`", short(text));
-        let help = match nearest(text, words.iter().copied()) {
-            Some(word) => format!("did you mean `{word}`?"),
-            None => "write one of these words".to_owned(),
-        };
-        self.faults.push(
-            Diagnostic::error(path.clone(), message)
-                .label("unknown word")
-                .help(help),
-        );
-    }
-
-    fn map(&mut self, schema: &Schema<'_>, map: &Mapping, path: &Path) {
+    pub(crate) fn map(&mut self, schema: &Schema<'_>, map: &Mapping, path: &Path) {
         let keys = schema.keys();
         let closed = schema.get("additionalProperties") == Some(&Json::Bool(false));
         let others = schema
@@ -242,7 +109,7 @@ impl Walk<'_> {
         }
     }
 
-    fn unknown_key(&mut self, key: &str, keys: &[&str], path: &Path) {
+    pub(crate) fn unknown_key(&mut self, key: &str, keys: &[&str], path: &Path) {
         let message = if path.segments().is_empty() {
             format!("unknown key `{}`", short(key))
         } else {
@@ -259,16 +126,14 @@ impl Walk<'_> {
     fn missing(&mut self, schema: &Schema<'_>, key: &str, path: &Path) {
         let at = path.key(key);
         let inner = schema.property(key);
-        let mut help = format!("add `{key}`");
-        if let Some(inner) = inner {
-            help += &match inner.summary() {
-                Some(summary) => format!(": {summary}"),
-                None => format!(": {}", inner.expected()),
-            };
-            if let Some(example) = inner.example() {
-                help += &format!("; for example `{key}: {example}`");
-            }
-        }
+        let says = inner.as_ref().map(|inner| {
+            let what = inner.summary().unwrap_or_else(|| inner.expected());
+            let example = inner
+                .example()
+                .map(|text| format!("; for example `{key}: {text}`"));
+            format!(": {what}{}", example.unwrap_or_default())
+        });
+        let help = format!("add `{key}`{}", says.unwrap_or_default());
         let fault = Diagnostic::error(at.clone(), format!("`{at}` is missing"));
         self.faults
             .push(fault.label(format!("`{key}` belongs here")).help(help));
@@ -336,12 +201,12 @@ impl Walk<'_> {
                 let message = format!("`{path}` must be {words} {limit}, got {number}");
                 let fault = Diagnostic::error(path.clone(), message).label("out of range");
                 self.faults
-                    .push(fault.help(format!("write a number {words} {limit}")));
+                    .push(fault.help(format!("write a number that is {words} {limit}")));
             }
         }
     }
 
-    fn wrong_kind(&mut self, schema: &Schema<'_>, value: &Value, path: &Path) {
+    pub(crate) fn wrong_kind(&mut self, schema: &Schema<'_>, value: &Value, path: &Path) {
         let expected = schema.expected();
         let message = format!("`{path}` must be {expected}, got {}", got(value));
         let fault = Diagnostic::error(path.clone(), message).label(format!("expected {expected}"));
@@ -363,7 +228,7 @@ fn remedy(schema: &Schema<'_>, value: &Value) -> String {
         }
         Value::Number(_) if wants("integer") => "write a number without a fraction".to_owned(),
         Value::String(_) if wants("number") || wants("integer") => {
-            "write digits with a decimal point, without quotes and without a unit".to_owned()
+            "write digits, with a decimal point if need be, without quotes and unit".to_owned()
         }
         Value::String(text) if wants("boolean") => match text.to_lowercase().as_str() {
             "yes" | "on" | "y" => "write `true`".to_owned(),
@@ -371,8 +236,8 @@ fn remedy(schema: &Schema<'_>, value: &Value) -> String {
             _ => "write `true` or `false`, without quotes".to_owned(),
         },
         _ if wants("object") => match known(schema.keys()) {
-            Some(keys) => format!("write `key: value` lines under it; known here: {keys}"),
-            None => "write `key: value` lines under it".to_owned(),
+            Some(keys) => format!("write it as `key: value`; known here: {keys}"),
+            None => "write it as `key: value`".to_owned(),
         },
         _ if wants("array") => "write a list: `[…]`, or lines that begin with `- `".to_owned(),
         Value::Null => "write a value after the colon, or delete the key".to_owned(),
