@@ -1,1 +1,12 @@
-//! The `pulses` room of the pipeline.
+//! An unload turned into valve commands.
+//!
+//! In: an angular impulse, the price map of the layout and what valves can do. Out: pulses per
+//! thruster, their propellant, what is left over. Knows nothing of orbits or of the mission.
+
+mod firing;
+mod pricer;
+mod unload;
+
+pub use firing::{Firing, fire};
+pub use pricer::{Performance, Pricer};
+pub use unload::{ThrusterPulses, UnloadCommand, UnloadError, unload};

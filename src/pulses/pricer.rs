@@ -1,0 +1,116 @@
+//! The layout about one centre of mass, ready to price angular impulses.
+
+use nalgebra::Vector3;
+
+use super::{Firing, fire};
+use crate::authority::{Authority, Basis, Capability, Generator, NetForce, PriceMap};
+use crate::config::NetForceChoice;
+use crate::uncertain::Draw;
+use crate::vehicle::{Propulsion, PulseLimits};
+
+/// Thrust, N, and steady exhaust speed, m/s, of each thruster in one draw.
+#[derive(Debug, Clone, PartialEq)]
+pub struct Performance(Vec<(f64, f64)>);
+
+impl Performance {
+    /// Nominal.
+    #[must_use]
+    pub fn nominal(propulsion: &Propulsion) -> Self {
+        Self(propulsion.thrusters.iter().map(|t| (t.thrust_n.nominal(), t.exhaust_speed.nominal())).collect())
+    }
+
+    /// In a draw.
+    #[must_use]
+    pub fn in_draw(propulsion: &Propulsion, draw: &Draw) -> Self {
+        Self(propulsion.thrusters.iter().map(|t| (t.thrust_n.in_draw(draw), t.exhaust_speed.in_draw(draw))).collect())
+    }
+}
+
+/// Prices and allocations of a layout about one centre of mass.
+#[derive(Debug, Clone)]
+pub struct Pricer {
+    generators: Vec<Generator>,
+    capability: Capability,
+    limits: PulseLimits,
+}
+
+impl Pricer {
+    /// The layout of `propulsion` about a centre of mass, with its own choice of net force.
+    #[must_use]
+    pub fn new(propulsion: &Propulsion, centre_of_mass_m: &Vector3<f64>) -> Self {
+        let net = match propulsion.net_force {
+            NetForceChoice::Zero => NetForce::Zero,
+            NetForceChoice::Any => NetForce::Any,
+        };
+        let generators = Self::generators(propulsion, centre_of_mass_m);
+        let capability = Capability::new(&generators, net);
+        Self { generators, capability, limits: propulsion.pulses.clone() }
+    }
+
+    /// The thrusters as generators of torque about a centre of mass, nominal performance.
+    #[must_use]
+    pub fn generators(propulsion: &Propulsion, centre_of_mass_m: &Vector3<f64>) -> Vec<Generator> {
+        let one = |t: &crate::vehicle::Thruster| {
+            let push = t.push.into_inner();
+            Generator::thruster(t.position_m, push, *centre_of_mass_m, t.thrust_n.nominal(), t.exhaust_speed.nominal())
+        };
+        propulsion.thrusters.iter().map(one).collect()
+    }
+
+    /// The thrusters as generators.
+    #[must_use]
+    pub fn layout(&self) -> &[Generator] {
+        &self.generators
+    }
+
+    /// Attainable torque under the choice of net force.
+    #[must_use]
+    pub fn authority(&self) -> &Authority {
+        &self.capability.authority
+    }
+
+    /// Price map under the choice of net force.
+    #[must_use]
+    pub fn price_map(&self) -> &PriceMap {
+        &self.capability.price
+    }
+
+    /// The thrusters to fire for an angular impulse and the impulse of each, from the price's active set.
+    fn basis(&self, impulse_n_m_s: &Vector3<f64>) -> Option<&Basis> {
+        self.capability.price.basis(impulse_n_m_s)
+    }
+
+    /// Adds up propellant, kg, of giving an angular impulse (N·m·s) `times` times; counts pulses into `cycles`.
+    ///
+    /// The thrusters and their impulses are chosen at nominal performance, as on-board software does;
+    /// the propellant follows the performance of the draw. `None` if the layout cannot give it.
+    #[must_use]
+    pub fn cost(&self, impulse_n_m_s: &Vector3<f64>, times: f64, performance: &Performance, cycles: &mut [f64]) -> Option<f64> {
+        if impulse_n_m_s.norm_squared() <= 0.0 {
+            return Some(0.0);
+        }
+        let basis = self.basis(impulse_n_m_s)?;
+        let mut total_kg = 0.0;
+        for (row, index) in basis.active.iter().enumerate() {
+            let impulse: f64 = (0..3).map(|axis| basis.allocation[(row, axis)] * impulse_n_m_s[axis]).sum();
+            let (thrust, speed) = performance.0[*index];
+            let firing = fire(impulse, thrust, speed, &self.limits);
+            total_kg += firing.propellant_kg * times;
+            cycles[*index] += firing.pulses * times;
+        }
+        Some(total_kg)
+    }
+
+    /// Firing of one thruster at nominal performance.
+    #[must_use]
+    pub fn firing(&self, thruster: usize, impulse_n_s: f64) -> Firing {
+        let own = &self.generators[thruster];
+        fire(impulse_n_s, own.most, own.cost.recip(), &self.limits)
+    }
+
+    /// What valves can do.
+    #[must_use]
+    pub fn limits(&self) -> &PulseLimits {
+        &self.limits
+    }
+}
