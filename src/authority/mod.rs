@@ -1,1 +1,15 @@
-//! The `authority` room of the pipeline.
+//! What torque a set of thrusters or wheels can make, exactly and in every direction, and what it costs.
+//!
+//! In go [`Generator`]s: torque and force per unit level, bounds, cost. Out come an [`Authority`] (the attainable
+//! torques as half-spaces) and a [`PriceMap`] (the least propellant for any angular impulse), each with or without
+//! net force, and both for a list of failures with [`cases`]. The room knows no orbits, configuration or names.
+
+mod cases;
+mod envelope;
+mod generator;
+mod price;
+
+pub use cases::{Capability, Case, cases, single_failures};
+pub use envelope::{Authority, HalfSpace};
+pub use generator::{Generator, NetForce};
+pub use price::{Basis, Price, PriceMap, Vertex};
