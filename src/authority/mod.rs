@@ -4,12 +4,20 @@
 //! torques as half-spaces) and a [`PriceMap`] (the least propellant for any angular impulse), each with or without
 //! net force, and both for a list of failures with [`cases`]. The room knows no orbits, configuration or names.
 
+mod balance;
 mod cases;
+mod edges;
 mod envelope;
+mod facets;
 mod generator;
+mod linear;
+mod opening;
+mod planes;
 mod price;
+mod reduced;
+mod simplex;
 
-pub use cases::{Capability, Case, cases, single_failures};
+pub use cases::{Capability, Case, cases, single_failures, without};
 pub use envelope::{Authority, HalfSpace};
 pub use generator::{Generator, NetForce};
 pub use price::{Basis, Price, PriceMap, Vertex};
