@@ -2,14 +2,19 @@
 //!
 //! The modules stand in the order of the pipeline; each imports only what is above it.
 
-// The order is the pipeline's; alphabetical order would hide it.
+// Rustfmt would sort them; the order is the pipeline's.
 #[rustfmt::skip]
-mod pipeline {}
+mod rooms {}
 
 pub mod units;
 pub mod uncertain;
 pub mod config;
 pub mod vehicle;
+pub mod authority;
 pub mod environment;
 pub mod mission;
 pub mod disturbance;
+pub mod momentum;
+pub mod pulses;
+pub mod propellant;
+pub mod lifetime;

@@ -174,7 +174,8 @@ impl PriceMap {
 
     /// The basis to fire for `h`: of the best vertex the first without a negative impulse. On a border between vertices
     /// rounding may have picked the neighbour, so the others are asked next.
-    fn basis(&self, h: &Vector3<f64>) -> Option<&Basis> {
+    #[must_use]
+    pub fn basis(&self, h: &Vector3<f64>) -> Option<&Basis> {
         let best = self.vertices.get(self.best_vertex(h))?;
         let mut least_bad: Option<(&Basis, f64)> = None;
         for basis in best

@@ -65,8 +65,8 @@ fn force_features(torque_about_origin: Vector3<f64>, force: Vector3<f64>, out: &
 }
 
 /// The four features of [`force_features`], each multiplied by `factors`.
-fn with_arms(factors: &[Factor]) -> impl Iterator<Item = Feature> + '_ {
+fn with_arms(factors: &[Factor]) -> Vec<Feature> {
     let own = Feature::new(factors.to_vec());
-    let arms = (0..3).map(|axis| Feature::new([factors, &[Factor::CentreOfMass(axis)]].concat()));
-    std::iter::once(own).chain(arms)
+    let arms = (0..3).map(|axis| own.times(Factor::CentreOfMass(axis)));
+    std::iter::once(own.clone()).chain(arms).collect()
 }

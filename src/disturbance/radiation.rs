@@ -55,7 +55,7 @@ impl Source for Radiation {
         let shares = self.optics.iter().flatten().map(|share| share.factor);
         std::iter::once(None)
             .chain(shares)
-            .flat_map(|factor| with_arms(&factor.into_iter().collect::<Vec<Factor>>()).collect::<Vec<_>>())
+            .flat_map(|factor| with_arms(&factor.into_iter().collect::<Vec<Factor>>()))
             .collect()
     }
 

@@ -167,8 +167,7 @@ impl Orbit {
     /// From the frame of the node and the plane to I.
     fn plane(&self, elapsed_s: f64) -> Rotation3<f64> {
         let node = self.elements.ascending_node_rad + self.node_rate * elapsed_s;
-        Rotation3::from_axis_angle(&Vector3::z_axis(), node)
-            * Rotation3::from_axis_angle(&Vector3::x_axis(), self.elements.inclination_rad)
+        Rotation3::from_axis_angle(&Vector3::z_axis(), node) * Rotation3::from_axis_angle(&Vector3::x_axis(), self.elements.inclination_rad)
     }
 }
 

@@ -1,1 +1,16 @@
-//! The `lifetime` room of the pipeline.
+//! One whole mission flown once.
+//!
+//! [`Plan`] holds all that chance does not touch; a draw of everything uncertain turns it into an
+//! [`Outcome`]. Flying is pure, and flying many draws at once gives the same outcomes.
+
+mod engine;
+mod outcome;
+mod plan;
+mod policy;
+
+pub use outcome::Outcome;
+pub use plan::{Plan, PlanError};
+pub use policy::UnloadRate;
+
+/// Lifetimes flown together: one matrix product of this width.
+pub const BLOCK: usize = 64;

@@ -54,7 +54,7 @@ fn side(text: &str, offset: usize) -> Result<Side<'_>, QuantityError> {
 }
 
 enum Split<'a> {
-    Alone(&'a str),
+    Alone,
     PlusMinus(&'a str, &'a str, usize),
     Range(&'a str, &'a str, usize),
 }
@@ -67,7 +67,7 @@ fn split(text: &str) -> Split<'_> {
     }
     match text.split_once("..") {
         Some((left, right)) => Split::Range(left, right, left.len() + 2),
-        None => Split::Alone(text),
+        None => Split::Alone,
     }
 }
 
@@ -97,7 +97,7 @@ fn read(text: &str, asked: Asked<'_>, count: usize) -> Result<[Spread; 3], Quant
         Ok([x?, y?, z?])
     };
     match split(text) {
-        Split::Alone(_) => {
+        Split::Alone => {
             let numbers = spread_over(&first_side(text)?, count, text)?;
             Ok(scaled(numbers, unit(&side(text, 0)?)?)?.map(Spread::Fixed))
         }

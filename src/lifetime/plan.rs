@@ -1,0 +1,179 @@
+//! All that chance does not touch, computed once.
+
+use crate::authority::{Authority, Price};
+use crate::mission::{Scenario, UnloadPolicy};
+use crate::momentum::{FoldedBasis, MassHistory, PhaseMomentum, RawBasis, Resolution, Stratum, phase_momentum, simulate_all, strata, wheel_envelope, wheel_torque};
+use crate::pulses::Pricer;
+use crate::uncertain::Draw;
+use crate::vehicle::Vehicle;
+
+use super::policy::Filling;
+
+/// Why a mission cannot be flown.
+#[derive(Debug, Clone, PartialEq, thiserror::Error)]
+pub enum PlanError {
+    /// The layout cannot make the torques that the mission asks of it.
+    #[error(
+        "the thrusters cannot unload the wheels or stop the spacecraft in every direction: under `propulsion.net_force: {net_force}` \
+         no firing turns the spacecraft along ({:.3}, {:.3}, {:.3}) in the body frame", along[0], along[1], along[2]
+    )]
+    NotServed {
+        /// Direction, unit, body frame.
+        along: [f64; 3],
+        /// The choice in force: `zero` or `any`.
+        net_force: &'static str,
+    },
+}
+
+/// A mission ready to be flown with any draw.
+#[derive(Debug, Clone)]
+pub struct Plan {
+    pub(super) scenario: Scenario,
+    pub(super) strata: Vec<Stratum>,
+    raw: RawBasis,
+    pub(super) basis: FoldedBasis,
+    pub(super) nominal: Draw,
+    pub(super) filling: Option<Filling>,
+    wheel_torque: Option<Authority>,
+    /// Layouts about the centres of mass that matter, and which of them each stratum takes.
+    pub(super) pricers: Vec<Pricer>,
+    pub(super) pricer_of: Vec<usize>,
+    /// Margin on attitude control, as a share.
+    pub(super) margin: f64,
+}
+
+impl Plan {
+    /// Simulates the mission and prices the layout.
+    ///
+    /// `margin` is a share of the attitude-control rows. The first flight, with a full tank throughout,
+    /// gives the propellant on board over time; mass properties then follow it.
+    ///
+    /// # Errors
+    /// The layout cannot make the torques that the mission asks of it.
+    pub fn new(scenario: Scenario, resolution: Resolution, margin: f64) -> Result<Self, PlanError> {
+        let strata = strata(&scenario.mission, resolution);
+        let raw = simulate_all(&scenario, &strata);
+        let full = MassHistory::constant(scenario.vehicle.tank.loaded_kg);
+        let filling = scenario.vehicle.wheels.as_ref().map(|wheels| {
+            let envelope = wheel_envelope(wheels);
+            let reserve = wheels.reserve_n_m_s / envelope.guaranteed();
+            Filling { envelope, reserve }
+        });
+        let mut plan = Self {
+            basis: FoldedBasis::new(&scenario, &strata, &raw, &full),
+            nominal: scenario.parameters.nominal(),
+            filling,
+            wheel_torque: scenario.vehicle.wheels.as_ref().map(wheel_torque),
+            pricers: Vec::new(),
+            pricer_of: Vec::new(),
+            margin,
+            strata,
+            raw,
+            scenario,
+        };
+        plan.price_layout()?;
+        let history = plan.mass_history();
+        plan.basis = FoldedBasis::new(&plan.scenario, &plan.strata, &plan.raw, &history);
+        plan.price_layout()?;
+        Ok(plan)
+    }
+
+    /// Propellant on board over the nominal mission.
+    fn mass_history(&self) -> MassHistory {
+        let loaded = self.scenario.vehicle.tank.loaded_kg;
+        let outcome = self.fly(&self.nominal);
+        let ends = self.strata.iter().zip(&outcome.used_kg);
+        let points = ends.map(|(stratum, used)| (stratum.start_s + stratum.duration_s, (loaded - used).max(0.0)));
+        MassHistory::new(std::iter::once((0.0, loaded)).chain(points).collect())
+    }
+
+    fn price_layout(&mut self) -> Result<(), PlanError> {
+        let propulsion = &self.scenario.vehicle.propulsion;
+        // A couple has no reference point: without net force one centre of mass serves all strata.
+        let pure = propulsion.net_force == crate::config::NetForceChoice::Zero;
+        let centres = self.basis.masses.iter().map(|mass| mass.centre_of_mass_m).take(if pure { 1 } else { usize::MAX });
+        self.pricers = centres.map(|centre| Pricer::new(propulsion, &centre)).collect();
+        self.pricer_of = (0..self.strata.len()).map(|k| k.min(self.pricers.len() - 1)).collect();
+        if !self.needs_thrusters() {
+            return Ok(());
+        }
+        let refused = self.pricers.iter().find_map(|pricer| pricer.price_map().rays.first());
+        match refused {
+            Some(ray) => Err(PlanError::NotServed { along: (*ray).into(), net_force: if pure { "zero" } else { "any" } }),
+            None => Ok(()),
+        }
+    }
+
+    fn needs_thrusters(&self) -> bool {
+        self.scenario.mission.phases.iter().any(|phase| phase.unload != UnloadPolicy::Never || !phase.events.is_empty())
+    }
+
+    /// The scenario it was made from.
+    #[must_use]
+    pub fn scenario(&self) -> &Scenario {
+        &self.scenario
+    }
+
+    /// The vehicle.
+    #[must_use]
+    pub fn vehicle(&self) -> &Vehicle {
+        &self.scenario.vehicle
+    }
+
+    /// The strata in order of time.
+    #[must_use]
+    pub fn strata(&self) -> &[Stratum] {
+        &self.strata
+    }
+
+    /// The folded basis.
+    #[must_use]
+    pub fn basis(&self) -> &FoldedBasis {
+        &self.basis
+    }
+
+    /// Every parameter at its nominal value.
+    #[must_use]
+    pub fn nominal(&self) -> &Draw {
+        &self.nominal
+    }
+
+    /// Momentum that the wheels can hold, if there are wheels.
+    #[must_use]
+    pub fn wheel_envelope(&self) -> Option<&Authority> {
+        self.filling.as_ref().map(|filling| &filling.envelope)
+    }
+
+    /// Torque that the wheels can make, if there are wheels.
+    #[must_use]
+    pub fn wheel_torque(&self) -> Option<&Authority> {
+        self.wheel_torque.as_ref()
+    }
+
+    /// Names of the sources of torque, in the order of [`PhaseMomentum`].
+    #[must_use]
+    pub fn sources(&self) -> &[&'static str] {
+        &self.raw.sources
+    }
+
+    /// Nominal torque and momentum by source, phase by phase.
+    #[must_use]
+    pub fn phase_momentum(&self) -> Vec<PhaseMomentum> {
+        phase_momentum(&self.scenario, &self.strata, &self.raw, &self.basis.masses)
+    }
+
+    /// The layout about the centre of mass of a stratum.
+    #[must_use]
+    pub fn pricer(&self, stratum: usize) -> &Pricer {
+        &self.pricers[self.pricer_of[stratum]]
+    }
+
+    /// Least propellant for an angular impulse in a stratum, kg, or `None` if no firing gives it.
+    #[must_use]
+    pub fn price(&self, stratum: usize, impulse_n_m_s: &nalgebra::Vector3<f64>) -> Option<f64> {
+        match self.pricer(stratum).price_map().price(impulse_n_m_s) {
+            Price::Served { kg } => Some(kg),
+            Price::NotServed { .. } => None,
+        }
+    }
+}
