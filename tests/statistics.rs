@@ -109,7 +109,9 @@ fn moments_reproduce_certified_values() {
     ];
     for (values, mean, sd) in sets {
         let mut pushed = Moments::new();
-        values.iter().for_each(|&value| pushed.push(value));
+        for &value in &values {
+            pushed.push(value);
+        }
         let mut merged = Moments::new();
         for part in values.chunks(97) {
             merged.merge(&Moments::from_slice(part));

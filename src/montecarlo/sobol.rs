@@ -46,7 +46,7 @@ pub struct Indices {
 ///
 /// with the mean m and the variance V of f(A) and f(B) together. The same seed and names give the
 /// same answer whatever the number of threads. A result that does not vary gives zeros; one that is
-/// not finite makes every estimate NaN.
+/// not finite leaves estimates that are not finite. Columns that no driver lists vary with A and B.
 ///
 /// # Panics
 ///
