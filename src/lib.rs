@@ -18,3 +18,4 @@ pub mod momentum;
 pub mod pulses;
 pub mod propellant;
 pub mod lifetime;
+pub mod montecarlo;

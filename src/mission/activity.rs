@@ -6,7 +6,7 @@ use crate::uncertain::{Parameters, Uncertain};
 use crate::vehicle::Faults;
 
 /// Levels between which density is interpolated when the activity is uncertain.
-const LEVELS: usize = 7;
+const LEVELS: usize = 5;
 
 /// Solar activity, constant over a lifetime: one level, or several levels and where between them a draw lies.
 #[derive(Debug, Clone)]

@@ -6,7 +6,7 @@ use nalgebra::{DMatrix, Vector3};
 
 use super::{RawBasis, Stratum};
 use crate::disturbance::{Factor, Feature};
-use crate::mission::{Phase, Scenario};
+use crate::mission::{Phase, Scenario, UnloadPolicy};
 use crate::uncertain::{Draw, ParameterId};
 use crate::vehicle::{INERTIA_ELEMENTS, MassState};
 
@@ -58,7 +58,8 @@ pub struct FoldedBasis {
     /// Columns × features: momentum, N·m·s, per unit of the feature. Three rows a vector, in the order
     /// of `offsets`.
     pub matrix: DMatrix<f64>,
-    /// For each stratum, the row of its first window and of its first excursion.
+    /// For each stratum, the row of its first window and of its first excursion; excursions are kept
+    /// only where the fill of the wheels decides when to unload.
     pub offsets: Vec<(usize, usize)>,
     /// Nominal mass properties in each stratum.
     pub masses: Vec<MassState>,
@@ -133,14 +134,7 @@ impl FoldedBasis {
     pub fn new(scenario: &Scenario, strata: &[Stratum], raw: &RawBasis, history: &MassHistory) -> Self {
         let masses: Vec<MassState> =
             strata.iter().map(|stratum| scenario.vehicle.mass_state(history.at(stratum.start_s + stratum.duration_s / 2.0))).collect();
-        let mut rows = 0;
-        let mut offsets = Vec::with_capacity(strata.len());
-        for span in &raw.spans {
-            let windows = rows;
-            rows += 3 * span.windows.len();
-            offsets.push((windows, rows));
-            rows += 3 * span.excursions.len();
-        }
+        let (offsets, rows) = layout(scenario, strata, raw);
         let expanded: Vec<Vec<Vec<Term>>> = strata
             .iter()
             .zip(&masses)
@@ -158,18 +152,38 @@ impl FoldedBasis {
             *column = place;
         }
         let mut matrix = DMatrix::zeros(rows, index.len());
-        for ((span, offset), terms) in raw.spans.iter().zip(&offsets).zip(&expanded) {
+        for (((span, stratum), offset), terms) in raw.spans.iter().zip(strata).zip(&offsets).zip(&expanded) {
             let listed = |vectors: &[Vec<Vector3<f64>>], first: usize, matrix: &mut DMatrix<f64>| {
                 for (k, vectors) in vectors.iter().enumerate() {
                     add(vectors, terms, &index, first + 3 * k, matrix);
                 }
             };
             listed(&span.windows, offset.0, &mut matrix);
-            listed(&span.excursions, offset.1, &mut matrix);
+            if keeps_excursions(scenario, stratum) {
+                listed(&span.excursions, offset.1, &mut matrix);
+            }
         }
         let features = index.keys().map(|key| key.to_vec()).collect();
         Self { features, matrix, offsets, masses }
     }
+}
+
+/// Whether the momentum within an orbit decides when to unload.
+fn keeps_excursions(scenario: &Scenario, stratum: &Stratum) -> bool {
+    matches!(scenario.mission.phases[stratum.phase].unload, UnloadPolicy::AtFill(_))
+}
+
+/// Rows at which windows and excursions of each stratum begin, and how many rows there are.
+fn layout(scenario: &Scenario, strata: &[Stratum], raw: &RawBasis) -> (Vec<(usize, usize)>, usize) {
+    let mut rows = 0;
+    let mut offsets = Vec::with_capacity(strata.len());
+    for (span, stratum) in raw.spans.iter().zip(strata) {
+        let windows = rows;
+        rows += 3 * span.windows.len();
+        offsets.push((windows, rows));
+        rows += if keeps_excursions(scenario, stratum) { 3 * span.excursions.len() } else { 0 };
+    }
+    (offsets, rows)
 }
 
 fn add(vectors: &[Vector3<f64>], terms: &[Vec<Term>], index: &BTreeMap<&[PlanFactor], usize>, row: usize, matrix: &mut DMatrix<f64>) {

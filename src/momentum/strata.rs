@@ -5,7 +5,7 @@ use crate::mission::{Mission, Phase, UnloadPolicy};
 /// How finely the mission is simulated.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
 pub enum Resolution {
-    /// One span stands for about two weeks, at eight phases of the orbit.
+    /// One span stands for about four weeks, at eight phases of the orbit.
     Default,
     /// Every unload has its own span.
     Full,
@@ -67,9 +67,9 @@ impl Span {
 
 const DAY_S: f64 = 86_400.0;
 
-/// Length of time that one span stands for at default resolution: a 26th of a year, so that the
-/// seasons are sampled twenty-six times.
-const STRATUM_S: f64 = 365.25 / 26.0 * DAY_S;
+/// Length of time that one span stands for at default resolution: a 13th of a year, so that the
+/// seasons are sampled thirteen times.
+const STRATUM_S: f64 = 365.25 / 13.0 * DAY_S;
 
 /// Fewest spans a phase is given, if it has that many unloads.
 const FEWEST: f64 = 4.0;
