@@ -64,7 +64,7 @@ pub fn density_kg_per_m3(epoch: Epoch, earth_fixed_position_m: &Vector3<f64>, ac
             local_solar_time_h: (seconds_of_day / 3600.0 + longitude_deg / 15.0).rem_euclid(24.0),
             f107_average: activity.f107_average,
             f107: activity.f107,
-            magnetic: MagneticActivity::Daily(activity.ap),
+            magnetic: MagneticActivity::Daily { ap: activity.ap },
         })
         .total_mass;
     if density.is_finite() { density.max(0.0) } else { 0.0 }

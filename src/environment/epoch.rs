@@ -78,8 +78,8 @@ impl Epoch {
             Ok(timestamp) => Ok(Self::from_timestamp(timestamp)),
             Err(_) if is_plain_date(text) => {
                 let date: Date = text.parse().map_err(not_a_date)?;
-                let midnight = date.to_zoned(TimeZone::UTC).map_err(not_a_date)?;
-                Ok(Self::from_timestamp(midnight.timestamp()))
+                let midnight = TimeZone::UTC.to_timestamp(date.at(0, 0, 0, 0)).map_err(not_a_date)?;
+                Ok(Self::from_timestamp(midnight))
             }
             Err(_) if text.parse::<DateTime>().is_ok() => Err(EpochError::NoZone(text.to_owned())),
             Err(cause) => Err(not_a_date(cause)),

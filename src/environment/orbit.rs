@@ -167,8 +167,7 @@ impl Orbit {
     /// From the frame of the node and the plane to I.
     fn plane(&self, elapsed_s: f64) -> Rotation3<f64> {
         let node = self.elements.ascending_node_rad + self.node_rate * elapsed_s;
-        Rotation3::from_axis_angle(&Vector3::z_axis(), node)
-            * Rotation3::from_axis_angle(&Vector3::x_axis(), self.elements.inclination_rad)
+        Rotation3::from_axis_angle(&Vector3::z_axis(), node) * Rotation3::from_axis_angle(&Vector3::x_axis(), self.elements.inclination_rad)
     }
 }
 
@@ -247,6 +246,6 @@ pub fn sun_synchronous_inclination(semi_major_axis_m: f64, eccentricity: f64, bo
 pub fn node_of_local_time(epoch: Epoch, hours: f64) -> f64 {
     let t = epoch.julian_centuries_tt();
     let mean_sun_of_date = 280.466_46 + t * (36_000.769_83 + t * 0.000_303_2);
-    let precession = t * 4612.156_5 / 3600.0;
+    let precession = t * 4_612.156_5 / 3600.0;
     (mean_sun_of_date - precession + (hours - 12.0) * 15.0).rem_euclid(360.0).to_radians()
 }
