@@ -59,8 +59,8 @@ fn spherical(latitude_deg: f64, longitude_deg: f64) -> [Vector3<f64>; 3] {
     [Vector3::new(c * cl, c * sl, s), Vector3::new(s * cl, s * sl, -c), Vector3::new(-sl, cl, 0.0)]
 }
 
-// Source: astropy 7.0.0, built-in ephemeris. The low-precision theory claims 0.01°, and 1e-4 of the distance is far more
-// than its terms leave.
+// Source: astropy 7.0.0, built-in ephemeris. The theory claims 0.01°. Its distance leaves out the Moon and the planets, which
+// move the Earth by some 1e-5 au each: 1e-4.
 #[test]
 fn the_sun_stands_where_astropy_puts_it() {
     for row in reference().sun {
@@ -95,7 +95,8 @@ fn the_field_is_that_of_ppigrf() {
     }
 }
 
-// Source: PyPI nrlmsise00 0.1.2 (the C port), gtd7d. The place goes through our own geodetic coordinates here.
+// Source: PyPI nrlmsise00 0.1.2 (the C port), gtd7d. The model rounds 2π/24 to 0.2618, so local times a day apart differ by
+// 1e-5; the place goes through our own geodetic coordinates.
 #[test]
 fn the_air_is_as_dense_as_the_c_port_has_it() {
     for row in reference().density {
