@@ -132,3 +132,25 @@ fn julian_dates_are_those_of_hifitime() {
         assert_abs_diff_eq!(ours.julian_date_utc(), theirs.to_jde_utc_days(), epsilon = 1e-9);
     }
 }
+
+// Source: the same, in TAI (its difference of two UTC epochs counts no leap second). Every half year from 1972 to 2026.
+#[test]
+fn leap_seconds_are_those_of_hifitime() {
+    let mut steps = 0;
+    for year in 1972..2027 {
+        for (last, first) in [(format!("{year}-06-30"), format!("{year}-07-01")), (format!("{year}-12-31"), format!("{}-01-01", year + 1))]
+        {
+            let (before, after) = (format!("{last}T23:59:58"), format!("{first}T00:00:00"));
+            let ours = |text: &str| Epoch::parse(&format!("{text}Z")).unwrap();
+            let theirs = |text: &str| format!("{text} UTC").parse::<Hifitime>().unwrap().to_tai_seconds();
+            let span = ours(&after).tt_seconds() - ours(&before).tt_seconds();
+            assert_abs_diff_eq!(span, theirs(&after) - theirs(&before), epsilon = 1e-6);
+            // Back to UTC on both sides.
+            for text in [&before, &after] {
+                assert_eq!(ours(text).to_string(), format!("{text}Z"));
+            }
+            steps += i32::from(span > 2.5);
+        }
+    }
+    assert_eq!(steps, 27);
+}
