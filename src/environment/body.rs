@@ -11,7 +11,6 @@ pub const SPEED_OF_LIGHT_M_PER_S: f64 = 299_792_458.0;
 
 /// The body the spacecraft orbits. Its pole is taken as the third axis of the inertial frame.
 #[derive(Debug, Clone, Copy, PartialEq)]
-#[non_exhaustive]
 pub struct Body {
     /// Name in English.
     pub name: &'static str,

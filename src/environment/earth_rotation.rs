@@ -29,9 +29,9 @@ pub fn earth_fixed_from_inertial(epoch: Epoch) -> Rotation3<f64> {
 /// Rotation from I to the mean equator and equinox of date, by precession alone.
 pub(super) fn mean_of_date_from_inertial(epoch: Epoch) -> Rotation3<f64> {
     let t = epoch.julian_centuries_tt();
-    let zeta = arcseconds(2.650_545 + t * (2306.083_227 + t * (0.298_849_9 + t * 0.018_018_28)));
-    let z = arcseconds(-2.650_545 + t * (2306.077_181 + t * (1.092_734_8 + t * 0.018_268_37)));
-    let theta = arcseconds(t * (2004.191_903 + t * (-0.429_493_4 - t * 0.041_822_64)));
+    let zeta = arcseconds(2.650_545 + t * (2_306.083_227 + t * (0.298_849_9 + t * 0.018_018_28)));
+    let z = arcseconds(-2.650_545 + t * (2_306.077_181 + t * (1.092_734_8 + t * 0.018_268_37)));
+    let theta = arcseconds(t * (2_004.191_903 + t * (-0.429_493_4 - t * 0.041_822_64)));
     let tilt = Rotation3::from_axis_angle(&Vector3::y_axis(), -theta);
     rotate_frame_z(-z) * tilt * rotate_frame_z(-zeta)
 }
@@ -41,7 +41,7 @@ pub(super) fn mean_sidereal_time_rad(epoch: Epoch) -> f64 {
     let days = epoch.ut_days_since_j2000();
     let t = epoch.julian_centuries_tt();
     let rotation_angle = TAU * (0.779_057_273_264_0 + 0.002_737_811_911_354_48 * days + days.rem_euclid(1.0));
-    let precession = arcseconds(0.014_506 + t * (4612.156_534 + t * (1.391_581_7 - t * 4.4e-7)));
+    let precession = arcseconds(0.014_506 + t * (4_612.156_534 + t * (1.391_581_7 - t * 4.4e-7)));
     (rotation_angle + precession).rem_euclid(TAU)
 }
 

@@ -178,3 +178,28 @@ fn parse(text: &str) -> Table {
         .collect();
     Table { years, rows }
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn every_coefficient_of_the_file_is_read_once() {
+        let table = table();
+        assert_eq!(table.years.len(), 27);
+        // 13 · 15 pairs of degree and order, the h of order 0 left out.
+        assert_eq!(table.rows.len(), 195);
+        assert!(table.rows.iter().all(|(_, _, values)| values.len() == 27));
+    }
+
+    #[test]
+    fn spans_of_the_table_hold_leap_days() {
+        // 2020 to 2025 has two leap days: 1827 days.
+        let (span, fraction) = span_of(&table().years, Epoch::parse("2020-01-02").unwrap());
+        assert_eq!(span, 24);
+        approx::assert_abs_diff_eq!(fraction, 1.0 / 1827.0, epsilon = 1e-9);
+        let (span, fraction) = span_of(&table().years, Epoch::parse("2035-01-01").unwrap());
+        assert_eq!(span, 25);
+        approx::assert_abs_diff_eq!(fraction, 3652.0 / 1826.0, epsilon = 1e-9);
+    }
+}

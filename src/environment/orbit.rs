@@ -246,6 +246,24 @@ pub fn sun_synchronous_inclination(semi_major_axis_m: f64, eccentricity: f64, bo
 pub fn node_of_local_time(epoch: Epoch, hours: f64) -> f64 {
     let t = epoch.julian_centuries_tt();
     let mean_sun_of_date = 280.466_46 + t * (36_000.769_83 + t * 0.000_303_2);
-    let precession = t * 4612.156_5 / 3600.0;
+    let precession = t * 4_612.156_5 / 3600.0;
     (mean_sun_of_date - precession + (hours - 12.0) * 15.0).rem_euclid(360.0).to_radians()
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn keplers_equation_is_solved_for_every_ellipse() {
+        for e in [0.0, 1e-9, 0.3, 0.9, 0.999, 0.999_999_9] {
+            for k in -4000..4000 {
+                let mean = f64::from(k) * 0.003_7;
+                let root = eccentric_anomaly(mean, e);
+                // The equation holds up to whole turns.
+                let off = (root - e * root.sin() - mean + PI).rem_euclid(TAU) - PI;
+                assert!(off.abs() < 1e-13 * 20.0, "e {e}, M {mean}: {off}");
+            }
+        }
+    }
 }
