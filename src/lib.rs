@@ -11,6 +11,7 @@ pub mod uncertain;
 pub mod config;
 pub mod vehicle;
 pub mod authority;
+pub mod layout;
 pub mod environment;
 pub mod mission;
 pub mod disturbance;

@@ -7,11 +7,13 @@ mod attitude;
 mod event;
 mod orbit;
 mod phase;
+mod settings;
 
 pub use activity::SolarActivity;
 pub use attitude::NadirAttitude;
 pub use event::{Event, EventKind};
 pub use phase::{Phase, UnloadPolicy};
+pub use settings::{Bound, Requirement, Settings};
 
 use crate::config::Spec;
 use crate::environment::Epoch;
@@ -80,6 +82,10 @@ pub struct Scenario {
     pub mission: Mission,
     /// What is uncertain.
     pub parameters: Parameters,
+    /// How the budget is made.
+    pub settings: Settings,
+    /// What must hold.
+    pub requirements: Vec<Requirement>,
 }
 
 impl Scenario {
@@ -91,8 +97,12 @@ impl Scenario {
         let (mut parameters, mut faults) = (Parameters::default(), Faults::new());
         let vehicle = Vehicle::new(spec, &mut parameters, &mut faults);
         let mission = Mission::new(spec, spec.wheels.is_some(), &mut parameters, &mut faults);
-        match (vehicle, mission) {
-            (Some(vehicle), Some(mission)) => Ok(Self { vehicle, mission, parameters }),
+        let settings = settings::settings(&spec.budget, &mut faults);
+        let requirements = settings::requirements(spec, &mut faults);
+        match (vehicle, mission, settings) {
+            (Some(vehicle), Some(mission), Some(settings)) if faults.count() == 0 => {
+                Ok(Self { vehicle, mission, parameters, settings, requirements })
+            }
             _ => Err(faults.into_inner()),
         }
     }

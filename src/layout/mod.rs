@@ -1,0 +1,172 @@
+//! What the thruster layout of a vehicle can do, case by case.
+//!
+//! In: a vehicle. Out: for each set of thrusters lost and each end of the centre-of-mass travel, the
+//! torque in every direction and its price, with names. Knows nothing of missions.
+
+use nalgebra::Vector3;
+
+use crate::authority::{Capability, Generator, Price, cases};
+use crate::vehicle::{Thruster, Vehicle};
+
+/// Why thrusters are out.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub enum OutBecause {
+    /// All work.
+    None,
+    /// One thruster failed.
+    Thruster,
+    /// A string's latch valve is shut.
+    String,
+}
+
+/// Which end of the centre-of-mass travel.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub enum TravelEnd {
+    /// Full tank.
+    Start,
+    /// Empty tank.
+    End,
+}
+
+/// Torque about one signed body axis.
+#[derive(Debug, Clone, PartialEq)]
+pub struct AxisTorque {
+    /// `+x`, `-x` and so on.
+    pub axis: &'static str,
+    /// Most torque, N·m.
+    pub most_n_m: f64,
+    /// Price, kg/(N·m·s); `None` if no firing gives it.
+    pub price: Option<f64>,
+    /// Names of the thrusters that give it for that price.
+    pub thrusters: Vec<String>,
+}
+
+/// Torque in every direction under one force condition.
+#[derive(Debug, Clone, PartialEq)]
+pub struct Verdict {
+    /// Whether there is torque in every direction.
+    pub every_direction: bool,
+    /// Torque available in every direction, N·m.
+    pub guaranteed_n_m: f64,
+    /// Direction that allows no more, unit, body frame.
+    pub weakest_direction: Vector3<f64>,
+    /// Direction of the dearest angular impulse and its price, kg/(N·m·s); `None` if some cannot be given.
+    pub dearest: Option<(Vector3<f64>, f64)>,
+    /// The six signed axes.
+    pub axes: Vec<AxisTorque>,
+}
+
+/// One case of a layout.
+#[derive(Debug, Clone, PartialEq)]
+pub struct LayoutCase {
+    /// Names of the thrusters that are out.
+    pub thrusters_out: Vec<String>,
+    /// Why.
+    pub out_because: OutBecause,
+    /// End of the travel.
+    pub travel_end: TravelEnd,
+    /// Centre of mass there, body frame, m.
+    pub centre_of_mass_m: Vector3<f64>,
+    /// Rank of the attainable torques.
+    pub torque_rank: usize,
+    /// Rank of torque and force together.
+    pub wrench_rank: usize,
+    /// With no net force.
+    pub pure_torque: Verdict,
+    /// With any net force.
+    pub any_force: Verdict,
+}
+
+/// The signed body axes in the order of results.
+pub const AXES: [(&str, [f64; 3]); 6] = [
+    ("+x", [1.0, 0.0, 0.0]),
+    ("-x", [-1.0, 0.0, 0.0]),
+    ("+y", [0.0, 1.0, 0.0]),
+    ("-y", [0.0, -1.0, 0.0]),
+    ("+z", [0.0, 0.0, 1.0]),
+    ("-z", [0.0, 0.0, -1.0]),
+];
+
+/// Nominal centre of mass at both ends of its travel: full tank, empty tank.
+#[must_use]
+pub fn travel(vehicle: &Vehicle) -> [(TravelEnd, Vector3<f64>); 2] {
+    let at = |propellant_kg: f64| vehicle.mass_state(propellant_kg).centre_of_mass_m;
+    [(TravelEnd::Start, at(vehicle.tank.loaded_kg)), (TravelEnd::End, at(0.0))]
+}
+
+/// The intact layout at both ends of the travel.
+#[must_use]
+pub fn intact(vehicle: &Vehicle) -> Vec<LayoutCase> {
+    solve(vehicle, &[(OutBecause::None, Vec::new())])
+}
+
+/// The intact layout, every single thruster out, and every string of more than one thruster out, each
+/// at both ends of the travel.
+#[must_use]
+pub fn all_cases(vehicle: &Vehicle) -> Vec<LayoutCase> {
+    let thrusters = &vehicle.propulsion.thrusters;
+    let single = (0..thrusters.len()).map(|lost| (OutBecause::Thruster, vec![lost]));
+    let mut strings: Vec<&str> = thrusters.iter().map(|thruster| thruster.string.as_str()).collect();
+    strings.sort_unstable();
+    strings.dedup();
+    let members = |string: &str| -> Vec<usize> { (0..thrusters.len()).filter(|k| thrusters[*k].string == string).collect() };
+    let whole = strings.into_iter().map(members).filter(|lost| lost.len() > 1).map(|lost| (OutBecause::String, lost));
+    let lost: Vec<_> = std::iter::once((OutBecause::None, Vec::new())).chain(single).chain(whole).collect();
+    solve(vehicle, &lost)
+}
+
+fn solve(vehicle: &Vehicle, lost: &[(OutBecause, Vec<usize>)]) -> Vec<LayoutCase> {
+    let thrusters = &vehicle.propulsion.thrusters;
+    let sets: Vec<Vec<usize>> = lost.iter().map(|(_, set)| set.clone()).collect();
+    let mut found = Vec::new();
+    for (end, centre) in travel(vehicle) {
+        let generators: Vec<_> = thrusters.iter().map(|thruster| generator(thruster, &centre)).collect();
+        for ((because, set), case) in lost.iter().zip(cases(&generators, &sets)) {
+            found.push(LayoutCase {
+                thrusters_out: set.iter().map(|k| thrusters[*k].name.clone()).collect(),
+                out_because: *because,
+                travel_end: end,
+                centre_of_mass_m: centre,
+                torque_rank: case.any_force.authority.rank,
+                wrench_rank: case.pure_torque.authority.wrench_rank,
+                pure_torque: verdict(&case.pure_torque, thrusters),
+                any_force: verdict(&case.any_force, thrusters),
+            });
+        }
+    }
+    found
+}
+
+fn generator(thruster: &Thruster, centre: &Vector3<f64>) -> Generator {
+    let push = thruster.push.into_inner();
+    Generator::thruster(thruster.position_m, push, *centre, thruster.thrust_n.nominal(), thruster.exhaust_speed.nominal())
+}
+
+fn verdict(capability: &Capability, thrusters: &[Thruster]) -> Verdict {
+    let authority = &capability.authority;
+    let axes = AXES.map(|(axis, direction)| {
+        let direction = Vector3::from(direction);
+        let price = match capability.price.price(&direction) {
+            Price::Served { kg } => Some(kg),
+            Price::NotServed { .. } => None,
+        };
+        let firing = capability.price.allocate(&direction).unwrap_or_default();
+        let most = firing.iter().copied().fold(0.0, f64::max);
+        // Rounding leaves impulses of 1e-16 on thrusters that do not fire.
+        let named = thrusters.iter().zip(&firing).filter(|(_, impulse)| **impulse > 1e-9 * most);
+        AxisTorque {
+            axis,
+            most_n_m: authority.most(&direction),
+            price,
+            thrusters: named.map(|(thruster, _)| thruster.name.clone()).collect(),
+        }
+    });
+    Verdict {
+        every_direction: authority.every_direction(),
+        guaranteed_n_m: authority.guaranteed(),
+        weakest_direction: authority.weakest_direction(),
+        dearest: capability.price.dearest(),
+        axes: axes.to_vec(),
+    }
+}
+

@@ -1,0 +1,111 @@
+//! How the budget is made, and what must hold.
+
+use crate::config::{self, Figure, ResolutionChoice, Spec};
+use crate::units::{self, Dimension, Kind, kind};
+use crate::vehicle::Faults;
+
+/// How the budget is made.
+#[derive(Debug, Clone, PartialEq)]
+pub struct Settings {
+    /// Lifetimes drawn.
+    pub lifetimes: u64,
+    /// Seed of the draws.
+    pub seed: u64,
+    /// Margin on the attitude-control rows, as a share.
+    pub margin: f64,
+    /// Confidence of the limits on quantiles.
+    pub confidence: f64,
+    /// How finely the mission is simulated.
+    pub resolution: ResolutionChoice,
+}
+
+/// A bound on a figure.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub enum Bound {
+    /// The figure must not exceed it; SI.
+    AtMost(f64),
+    /// The figure must reach it; SI.
+    AtLeast(f64),
+}
+
+/// A requirement on a result.
+#[derive(Debug, Clone, PartialEq)]
+pub struct Requirement {
+    /// Name.
+    pub name: String,
+    /// The figure it bounds.
+    pub figure: Figure,
+    /// The bound.
+    pub bound: Bound,
+}
+
+impl Figure {
+    /// SI unit of the figure; empty for a share.
+    #[must_use]
+    pub const fn unit(self) -> &'static str {
+        self.words().1
+    }
+
+    /// Dimension, SI unit, name and example of the figure's kind.
+    const fn words(self) -> (Dimension, &'static str, &'static str, &'static str) {
+        match self {
+            Self::PropellantNominal | Self::PropellantP95 | Self::PropellantP99 => {
+                (kind::Mass::DIMENSION, kind::Mass::UNIT, kind::Mass::NAME, kind::Mass::EXAMPLE)
+            }
+            Self::ProbabilityEnough | Self::WheelFill => (kind::Number::DIMENSION, "", "a share", "95 %"),
+            Self::UnloadInterval => (kind::Time::DIMENSION, kind::Time::UNIT, kind::Time::NAME, "1 d"),
+            Self::GuaranteedPureTorque => (kind::Torque::DIMENSION, kind::Torque::UNIT, kind::Torque::NAME, kind::Torque::EXAMPLE),
+        }
+    }
+
+    /// What the figure is, in words.
+    #[must_use]
+    pub const fn name(self) -> &'static str {
+        match self {
+            Self::PropellantNominal => "attitude propellant, nominal",
+            Self::PropellantP95 => "attitude propellant, P95 upper limit",
+            Self::PropellantP99 => "attitude propellant, P99 upper limit",
+            Self::ProbabilityEnough => "probability that the load is enough",
+            Self::UnloadInterval => "shortest time between unloads",
+            Self::WheelFill => "largest fill of the wheels",
+            Self::GuaranteedPureTorque => "pure torque in every direction",
+        }
+    }
+}
+
+/// Most lifetimes of one run.
+const MOST_LIFETIMES: f64 = 1e8;
+
+pub(super) fn settings(written: &config::Budget, faults: &mut Faults) -> Option<Settings> {
+    let lifetimes = faults.within("budget.lifetimes", written.lifetimes.map_or(10_000.0, |n| n.0), 1.0, MOST_LIFETIMES, "a number of lifetimes");
+    let margin = faults.within("budget.margin", written.margin.map_or(0.0, |margin| margin.0), 0.0, 100.0, "a margin");
+    let confidence = faults.within("budget.confidence", written.confidence.map_or(0.95, |c| c.0), 0.5, 0.999_999, "a confidence");
+    #[expect(clippy::cast_possible_truncation, clippy::cast_sign_loss, reason = "checked to lie from 1 to 1e8")]
+    let lifetimes = lifetimes?.round() as u64;
+    Some(Settings { lifetimes, seed: written.seed.unwrap_or(1), margin: margin?, confidence: confidence?, resolution: written.resolution })
+}
+
+pub(super) fn requirements(spec: &Spec, faults: &mut Faults) -> Vec<Requirement> {
+    faults.unique("requirements", spec.requirements.iter().map(|requirement| requirement.name.as_str()));
+    let listed = spec.requirements.iter().enumerate();
+    listed.filter_map(|(index, written)| requirement(written, &format!("requirements[{index}]"), faults)).collect()
+}
+
+fn requirement(written: &config::Requirement, at: &str, faults: &mut Faults) -> Option<Requirement> {
+    let (key, text, make): (&str, &str, fn(f64) -> Bound) = match (&written.at_most, &written.at_least) {
+        (Some(text), None) => ("at_most", text, Bound::AtMost),
+        (None, Some(text)) => ("at_least", text, Bound::AtLeast),
+        _ => {
+            faults.push(at, "expected one of `at_most` and `at_least`", "keep one of them");
+            return None;
+        }
+    };
+    let (dimension, _, name, example) = written.figure.words();
+    match units::parse(text, dimension, name, example) {
+        Ok(limit) => Some(Requirement { name: written.name.clone(), figure: written.figure, bound: make(limit) }),
+        Err(error) => {
+            faults.push(&format!("{at}.{key}"), error.message, error.help);
+            None
+        }
+    }
+}
