@@ -2,10 +2,6 @@
 //!
 //! The modules stand in the order of the pipeline; each imports only what is above it.
 
-// Rustfmt would sort them; the order is the pipeline's.
-#[rustfmt::skip]
-mod rooms {}
-
 pub mod units;
 pub mod uncertain;
 pub mod config;
@@ -20,3 +16,5 @@ pub mod pulses;
 pub mod propellant;
 pub mod lifetime;
 pub mod montecarlo;
+pub mod report;
+pub mod cli;

@@ -1,2 +1,7 @@
 //! The `couplet` command.
-fn main() {}
+
+use std::process::ExitCode;
+
+fn main() -> ExitCode {
+    couplet::cli::main()
+}

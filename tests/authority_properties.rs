@@ -180,8 +180,7 @@ fn turning_the_spacecraft_turns_the_answer() {
         let kind = KINDS[round % KINDS.len()];
         let here = about(&layout(kind, 9, &mut rng), Vector3::zeros());
         let turn = Rotation3::new(direction(&mut rng) * 2.0);
-        let turned: Vec<Generator> =
-            here.iter().map(|g| Generator { torque: turn * g.torque, force: turn * g.force, ..*g }).collect();
+        let turned: Vec<Generator> = here.iter().map(|g| Generator { torque: turn * g.torque, force: turn * g.force, ..*g }).collect();
         for net in BOTH {
             let (a, b) = (Authority::new(&here, net), Authority::new(&turned, net));
             let (p, q) = (PriceMap::new(&here, net), PriceMap::new(&turned, net));

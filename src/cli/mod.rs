@@ -1,1 +1,51 @@
-//! The `cli` room of the pipeline.
+//! The command: one file a subcommand. Only this room and `report` know of text and files.
+
+#![deny(clippy::expect_used, clippy::indexing_slicing)]
+
+mod args;
+mod budget;
+mod check;
+mod layout;
+mod momentum;
+mod output;
+mod scenario;
+mod unload;
+
+use std::process::ExitCode;
+
+use args::{Cli, Command};
+use clap::Parser;
+use output::Failure;
+
+/// Whether all requirements are met.
+type Outcome = Result<bool, Failure>;
+
+/// Runs the command line of this process; the status is 0 done, 1 a requirement is not met, 2 the input
+/// or the call is wrong, 3 a fault of the program or the machine.
+#[must_use]
+pub fn main() -> ExitCode {
+    let cli = match Cli::try_parse() {
+        Ok(cli) => cli,
+        Err(error) => {
+            // Help and version are answers; clap sends them to standard output and the rest to standard error.
+            let status = if error.use_stderr() { 2 } else { 0 };
+            let _ = error.print();
+            return ExitCode::from(status);
+        }
+    };
+    let outcome = match &cli.command {
+        Command::Budget(run) => budget::run(run),
+        Command::Layout(run) => layout::run(run),
+        Command::Momentum(run) => momentum::run(run),
+        Command::Unload(run) => unload::run(run),
+        Command::Check(run) => check::run(run),
+        Command::Schema(run) => check::schema(run),
+    };
+    match outcome {
+        Ok(met) => ExitCode::from(u8::from(!met)),
+        Err(failure) => {
+            output::complain(failure.message());
+            ExitCode::from(failure.status())
+        }
+    }
+}

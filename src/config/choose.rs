@@ -10,16 +10,8 @@ use super::walk::Walk;
 
 impl Walk<'_> {
     /// Finds the alternative that is meant and checks against it.
-    pub(crate) fn choose(
-        &mut self,
-        whole: &Schema<'_>,
-        options: Vec<Schema<'_>>,
-        value: &Value,
-        path: &Path,
-    ) {
-        let (nulls, mut options): (Vec<_>, Vec<_>) = options
-            .into_iter()
-            .partition(|option| option.types() == ["null"]);
+    pub(crate) fn choose(&mut self, whole: &Schema<'_>, options: Vec<Schema<'_>>, value: &Value, path: &Path) {
+        let (nulls, mut options): (Vec<_>, Vec<_>) = options.into_iter().partition(|option| option.types() == ["null"]);
         if value.is_null() && !nulls.is_empty() {
             return;
         }
@@ -55,10 +47,7 @@ impl Walk<'_> {
         let best = options
             .iter()
             .map(|option| {
-                let mut trial = Walk {
-                    leaf: self.leaf,
-                    faults: Vec::new(),
-                };
+                let mut trial = Walk { leaf: self.leaf, faults: Vec::new() };
                 trial.value(option, value, path);
                 trial.faults
             })
@@ -73,9 +62,7 @@ impl Walk<'_> {
     fn variant(&mut self, options: &[Schema<'_>], variants: &[&str], map: &Mapping, path: &Path) {
         let keys: Vec<&str> = map.keys().filter_map(Value::as_str).collect();
         if let [only] = keys.as_slice() {
-            let option = options
-                .iter()
-                .find(|option| option.variant() == Some(*only));
+            let option = options.iter().find(|option| option.variant() == Some(*only));
             match option.and_then(|option| Some((option.property(only)?, map.get(*only)?))) {
                 Some((inner, value)) => self.value(&inner, value, &path.key(*only)),
                 None => self.unknown_key(only, variants, path),
@@ -91,11 +78,7 @@ impl Walk<'_> {
     /// An enum whose variants are told apart by the key `tag`.
     fn tagged(&mut self, tag: &str, options: &[Schema<'_>], map: &Mapping, path: &Path) {
         let words: Vec<&str> = options.iter().filter_map(|o| Some(o.tag()?.1)).collect();
-        let meant = |word: &str| {
-            options
-                .iter()
-                .find(|o| o.tag().is_some_and(|(_, w)| w == word))
-        };
+        let meant = |word: &str| options.iter().find(|o| o.tag().is_some_and(|(_, w)| w == word));
         match map.get(tag) {
             Some(Value::String(word)) => match meant(word) {
                 Some(option) => self.map(option, map, path),
@@ -105,16 +88,14 @@ impl Walk<'_> {
                 let at = path.key(tag);
                 let message = format!("`{at}` must be text, got {}", got(other));
                 let list = known(words).unwrap_or_default();
-                self.faults
-                    .push(Diagnostic::error(at, message).help(format!("write one of {list}")));
+                self.faults.push(Diagnostic::error(at, message).help(format!("write one of {list}")));
             }
             None => {
                 let at = path.key(tag);
                 let list = known(words).unwrap_or_default();
                 let fault = Diagnostic::error(at.clone(), format!("`{at}` is missing"));
                 let fault = fault.label(format!("`{tag}` belongs here"));
-                self.faults
-                    .push(fault.help(format!("add `{tag}`, one of {list}")));
+                self.faults.push(fault.help(format!("add `{tag}`, one of {list}")));
             }
         }
     }
@@ -123,9 +104,7 @@ impl Walk<'_> {
         if variants.contains(&text) {
             let message = format!("`{path}` must give the keys of `{text}`, got only the word");
             let fault = Diagnostic::error(path.clone(), message).label("a map is needed");
-            return self
-                .faults
-                .push(fault.help(format!("write `{text}: {{…}}` on the next line")));
+            return self.faults.push(fault.help(format!("write `{text}: {{…}}` on the next line")));
         }
         let all: Vec<&str> = words.iter().chain(variants).copied().collect();
         self.word(&all, text, path);
@@ -141,10 +120,6 @@ impl Walk<'_> {
             Some(word) => format!("did you mean `{word}`?"),
             None => "write one of these words".to_owned(),
         };
-        self.faults.push(
-            Diagnostic::error(path.clone(), message)
-                .label("unknown word")
-                .help(help),
-        );
+        self.faults.push(Diagnostic::error(path.clone(), message).label("unknown word").help(help));
     }
 }

@@ -83,29 +83,14 @@ impl Diagnostic {
     /// An error at the value of `path`.
     #[must_use]
     pub fn error(path: Path, message: impl Into<String>) -> Self {
-        Self::new(
-            Severity::Error,
-            Site::At {
-                path,
-                mark: Mark::Value,
-                within: None,
-            },
-            message,
-        )
+        Self::new(Severity::Error, Site::At { path, mark: Mark::Value, within: None }, message)
     }
 
     /// A warning at the value of `path`, which `name` silences.
     #[must_use]
     pub fn warning(name: &'static str, path: Path, message: impl Into<String>) -> Self {
-        let site = Site::At {
-            path,
-            mark: Mark::Value,
-            within: None,
-        };
-        Self {
-            name: Some(name),
-            ..Self::new(Severity::Warning, site, message)
-        }
+        let site = Site::At { path, mark: Mark::Value, within: None };
+        Self { name: Some(name), ..Self::new(Severity::Warning, site, message) }
     }
 
     /// An error at a known place of a text.
@@ -117,15 +102,7 @@ impl Diagnostic {
     /// A fault of this kind and place, with neither label nor help yet.
     #[must_use]
     pub fn new(severity: Severity, site: Site, message: impl Into<String>) -> Self {
-        Self {
-            severity,
-            name: None,
-            message: message.into(),
-            site,
-            label: String::new(),
-            help: None,
-            related: Vec::new(),
-        }
+        Self { severity, name: None, message: message.into(), site, label: String::new(), help: None, related: Vec::new() }
     }
 
     /// Puts `label` beside the marked place.
@@ -170,25 +147,15 @@ impl Diagnostic {
     /// Shows the value of `path` too, with a few words.
     #[must_use]
     pub fn also(mut self, path: Path, label: impl Into<String>) -> Self {
-        let site = Site::At {
-            path,
-            mark: Mark::Value,
-            within: None,
-        };
-        self.related.push(Related {
-            site,
-            label: label.into(),
-        });
+        let site = Site::At { path, mark: Mark::Value, within: None };
+        self.related.push(Related { site, label: label.into() });
         self
     }
 
     /// Shows a place of a text too, with a few words.
     #[must_use]
     pub fn also_at(mut self, place: Place, label: impl Into<String>) -> Self {
-        self.related.push(Related {
-            site: Site::Place(place),
-            label: label.into(),
-        });
+        self.related.push(Related { site: Site::Place(place), label: label.into() });
         self
     }
 
@@ -205,27 +172,17 @@ impl Diagnostic {
 impl From<ReadError> for Diagnostic {
     fn from(error: ReadError) -> Self {
         let message = error.to_string();
-        let nowhere =
-            |help: String| Self::new(Severity::Error, Site::Nowhere, message.clone()).help(help);
+        let nowhere = |help: String| Self::new(Severity::Error, Site::Nowhere, message.clone()).help(help);
         match error {
-            ReadError::Missing {
-                nearest: Some(nearest),
-                ..
-            } => nowhere(format!("did you mean `{nearest}`?")),
-            ReadError::Missing { nearest: None, .. } => {
-                nowhere("check the path; relative paths start at the current folder".to_owned())
-            }
+            ReadError::Missing { nearest: Some(nearest), .. } => nowhere(format!("did you mean `{nearest}`?")),
+            ReadError::Missing { nearest: None, .. } => nowhere("check the path; relative paths start at the current folder".to_owned()),
             ReadError::Directory { .. } => nowhere("name a file in it".to_owned()),
             ReadError::Unreadable { .. } => nowhere("check the permissions of the file".to_owned()),
-            ReadError::TooLarge { .. } => {
-                nowhere("check that it is the right file; a spacecraft takes a few kB".to_owned())
+            ReadError::TooLarge { .. } => nowhere("check that it is the right file; a spacecraft takes a few kB".to_owned()),
+            ReadError::NotUtf8 { place } => {
+                Self::error_at(place, message).label("these bytes are no character").help("save the file as UTF-8")
             }
-            ReadError::NotUtf8 { place } => Self::error_at(place, message)
-                .label("these bytes are no character")
-                .help("save the file as UTF-8"),
-            ReadError::Control { place, .. } => Self::error_at(place, message)
-                .label("not allowed in YAML")
-                .help("delete it"),
+            ReadError::Control { place, .. } => Self::error_at(place, message).label("not allowed in YAML").help("delete it"),
         }
     }
 }

@@ -62,28 +62,19 @@ impl Document {
     ///
     /// # Errors
     /// As [`Document::load`].
-    pub fn from_text(
-        name: &str,
-        text: &str,
-        overlays: &[(&str, &str)],
-        settings: &[impl AsRef<str>],
-    ) -> Result<Self, Vec<Diagnostic>> {
+    pub fn from_text(name: &str, text: &str, overlays: &[(&str, &str)], settings: &[impl AsRef<str>]) -> Result<Self, Vec<Diagnostic>> {
         let texts = [(name, text)].into_iter().chain(overlays.iter().copied());
         let layers = texts
             .enumerate()
             .map(|(rank, (name, text))| {
-                let source =
-                    Source::checked(name, text, rank).map_err(|error| vec![error.into()])?;
+                let source = Source::checked(name, text, rank).map_err(|error| vec![error.into()])?;
                 read_layer(&source)
             })
             .collect();
         Self::resolve(layers, settings)
     }
 
-    fn resolve(
-        layers: Vec<Result<Node, Vec<Diagnostic>>>,
-        settings: &[impl AsRef<str>],
-    ) -> Result<Self, Vec<Diagnostic>> {
+    fn resolve(layers: Vec<Result<Node, Vec<Diagnostic>>>, settings: &[impl AsRef<str>]) -> Result<Self, Vec<Diagnostic>> {
         let mut faults = Vec::new();
         let rank = layers.len();
         let mut merged: Option<Node> = None;
@@ -105,11 +96,7 @@ impl Document {
             }
         }
         let value = root.to_value();
-        if faults.is_empty() {
-            Ok(Self { root, value })
-        } else {
-            Err(faults)
-        }
+        if faults.is_empty() { Ok(Self { root, value }) } else { Err(faults) }
     }
 
     /// The merged configuration. Every key is text, every number finite, and nothing is tagged.
@@ -126,15 +113,13 @@ impl Document {
             Segment::Index(_) if !value.is_sequence() => None,
             _ => Some(()),
         };
-        path.segments()
-            .iter()
-            .try_fold(&self.value, |value, segment| {
-                step(value, segment)?;
-                match segment {
-                    Segment::Key(key) => value.get(key.as_str()),
-                    Segment::Index(index) => value.get(*index),
-                }
-            })
+        path.segments().iter().try_fold(&self.value, |value, segment| {
+            step(value, segment)?;
+            match segment {
+                Segment::Key(key) => value.get(key.as_str()),
+                Segment::Index(index) => value.get(*index),
+            }
+        })
     }
 
     /// The merged configuration as JSON.
@@ -152,13 +137,11 @@ impl Document {
     pub fn sha256(&self) -> String {
         let mut text = String::new();
         canonical(&self.json(), &mut text);
-        Sha256::digest(text.as_bytes())
-            .iter()
-            .fold(String::new(), |mut hex, byte| {
-                // Writing to a `String` cannot fail.
-                let _ = write!(hex, "{byte:02x}");
-                hex
-            })
+        Sha256::digest(text.as_bytes()).iter().fold(String::new(), |mut hex, byte| {
+            // Writing to a `String` cannot fail.
+            let _ = write!(hex, "{byte:02x}");
+            hex
+        })
     }
 
     /// Where the value at `path` was written, if it was.
@@ -188,17 +171,10 @@ impl Document {
             Site::Place(place) => Some(place.clone()),
             Site::At { path, mark, within } => {
                 let found = self.root.find(path);
-                let Found {
-                    node,
-                    key_place,
-                    whole,
-                } = &found;
+                let Found { node, key_place, whole } = &found;
                 match (mark, key_place) {
                     (Mark::Key, Some(key)) if *whole => Some((*key).clone()),
-                    _ => Some(
-                        part(node, within.as_ref().filter(|_| *whole))
-                            .unwrap_or_else(|| head(&found)),
-                    ),
+                    _ => Some(part(node, within.as_ref().filter(|_| *whole)).unwrap_or_else(|| head(&found))),
                 }
             }
         }
@@ -210,17 +186,9 @@ fn read_layer(source: &Arc<Source>) -> Result<Node, Vec<Diagnostic>> {
     if let Body::Map(_) = node.body {
         return Ok(node);
     }
-    let message = format!(
-        "`{}` must be a map of keys, got {}",
-        source.name(),
-        node.kind()
-    );
+    let message = format!("`{}` must be a map of keys, got {}", source.name(), node.kind());
     let fault = Diagnostic::error_at(node.place.first_line(), message);
-    Err(vec![
-        fault
-            .label("not a map")
-            .help("write `key: value`, one key a line"),
-    ])
+    Err(vec![fault.label("not a map").help("write `key: value`, one key a line")])
 }
 
 /// The place of a found value: itself if it fits a line, else its key or its first line.
@@ -236,11 +204,7 @@ fn head(found: &Found<'_>) -> Place {
             let first = map.entries().first();
             let only_key = |entry: &super::node::Entry| entry.key_place.clone();
             let up_to_line_end = || place.first_line();
-            if place.range.start == 0 {
-                first.map_or_else(up_to_line_end, only_key)
-            } else {
-                up_to_line_end()
-            }
+            if place.range.start == 0 { first.map_or_else(up_to_line_end, only_key) } else { up_to_line_end() }
         }
         _ => place.first_line(),
     }
@@ -261,10 +225,7 @@ fn part(node: &Node, within: Option<&Range<usize>>) -> Option<Place> {
     raw.get(within.start + offset..within.end + offset)?;
     let start = node.place.range.start + offset;
     let range = start + within.start..start + within.end;
-    Some(Place {
-        source: Arc::clone(&node.place.source),
-        range,
-    })
+    Some(Place { source: Arc::clone(&node.place.source), range })
 }
 
 fn leaves<'a>(node: &'a Node, path: &Path, found: &mut Vec<(Path, &'a Place)>) {

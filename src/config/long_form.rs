@@ -55,4 +55,3 @@ fn read_one(value: &Value, words: KindWords) -> Result<[Spread; 3], QuantityErro
         error
     })
 }
-

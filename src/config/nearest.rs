@@ -18,22 +18,14 @@ pub fn nearest<'a>(word: &str, candidates: impl IntoIterator<Item = &'a str>) ->
     candidates
         .into_iter()
         .filter(|candidate| candidate.len() <= LONGEST)
-        .map(|candidate| {
-            (
-                strsim::damerau_levenshtein(&wanted, &plain(candidate)),
-                candidate,
-            )
-        })
+        .map(|candidate| (strsim::damerau_levenshtein(&wanted, &plain(candidate)), candidate))
         .filter(|(distance, _)| *distance <= most)
         .min_by_key(|(distance, _)| *distance)
         .map(|(_, candidate)| candidate)
 }
 
 /// "did you mean …?" for the nearest candidate, else the list of them, else `None`.
-pub fn did_you_mean<'a>(
-    word: &str,
-    candidates: impl IntoIterator<Item = &'a str> + Clone,
-) -> Option<String> {
+pub fn did_you_mean<'a>(word: &str, candidates: impl IntoIterator<Item = &'a str> + Clone) -> Option<String> {
     match nearest(word, candidates.clone()) {
         Some(found) => Some(format!("did you mean `{}`?", short(found))),
         None => known(candidates).map(|list| format!("known here: {list}")),
@@ -44,11 +36,7 @@ pub fn did_you_mean<'a>(
 pub fn known<'a>(names: impl IntoIterator<Item = &'a str>) -> Option<String> {
     const MOST: usize = 30;
     let mut names = names.into_iter();
-    let shown: Vec<String> = names
-        .by_ref()
-        .take(MOST)
-        .map(|name| format!("`{}`", short(name)))
-        .collect();
+    let shown: Vec<String> = names.by_ref().take(MOST).map(|name| format!("`{}`", short(name))).collect();
     let more = match names.count() {
         0 => String::new(),
         more => format!(" and {more} more"),

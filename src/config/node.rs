@@ -95,30 +95,17 @@ impl Node {
     /// # Errors
     /// What [`scan`] refuses, a number that is not finite or not decimal, and text that the two
     /// YAML parsers do not read alike.
-    pub(crate) fn read(
-        source: &Arc<Source>,
-        within: &Range<usize>,
-    ) -> Result<Self, Vec<Diagnostic>> {
+    pub(crate) fn read(source: &Arc<Source>, within: &Range<usize>) -> Result<Self, Vec<Diagnostic>> {
         let marked = scan(source, within)?;
         let value: Value = serde_yaml::from_str(source.slice(within)).map_err(|error| {
-            let place = Place {
-                source: Arc::clone(source),
-                range: within.clone(),
-            };
+            let place = Place { source: Arc::clone(source), range: within.clone() };
             let message = format!("this is not valid YAML: {error}");
             let help = "check the indentation, and put text with special characters in quotes";
             vec![Diagnostic::error_at(place.first_line(), message).help(help)]
         })?;
-        let mut build = Build {
-            source,
-            faults: Vec::new(),
-        };
+        let mut build = Build { source, faults: Vec::new() };
         let node = build.node(value, marked);
-        if build.faults.is_empty() {
-            Ok(node)
-        } else {
-            Err(build.faults)
-        }
+        if build.faults.is_empty() { Ok(node) } else { Err(build.faults) }
     }
 
     /// The value without its places.
@@ -135,32 +122,17 @@ impl Node {
 
     /// Follows `path` as far as it exists.
     pub(crate) fn find(&self, path: &Path) -> Found<'_> {
-        let mut found = Found {
-            node: self,
-            key_place: None,
-            whole: true,
-        };
+        let mut found = Found { node: self, key_place: None, whole: true };
         for segment in path.segments() {
             let next = match (&found.node.body, segment) {
-                (Body::Map(map), Segment::Key(key)) => map
-                    .get(key)
-                    .map(|entry| (&entry.node, Some(&entry.key_place))),
-                (Body::List(items), Segment::Index(index)) => {
-                    items.get(*index).map(|item| (item, None))
-                }
+                (Body::Map(map), Segment::Key(key)) => map.get(key).map(|entry| (&entry.node, Some(&entry.key_place))),
+                (Body::List(items), Segment::Index(index)) => items.get(*index).map(|item| (item, None)),
                 _ => None,
             };
             let Some((node, key_place)) = next else {
-                return Found {
-                    whole: false,
-                    ..found
-                };
+                return Found { whole: false, ..found };
             };
-            found = Found {
-                node,
-                key_place,
-                whole: true,
-            };
+            found = Found { node, key_place, whole: true };
         }
         found
     }
@@ -212,10 +184,7 @@ struct Build<'a> {
 
 impl Build<'_> {
     fn place(&self, range: Range<usize>) -> Place {
-        Place {
-            source: Arc::clone(self.source),
-            range,
-        }
+        Place { source: Arc::clone(self.source), range }
     }
 
     fn node(&mut self, value: Value, marked: Marked) -> Node {
@@ -229,17 +198,11 @@ impl Build<'_> {
                 let mut map = Map::default();
                 for ((_, value), (key, mark)) in values.into_iter().zip(marks) {
                     let key_place = self.place(key.range);
-                    map.set(Entry {
-                        key: key.text,
-                        key_place,
-                        node: self.node(value, mark),
-                    });
+                    map.set(Entry { key: key.text, key_place, node: self.node(value, mark) });
                 }
                 Body::Map(map)
             }
-            (Value::String(text), Shape::Scalar(seen)) if text == seen => {
-                Body::Scalar(Value::String(text))
-            }
+            (Value::String(text), Shape::Scalar(seen)) if text == seen => Body::Scalar(Value::String(text)),
             (value @ (Value::Null | Value::Bool(_)), Shape::Scalar(_)) => Body::Scalar(value),
             (Value::Number(number), Shape::Scalar(written)) => {
                 self.number(&number, &written, &place);
@@ -248,8 +211,7 @@ impl Build<'_> {
             _ => {
                 let message = "this YAML can be read in two ways";
                 let help = "put the text in quotes, on one line";
-                self.faults
-                    .push(Diagnostic::error_at(place.first_line(), message).help(help));
+                self.faults.push(Diagnostic::error_at(place.first_line(), message).help(help));
                 Body::Scalar(Value::Null)
             }
         };
@@ -260,13 +222,10 @@ impl Build<'_> {
         let fault = |message: String| Diagnostic::error_at(place.clone(), message);
         if number.as_f64().is_none_or(|number| !number.is_finite()) {
             let message = format!("`{written}` is not a finite number");
-            self.faults
-                .push(fault(message).help("write a number; leave the key out if there is none"));
+            self.faults.push(fault(message).help("write a number; leave the key out if there is none"));
         } else if is_coded(written) {
             let message = format!("`{written}` is not a decimal number");
-            self.faults.push(
-                fault(message).help("write it with decimal digits, or in quotes if it is text"),
-            );
+            self.faults.push(fault(message).help("write it with decimal digits, or in quotes if it is text"));
         }
     }
 }
@@ -274,7 +233,5 @@ impl Build<'_> {
 /// Whether a number is written in base 16, 8 or 2, which YAML allows and nobody here means.
 fn is_coded(written: &str) -> bool {
     let digits = written.trim_start_matches(['+', '-']);
-    ["0x", "0o", "0b"]
-        .iter()
-        .any(|prefix| digits.starts_with(prefix))
+    ["0x", "0o", "0b"].iter().any(|prefix| digits.starts_with(prefix))
 }

@@ -14,26 +14,14 @@ pub(crate) struct Offsets {
 
 impl Offsets {
     pub(crate) fn new(start: usize, text: &str) -> Self {
-        let ends = || {
-            text.char_indices()
-                .map(|(at, _)| at)
-                .chain([text.len()])
-                .collect()
-        };
-        Self {
-            start,
-            table: (!text.is_ascii()).then(ends),
-        }
+        let ends = || text.char_indices().map(|(at, _)| at).chain([text.len()]).collect();
+        Self { start, table: (!text.is_ascii()).then(ends) }
     }
 
     pub(crate) fn byte(&self, character: usize) -> usize {
         let relative = match &self.table {
             None => character,
-            Some(table) => table
-                .get(character)
-                .or(table.last())
-                .copied()
-                .unwrap_or_default(),
+            Some(table) => table.get(character).or(table.last()).copied().unwrap_or_default(),
         };
         self.start + relative
     }

@@ -18,12 +18,7 @@ pub(crate) fn lay(base: &mut Node, over: Node, faults: &mut Vec<Diagnostic>) {
     match (&mut base.body, over.body) {
         (Body::Map(below), Body::Map(above)) => lay_map(below, above, faults),
         (Body::List(below), Body::List(above)) if by_name => lay_list(below, above, faults),
-        (_, body) => {
-            *base = Node {
-                place: over.place,
-                body,
-            }
-        }
+        (_, body) => *base = Node { place: over.place, body },
     }
 }
 
@@ -52,22 +47,12 @@ fn lay_list(below: &mut Vec<Node>, above: Vec<Node>, faults: &mut Vec<Diagnostic
         let name = item.name();
         let place = item.place.first_line();
         if let Some(first) = seen.insert(name.clone(), place.clone()) {
-            let message = format!(
-                "the overlay names `{}` twice in this list",
-                short(&name.unwrap_or_default())
-            );
+            let message = format!("the overlay names `{}` twice in this list", short(&name.unwrap_or_default()));
             let fault = Diagnostic::error_at(place, message).label("again here");
-            faults.push(
-                fault
-                    .also_at(first, "first here")
-                    .help("join the two items into one"),
-            );
+            faults.push(fault.also_at(first, "first here").help("join the two items into one"));
             continue;
         }
-        match places
-            .get(&name)
-            .and_then(|&position| below.get_mut(position))
-        {
+        match places.get(&name).and_then(|&position| below.get_mut(position)) {
             Some(old) => lay(old, item, faults),
             None => below.push(item),
         }

@@ -126,33 +126,21 @@ pub(crate) fn parts(text: &str) -> Vec<Part<'_>> {
     let (mut start, mut bracketed) = (0, false);
     let mut after_bracket = false;
     for (at, c) in text.char_indices() {
-        let ends = if bracketed {
-            c == ']'
-        } else {
-            c == '.' || c == '['
-        };
+        let ends = if bracketed { c == ']' } else { c == '.' || c == '[' };
         if !ends {
             continue;
         }
         // `a[0].b` and `a[0][1]`: nothing stands between the bracket and the next sign.
         let nothing = at == start && (after_bracket || c == '[' && at == 0);
         if !nothing {
-            found.push(Part {
-                text: text.get(start..at).unwrap_or_default(),
-                start,
-                bracketed,
-            });
+            found.push(Part { text: text.get(start..at).unwrap_or_default(), start, bracketed });
         }
         after_bracket = c == ']';
         bracketed = c == '[';
         start = at + 1;
     }
     if !(after_bracket && start == text.len()) {
-        found.push(Part {
-            text: text.get(start..).unwrap_or_default(),
-            start,
-            bracketed,
-        });
+        found.push(Part { text: text.get(start..).unwrap_or_default(), start, bracketed });
     }
     found
 }
@@ -162,22 +150,13 @@ mod tests {
     use super::*;
 
     fn texts(path: &str) -> Vec<(&str, bool)> {
-        parts(path)
-            .into_iter()
-            .map(|part| (part.text, part.bracketed))
-            .collect()
+        parts(path).into_iter().map(|part| (part.text, part.bracketed)).collect()
     }
 
     #[test]
     fn splits_keys_items_and_names() {
-        assert_eq!(
-            texts("wheels.capacity"),
-            [("wheels", false), ("capacity", false)]
-        );
-        assert_eq!(
-            texts("a[0][b.c].d"),
-            [("a", false), ("0", true), ("b.c", true), ("d", false)]
-        );
+        assert_eq!(texts("wheels.capacity"), [("wheels", false), ("capacity", false)]);
+        assert_eq!(texts("a[0][b.c].d"), [("a", false), ("0", true), ("b.c", true), ("d", false)]);
         assert_eq!(texts("[a b].c"), [("a b", true), ("c", false)]);
         assert_eq!(texts("a..b"), [("a", false), ("", false), ("b", false)]);
         assert_eq!(texts(""), [("", false)]);
@@ -188,10 +167,7 @@ mod tests {
     fn the_place_of_each_step_is_its_text() {
         let text = "thrusters[Ä1].thrust";
         for part in parts(text) {
-            assert_eq!(
-                text.get(part.start..part.start + part.text.len()),
-                Some(part.text)
-            );
+            assert_eq!(text.get(part.start..part.start + part.text.len()), Some(part.text));
         }
     }
 

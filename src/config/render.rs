@@ -3,9 +3,7 @@
 use std::fmt::Write as _;
 use std::sync::Arc;
 
-use annotate_snippets::{
-    Annotation, AnnotationKind, Group, Level, Renderer, Snippet, normalize_untrusted_str,
-};
+use annotate_snippets::{Annotation, AnnotationKind, Group, Level, Renderer, Snippet, normalize_untrusted_str};
 use serde_json::json;
 
 use super::diagnostic::{Diagnostic, Severity, Site};
@@ -43,22 +41,15 @@ impl Diagnostic {
         }
         let mut group = Group::with_title(title);
         let place = self.place(document);
-        let others: Vec<(Place, &str)> = self
-            .related
-            .iter()
-            .filter_map(|other| Some((locate(&other.site, document)?, other.label.as_str())))
-            .collect();
+        let others: Vec<(Place, &str)> =
+            self.related.iter().filter_map(|other| Some((locate(&other.site, document)?, other.label.as_str()))).collect();
         if let Some(place) = &place {
             group = group.elements(snippets(place, &self.label, &others));
         }
         if let Some(help) = &self.help {
             group = group.element(Level::HELP.message(normalize_untrusted_str(help)));
         }
-        let renderer = if styled {
-            Renderer::styled()
-        } else {
-            Renderer::plain()
-        };
+        let renderer = if styled { Renderer::styled() } else { Renderer::plain() };
         renderer.render(&[group])
     }
 }
@@ -72,22 +63,14 @@ fn locate(site: &Site, document: Option<&Document>) -> Option<Place> {
 }
 
 /// One snippet for all places if they stand close together in one source, else one each.
-fn snippets<'a>(
-    place: &'a Place,
-    label: &'a str,
-    others: &'a [(Place, &'a str)],
-) -> Vec<Snippet<'a, Annotation<'a>>> {
+fn snippets<'a>(place: &'a Place, label: &'a str, others: &'a [(Place, &'a str)]) -> Vec<Snippet<'a, Annotation<'a>>> {
     let near = |other: &Place| {
         let distance = other.range.start.abs_diff(place.range.start);
         Arc::ptr_eq(&other.source, &place.source) && distance <= MOST_BETWEEN
     };
     let (close, far): (Vec<_>, Vec<_>) = others.iter().partition(|(other, _)| near(other));
     let mut marks = vec![(place, label, AnnotationKind::Primary)];
-    marks.extend(
-        close
-            .iter()
-            .map(|(place, label)| (place, *label, AnnotationKind::Context)),
-    );
+    marks.extend(close.iter().map(|(place, label)| (place, *label, AnnotationKind::Context)));
     let mut found = vec![snippet(place, &marks)];
     for (place, label) in far {
         found.push(snippet(place, &[(place, *label, AnnotationKind::Context)]));
@@ -96,28 +79,15 @@ fn snippets<'a>(
 }
 
 /// The lines of `marks`, which stand in the source of `place`.
-fn snippet<'a>(
-    place: &'a Place,
-    marks: &[(&'a Place, &'a str, AnnotationKind)],
-) -> Snippet<'a, Annotation<'a>> {
+fn snippet<'a>(place: &'a Place, marks: &[(&'a Place, &'a str, AnnotationKind)]) -> Snippet<'a, Annotation<'a>> {
     let source = &*place.source;
     let text = source.text();
-    let first = marks
-        .iter()
-        .map(|(mark, ..)| mark.range.start)
-        .min()
-        .unwrap_or_default();
-    let last = marks
-        .iter()
-        .map(|(mark, ..)| mark.range.start)
-        .max()
-        .unwrap_or_default();
+    let first = marks.iter().map(|(mark, ..)| mark.range.start).min().unwrap_or_default();
+    let last = marks.iter().map(|(mark, ..)| mark.range.start).max().unwrap_or_default();
     let start = source.line_start(first);
     let most = text.floor_char_boundary(last.saturating_add(MOST_OF_A_LINE));
     let end = source.line_end(last).min(most).max(last);
-    let mut snippet = Snippet::source(source.slice(&(start..end)))
-        .line_start(source.line_column(first).0)
-        .path(source.name());
+    let mut snippet = Snippet::source(source.slice(&(start..end))).line_start(source.line_column(first).0).path(source.name());
     for (mark, label, kind) in marks {
         let from = mark.range.start.min(end) - start;
         let to = mark.first_line().range.end.clamp(start + from, end) - start;
@@ -131,11 +101,7 @@ fn snippet<'a>(
 /// Puts faults in the order in which a reader meets them: the file, overlays, flags, each from top
 /// to bottom; faults without a place first.
 pub fn sort(faults: &mut [Diagnostic], document: Option<&Document>) {
-    faults.sort_by_cached_key(|fault| {
-        fault
-            .place(document)
-            .map(|place| (place.source.rank(), place.range.start))
-    });
+    faults.sort_by_cached_key(|fault| fault.place(document).map(|place| (place.source.rank(), place.range.start)));
 }
 
 /// All faults as text in file order, an empty line between two, at most a hundred in full.
@@ -148,11 +114,7 @@ pub fn render_all(faults: &[Diagnostic], document: Option<&Document>, styled: bo
         text.push_str(&fault.render(document, styled));
         text.push_str("\n\n");
     }
-    if let Some(more) = ordered
-        .len()
-        .checked_sub(MOST_SHOWN)
-        .filter(|&more| more > 0)
-    {
+    if let Some(more) = ordered.len().checked_sub(MOST_SHOWN).filter(|&more| more > 0) {
         let _ = writeln!(text, "… and {more} more\n");
     }
     text.truncate(text.trim_end().len());
@@ -170,9 +132,7 @@ pub fn to_json(faults: &[Diagnostic], document: Option<&Document>) -> serde_json
     sort(&mut ordered, document);
     let one = |fault: &Diagnostic| {
         let place = fault.place(document);
-        let line_column = place
-            .as_ref()
-            .map(|place| place.source.line_column(place.range.start));
+        let line_column = place.as_ref().map(|place| place.source.line_column(place.range.start));
         json!({
             "severity": match fault.severity { Severity::Error => "error", Severity::Warning => "warning" },
             "name": fault.name,

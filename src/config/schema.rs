@@ -15,11 +15,7 @@ pub(crate) struct Schema<'a> {
 impl<'a> Schema<'a> {
     /// The whole schema.
     pub(crate) fn new(root: &'a Json) -> Self {
-        Self {
-            root,
-            layers: Vec::new(),
-        }
-        .at(root)
+        Self { root, layers: Vec::new() }.at(root)
     }
 
     /// A schema that stands inside this one.
@@ -30,20 +26,14 @@ impl<'a> Schema<'a> {
         let mut next = Some(schema);
         while let Some(Json::Object(layer)) = next.filter(|_| layers.len() < LONGEST) {
             layers.push(layer);
-            let single = layer
-                .get("allOf")
-                .and_then(Json::as_array)
-                .map(Vec::as_slice);
+            let single = layer.get("allOf").and_then(Json::as_array).map(Vec::as_slice);
             next = match (layer.get("$ref").and_then(Json::as_str), single) {
                 (Some(reference), _) => self.root.pointer(reference.trim_start_matches('#')),
                 (None, Some([only])) => Some(only),
                 _ => None,
             };
         }
-        Self {
-            root: self.root,
-            layers,
-        }
+        Self { root: self.root, layers }
     }
 
     /// What the schema says under `keyword`.
@@ -55,11 +45,7 @@ impl<'a> Schema<'a> {
     pub(crate) fn merged(&self) -> Json {
         let mut all = Map::new();
         for layer in self.layers.iter().rev() {
-            all.extend(
-                layer
-                    .iter()
-                    .map(|(key, value)| (key.clone(), value.clone())),
-            );
+            all.extend(layer.iter().map(|(key, value)| (key.clone(), value.clone())));
         }
         all.remove("$ref");
         Json::Object(all)
@@ -73,47 +59,25 @@ impl<'a> Schema<'a> {
     /// The known keys.
     pub(crate) fn keys(&self) -> Vec<&'a str> {
         let properties = self.get("properties").and_then(Json::as_object);
-        properties
-            .into_iter()
-            .flat_map(Map::keys)
-            .map(String::as_str)
-            .collect()
+        properties.into_iter().flat_map(Map::keys).map(String::as_str).collect()
     }
 
     /// The keys that must be there.
     pub(crate) fn required(&self) -> Vec<&'a str> {
         let names = self.get("required").and_then(Json::as_array);
-        names
-            .into_iter()
-            .flatten()
-            .filter_map(Json::as_str)
-            .collect()
+        names.into_iter().flatten().filter_map(Json::as_str).collect()
     }
 
     /// The alternatives of `anyOf` or `oneOf`.
     pub(crate) fn alternatives(&self) -> Vec<Self> {
-        let options = self
-            .get("anyOf")
-            .or_else(|| self.get("oneOf"))
-            .and_then(Json::as_array);
-        options
-            .into_iter()
-            .flatten()
-            .map(|option| self.at(option))
-            .collect()
+        let options = self.get("anyOf").or_else(|| self.get("oneOf")).and_then(Json::as_array);
+        options.into_iter().flatten().map(|option| self.at(option)).collect()
     }
 
     /// The words of a `const` or `enum`.
     pub(crate) fn words(&self) -> Vec<&'a str> {
-        let several = self
-            .get("enum")
-            .and_then(Json::as_array)
-            .into_iter()
-            .flatten();
-        several
-            .chain(self.get("const"))
-            .filter_map(Json::as_str)
-            .collect()
+        let several = self.get("enum").and_then(Json::as_array).into_iter().flatten();
+        several.chain(self.get("const")).filter_map(Json::as_str).collect()
     }
 
     /// Whether it is a quantity, which is read elsewhere.
@@ -124,9 +88,7 @@ impl<'a> Schema<'a> {
     /// The name of the variant, if this is an enum's variant with data: a map with one known key.
     pub(crate) fn variant(&self) -> Option<&'a str> {
         match (self.required().as_slice(), self.keys().as_slice()) {
-            ([required], [known]) if required == known && self.get("const").is_none() => {
-                Some(*known)
-            }
+            ([required], [known]) if required == known && self.get("const").is_none() => Some(*known),
             _ => None,
         }
     }
@@ -176,9 +138,7 @@ impl<'a> Schema<'a> {
         if self.is_quantity() || alternatives.is_empty() {
             self.expected_here().into_iter().for_each(&mut add);
         } else {
-            let options = alternatives
-                .iter()
-                .filter(|option| option.types() != ["null"]);
+            let options = alternatives.iter().filter(|option| option.types() != ["null"]);
             options.flat_map(Self::expected_here).for_each(&mut add);
         }
         match words.split_last() {
@@ -196,11 +156,7 @@ impl<'a> Schema<'a> {
             return vec![self.expected()];
         }
         if !self.words().is_empty() {
-            return self
-                .words()
-                .into_iter()
-                .map(|word| format!("`{word}`"))
-                .collect();
+            return self.words().into_iter().map(|word| format!("`{word}`")).collect();
         }
         let name = |name: &str| match name {
             "object" => "a map",
@@ -217,15 +173,8 @@ impl<'a> Schema<'a> {
 
     /// First sentence of the description, without its full stop.
     pub(crate) fn summary(&self) -> Option<String> {
-        let text = self
-            .get("description")?
-            .as_str()?
-            .split_whitespace()
-            .collect::<Vec<_>>()
-            .join(" ");
-        let sentence = text
-            .split_once(". ")
-            .map_or(text.as_str(), |(first, _)| first);
+        let text = self.get("description")?.as_str()?.split_whitespace().collect::<Vec<_>>().join(" ");
+        let sentence = text.split_once(". ").map_or(text.as_str(), |(first, _)| first);
         let sentence = sentence.trim_end_matches('.');
         (!sentence.is_empty()).then(|| sentence.to_owned())
     }
@@ -274,10 +223,6 @@ fn spoken(name: &str) -> String {
         }
         words.extend(c.to_lowercase());
     }
-    let article = if words.starts_with(['a', 'e', 'i', 'o']) {
-        "an"
-    } else {
-        "a"
-    };
+    let article = if words.starts_with(['a', 'e', 'i', 'o']) { "an" } else { "a" };
     format!("{article} {words}")
 }

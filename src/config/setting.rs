@@ -21,8 +21,7 @@ const FLAG: &str = "--set ";
 /// No `=`, no value, a value that is not valid YAML, a map or list on the way to the key that does
 /// not exist.
 pub(crate) fn apply(root: &mut Node, flag: &str, rank: usize) -> Result<(), Vec<Diagnostic>> {
-    let source = Source::checked("command line", &format!("{FLAG}{flag}"), rank)
-        .map_err(|error| vec![error.into()])?;
+    let source = Source::checked("command line", &format!("{FLAG}{flag}"), rank).map_err(|error| vec![error.into()])?;
     let (key, value) = split(&source)?;
     let written = source.slice(&key);
     let node = read_value(&source, &value)?;
@@ -31,13 +30,7 @@ pub(crate) fn apply(root: &mut Node, flag: &str, rank: usize) -> Result<(), Vec<
         .map(|part| {
             let start = key.start + part.start;
             let range = start..start + part.text.len();
-            Step {
-                part,
-                place: Place {
-                    source: Arc::clone(&source),
-                    range,
-                },
-            }
+            Step { part, place: Place { source: Arc::clone(&source), range } }
         })
         .collect();
     put(root, &steps, node).map_err(|fault| vec![*fault])
@@ -58,34 +51,19 @@ fn split(source: &Arc<Source>) -> Result<(Range<usize>, Range<usize>), Vec<Diagn
         c == '=' && !in_brackets
     });
     let fault = |range: Range<usize>, message: &str, label: &str| {
-        let place = Place {
-            source: Arc::clone(source),
-            range,
-        };
+        let place = Place { source: Arc::clone(source), range };
         let help = "write it as `--set wheels.capacity=\"8 N m s\"`";
         vec![Diagnostic::error_at(place, message).label(label).help(help)]
     };
     let Some((equals, _)) = equals else {
-        return Err(fault(
-            FLAG.len()..text.len(),
-            "`--set` needs KEY=VALUE",
-            "there is no `=`",
-        ));
+        return Err(fault(FLAG.len()..text.len(), "`--set` needs KEY=VALUE", "there is no `=`"));
     };
     let (key, value) = (FLAG.len()..equals, equals + 1..text.len());
     if source.slice(&key).trim().is_empty() {
-        return Err(fault(
-            key,
-            "`--set` needs KEY=VALUE",
-            "there is no key before `=`",
-        ));
+        return Err(fault(key, "`--set` needs KEY=VALUE", "there is no key before `=`"));
     }
     if source.slice(&value).trim().is_empty() {
-        return Err(fault(
-            value,
-            "`--set` needs KEY=VALUE",
-            "there is no value after `=`",
-        ));
+        return Err(fault(value, "`--set` needs KEY=VALUE", "there is no value after `=`"));
     }
     Ok((key, value))
 }
@@ -94,15 +72,10 @@ fn read_value(source: &Arc<Source>, value: &Range<usize>) -> Result<Node, Vec<Di
     let node = Node::read(source, value)?;
     let rest = node.place.range.end..value.end;
     if source.slice(&rest).trim_start().starts_with('#') {
-        let place = Place {
-            source: Arc::clone(source),
-            range: rest,
-        };
+        let place = Place { source: Arc::clone(source), range: rest };
         let fault = Diagnostic::error_at(place, "the value of `--set` ends before ` #`");
         let fault = fault.label("YAML takes this for a comment");
-        return Err(vec![
-            fault.help("put the value in quotes: `--set 'KEY=\"a #b\"'`"),
-        ]);
+        return Err(vec![fault.help("put the value in quotes: `--set 'KEY=\"a #b\"'`")]);
     }
     Ok(node)
 }
@@ -119,11 +92,7 @@ fn put(root: &mut Node, steps: &[Step<'_>], node: Node) -> Result<(), Box<Diagno
     }
     if let Body::Map(map) = &mut holder.body {
         let key = last.part.text.to_owned();
-        map.set(Entry {
-            key,
-            key_place: last.place.clone(),
-            node,
-        });
+        map.set(Entry { key, key_place: last.place.clone(), node });
         return Ok(());
     }
     *enter(holder, last)? = node;
@@ -143,14 +112,9 @@ fn enter<'a>(holder: &'a mut Node, step: &Step<'_>) -> Result<&'a mut Node, Box<
         Body::Map(map) => (map.get_mut(word).map(|entry| &mut entry.node), None),
         Body::List(items) => {
             let count = items.len();
-            let named = items
-                .iter()
-                .position(|item| item.name().as_deref() == Some(word));
+            let named = items.iter().position(|item| item.name().as_deref() == Some(word));
             let position = named.or_else(|| word.parse().ok());
-            (
-                position.and_then(|position| items.get_mut(position)),
-                Some(count),
-            )
+            (position.and_then(|position| items.get_mut(position)), Some(count))
         }
         Body::Scalar(_) => (None, None),
     };
@@ -160,10 +124,7 @@ fn enter<'a>(holder: &'a mut Node, step: &Step<'_>) -> Result<&'a mut Node, Box<
 fn missing(step: &Step<'_>, kind: &str, known: &[String], count: Option<usize>) -> Diagnostic {
     let word = short(step.part.text);
     let (message, otherwise) = match (kind, count) {
-        (_, Some(0)) => (
-            format!("`--set` names the item `{word}` of an empty list"),
-            "set the list as a whole".to_owned(),
-        ),
+        (_, Some(0)) => (format!("`--set` names the item `{word}` of an empty list"), "set the list as a whole".to_owned()),
         (_, Some(count)) => (
             format!("`--set` names `{word}`, which is no item of this list"),
             format!("give a name, or a position from 0 to {}", count - 1),
@@ -172,19 +133,14 @@ fn missing(step: &Step<'_>, kind: &str, known: &[String], count: Option<usize>) 
             format!("`--set` names `{word}`, which is not in the configuration"),
             format!("set all of it: `--set '{word}={{key: value}}'`"),
         ),
-        (kind, None) => (
-            format!("`--set` names the key `{word}` of a value that has no keys"),
-            format!("the value is {kind}; set it as a whole"),
-        ),
+        (kind, None) => {
+            (format!("`--set` names the key `{word}` of a value that has no keys"), format!("the value is {kind}; set it as a whole"))
+        }
     };
     let names = || known.iter().map(String::as_str);
     let help = match nearest(step.part.text, names()) {
         Some(name) => format!("did you mean `{}`?", short(name)),
-        None => super::nearest::known(names()).map_or(otherwise.clone(), |list| {
-            format!("known here: {list}; or {otherwise}")
-        }),
+        None => super::nearest::known(names()).map_or(otherwise.clone(), |list| format!("known here: {list}; or {otherwise}")),
     };
-    Diagnostic::error_at(step.place.clone(), message)
-        .label("not found")
-        .help(help)
+    Diagnostic::error_at(step.place.clone(), message).label("not found").help(help)
 }

@@ -29,10 +29,7 @@ pub struct Place {
 #[derive(Debug, thiserror::Error)]
 pub(crate) enum ReadError {
     #[error("`{name}` does not exist")]
-    Missing {
-        name: String,
-        nearest: Option<String>,
-    },
+    Missing { name: String, nearest: Option<String> },
     #[error("`{name}` is a directory, expected a YAML file")]
     Directory { name: String },
     #[error("`{name}` cannot be read: {cause}")]
@@ -48,11 +45,7 @@ pub(crate) enum ReadError {
 impl Source {
     /// A source of this name and text. `rank` is its turn when faults are shown in order.
     pub(crate) fn new(name: impl Into<String>, text: impl Into<String>, rank: usize) -> Arc<Self> {
-        Arc::new(Self {
-            name: name.into(),
-            text: text.into(),
-            rank,
-        })
+        Arc::new(Self { name: name.into(), text: text.into(), rank })
     }
 
     /// Reads a file: at most 4 MiB of UTF-8 without control characters; a byte-order mark at the
@@ -68,9 +61,7 @@ impl Source {
                 let start = error.valid_up_to();
                 let range = start..start + char::REPLACEMENT_CHARACTER.len_utf8();
                 let source = Self::new(name, String::from_utf8_lossy(bytes), rank);
-                Err(ReadError::NotUtf8 {
-                    place: Place { source, range },
-                })
+                Err(ReadError::NotUtf8 { place: Place { source, range } })
             }
         }
     }
@@ -78,11 +69,7 @@ impl Source {
     /// As [`Source::new`], without a byte-order mark and refusing control characters. YAML forbids
     /// them (U+0085 apart), a terminal would obey them, and one of the two parsers would take U+0000
     /// for the end of the file.
-    pub(crate) fn checked(
-        name: impl Into<String>,
-        text: &str,
-        rank: usize,
-    ) -> Result<Arc<Self>, ReadError> {
+    pub(crate) fn checked(name: impl Into<String>, text: &str, rank: usize) -> Result<Arc<Self>, ReadError> {
         let text = text.strip_prefix('\u{FEFF}').unwrap_or(text);
         let is_control = |c: char| c.is_control() && !"\t\n\r\u{85}".contains(c);
         let Some((start, character)) = text.char_indices().find(|&(_, c)| is_control(c)) else {
@@ -91,10 +78,7 @@ impl Source {
         // The message shows the line, so there too no control character may be left.
         let stand_in = char::REPLACEMENT_CHARACTER;
         let source = Self::new(name, text.replace(is_control, &stand_in.to_string()), rank);
-        let place = Place {
-            source,
-            range: start..start + stand_in.len_utf8(),
-        };
+        let place = Place { source, range: start..start + stand_in.len_utf8() };
         Err(ReadError::Control { place, character })
     }
 
@@ -153,41 +137,24 @@ impl Place {
     /// The same place, without the lines after its first.
     pub(crate) fn first_line(&self) -> Self {
         let end = self.source.line_end(self.range.start).min(self.range.end);
-        Self {
-            source: Arc::clone(&self.source),
-            range: self.range.start..end.max(self.range.start),
-        }
+        Self { source: Arc::clone(&self.source), range: self.range.start..end.max(self.range.start) }
     }
 }
 
 fn bytes(path: &std::path::Path, name: &str) -> Result<Vec<u8>, ReadError> {
     let failed = |cause: std::io::Error| match cause.kind() {
-        std::io::ErrorKind::NotFound => ReadError::Missing {
-            name: name.to_owned(),
-            nearest: nearest_file(path),
-        },
-        std::io::ErrorKind::IsADirectory => ReadError::Directory {
-            name: name.to_owned(),
-        },
-        _ => ReadError::Unreadable {
-            name: name.to_owned(),
-            cause,
-        },
+        std::io::ErrorKind::NotFound => ReadError::Missing { name: name.to_owned(), nearest: nearest_file(path) },
+        std::io::ErrorKind::IsADirectory => ReadError::Directory { name: name.to_owned() },
+        _ => ReadError::Unreadable { name: name.to_owned(), cause },
     };
     if path.is_dir() {
-        return Err(ReadError::Directory {
-            name: name.to_owned(),
-        });
+        return Err(ReadError::Directory { name: name.to_owned() });
     }
     let mut bytes = Vec::new();
     let file = File::open(path).map_err(failed)?;
-    file.take(MOST_BYTES as u64 + 1)
-        .read_to_end(&mut bytes)
-        .map_err(failed)?;
+    file.take(MOST_BYTES as u64 + 1).read_to_end(&mut bytes).map_err(failed)?;
     if bytes.len() > MOST_BYTES {
-        return Err(ReadError::TooLarge {
-            name: name.to_owned(),
-        });
+        return Err(ReadError::TooLarge { name: name.to_owned() });
     }
     Ok(bytes)
 }
@@ -196,20 +163,13 @@ fn bytes(path: &std::path::Path, name: &str) -> Result<Vec<u8>, ReadError> {
 fn nearest_file(path: &std::path::Path) -> Option<String> {
     const MOST_ENTRIES: usize = 1000;
     let folder = path.parent()?;
-    let here = if folder.as_os_str().is_empty() {
-        std::path::Path::new(".")
-    } else {
-        folder
-    };
+    let here = if folder.as_os_str().is_empty() { std::path::Path::new(".") } else { folder };
     let is_yaml = |name: &String| {
         let extension = std::path::Path::new(name).extension();
         extension.is_some_and(|extension| extension == "yaml" || extension == "yml")
     };
     let entries = std::fs::read_dir(here).ok()?.take(MOST_ENTRIES).flatten();
-    let mut names: Vec<String> = entries
-        .filter_map(|entry| entry.file_name().into_string().ok())
-        .filter(is_yaml)
-        .collect();
+    let mut names: Vec<String> = entries.filter_map(|entry| entry.file_name().into_string().ok()).filter(is_yaml).collect();
     names.sort(); // the order of a folder is not fixed, the message must be
     let wanted = path.file_name()?.to_str()?;
     let nearest = super::nearest::nearest(wanted, names.iter().map(String::as_str))?;
@@ -227,10 +187,7 @@ mod tests {
         assert_eq!(source.line_column(at), (1, 5));
         assert_eq!(source.line_end(0), source.text().find('\r').unwrap());
         let b = source.text().find('b').unwrap();
-        assert_eq!(
-            (source.line_column(b), source.line_start(b + 2)),
-            ((2, 1), b)
-        );
+        assert_eq!((source.line_column(b), source.line_start(b + 2)), ((2, 1), b));
     }
 
     #[test]

@@ -92,11 +92,7 @@ pub(crate) struct Frame {
 /// What is open.
 pub(crate) enum Open {
     List(Vec<Marked>),
-    Map {
-        entries: Vec<(Key, Marked)>,
-        pending: Option<Key>,
-        seen: HashMap<String, Range<usize>>,
-    },
+    Map { entries: Vec<(Key, Marked)>, pending: Option<Key>, seen: HashMap<String, Range<usize>> },
 }
 
 /// A pass under way.
@@ -133,17 +129,13 @@ impl<'a> Scan<'a> {
                 if self.documents > 1 {
                     let message = "a second YAML document starts here";
                     let fault = self.fault(range, message, "only one is allowed");
-                    self.faults
-                        .push(fault.help("put it into a file of its own, or delete the `---`"));
+                    self.faults.push(fault.help("put it into a file of its own, or delete the `---`"));
                     return None;
                 }
             }
             Event::Alias(_) => {
                 self.anchored(range);
-                self.node(Marked {
-                    range: range.clone(),
-                    shape: Shape::Scalar(String::new()),
-                });
+                self.node(Marked { range: range.clone(), shape: Shape::Scalar(String::new()) });
             }
             Event::Scalar(text, style, anchor, tag) => {
                 self.properties(range, anchor, tag.is_some());
@@ -156,14 +148,7 @@ impl<'a> Scan<'a> {
             Event::MappingStart(anchor, tag) => {
                 self.properties(range, anchor, tag.is_some());
                 let (entries, seen) = (Vec::new(), HashMap::new());
-                self.open(
-                    range,
-                    Open::Map {
-                        entries,
-                        pending: None,
-                        seen,
-                    },
-                )?;
+                self.open(range, Open::Map { entries, pending: None, seen })?;
             }
             Event::SequenceEnd | Event::MappingEnd => self.close(range),
             Event::Nothing | Event::StreamStart | Event::StreamEnd | Event::DocumentEnd => {}
@@ -178,8 +163,7 @@ impl<'a> Scan<'a> {
         }
         let message = format!("there are more than {MOST_NODES} keys and values");
         let fault = self.fault(range, message, "this is one too many");
-        self.faults
-            .push(fault.help("check that it is the right file"));
+        self.faults.push(fault.help("check that it is the right file"));
         None
     }
 
@@ -188,15 +172,10 @@ impl<'a> Scan<'a> {
         if self.frames.len() >= DEEPEST {
             let message = format!("maps and lists are nested more than {DEEPEST} deep");
             let fault = self.fault(range, message, "the nesting goes on here");
-            self.faults
-                .push(fault.help("check the brackets and the indentation"));
+            self.faults.push(fault.help("check the brackets and the indentation"));
             return None;
         }
-        self.frames.push(Frame {
-            start: range.start,
-            end: range.end,
-            open,
-        });
+        self.frames.push(Frame { start: range.start, end: range.end, open });
         Some(())
     }
 
@@ -205,48 +184,21 @@ impl<'a> Scan<'a> {
             return;
         };
         // A flow collection ends with its bracket, a block one has an empty end somewhere below.
-        let end = if range.is_empty() {
-            frame.end
-        } else {
-            range.end
-        };
+        let end = if range.is_empty() { frame.end } else { range.end };
         let shape = match frame.open {
             Open::List(items) => Shape::List(items),
             Open::Map { entries, .. } => Shape::Map(entries),
         };
-        self.node(Marked {
-            range: frame.start..end.max(frame.start),
-            shape,
-        });
+        self.node(Marked { range: frame.start..end.max(frame.start), shape });
     }
 
-    fn scalar(
-        &mut self,
-        text: Cow<'_, str>,
-        style: ScalarStyle,
-        range: &Range<usize>,
-    ) -> Option<()> {
+    fn scalar(&mut self, text: Cow<'_, str>, style: ScalarStyle, range: &Range<usize>) -> Option<()> {
         self.count(range)?;
-        let awaits_key = matches!(
-            self.frames.last(),
-            Some(Frame {
-                open: Open::Map { pending: None, .. },
-                ..
-            })
-        );
+        let awaits_key = matches!(self.frames.last(), Some(Frame { open: Open::Map { pending: None, .. }, .. }));
         if awaits_key {
-            self.key(
-                Key {
-                    text: text.into_owned(),
-                    range: range.clone(),
-                },
-                style,
-            );
+            self.key(Key { text: text.into_owned(), range: range.clone() }, style);
         } else {
-            self.node(Marked {
-                range: range.clone(),
-                shape: Shape::Scalar(text.into_owned()),
-            });
+            self.node(Marked { range: range.clone(), shape: Shape::Scalar(text.into_owned()) });
         }
         Some(())
     }
@@ -256,32 +208,22 @@ impl<'a> Scan<'a> {
         let range = key.range.clone();
         if style == ScalarStyle::Plain && key.text == "<<" {
             let fault = self.fault(&range, "merge keys (`<<`) are not allowed", "a merge key");
-            self.faults.push(
-                fault.help("write the keys out, or lay a second file over this one with `--with`"),
-            );
+            self.faults.push(fault.help("write the keys out, or lay a second file over this one with `--with`"));
         } else if style == ScalarStyle::Plain && matches!(key.text.as_str(), "" | "~") {
             let fault = self.fault(&range, "a key is missing before `:`", "expected a key here");
             self.faults.push(fault.help("write `key: value`"));
         }
-        let Some(Frame {
-            end,
-            open: Open::Map { pending, seen, .. },
-            ..
-        }) = self.frames.last_mut()
-        else {
+        let Some(Frame { end, open: Open::Map { pending, seen, .. }, .. }) = self.frames.last_mut() else {
             return;
         };
         *end = range.end;
         let first = seen.get(&key.text).cloned();
-        seen.entry(key.text.clone())
-            .or_insert_with(|| range.clone());
+        seen.entry(key.text.clone()).or_insert_with(|| range.clone());
         let message = format!("the key `{}` stands twice in this map", short(&key.text));
         *pending = Some(key);
         if let Some(first) = first {
             let first = self.place(&first).first_line();
-            let fault = self
-                .fault(&range, message, "again here")
-                .also_at(first, "first here");
+            let fault = self.fault(&range, message, "again here").also_at(first, "first here");
             self.faults.push(fault.help("delete or rename one of them"));
         }
     }
@@ -298,23 +240,15 @@ impl<'a> Scan<'a> {
         }
         match &mut frame.open {
             Open::List(items) => items.push(node),
-            Open::Map {
-                entries, pending, ..
-            } => {
+            Open::Map { entries, pending, .. } => {
                 if let Some(key) = pending.take() {
                     entries.push((key, node));
                     return;
                 }
                 // Something must stand for the key, or its value would be taken for the next one.
-                *pending = Some(Key {
-                    text: String::new(),
-                    range: range.clone(),
-                });
+                *pending = Some(Key { text: String::new(), range: range.clone() });
                 let fault = self.fault(&range, "a key must be text", "this is no text");
-                self.faults
-                    .push(fault.help(
-                        "write `key: value`; put text that begins with `{` or `[` in quotes",
-                    ));
+                self.faults.push(fault.help("write `key: value`; put text that begins with `{` or `[` in quotes"));
             }
         }
     }

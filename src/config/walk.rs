@@ -28,10 +28,7 @@ const MOST_FAULTS: usize = 500;
 /// Returns all faults, at most 500.
 #[must_use]
 pub fn check_structure(document: &Document, schema: &Json, leaf: &Leaf<'_>) -> Vec<Diagnostic> {
-    let mut walk = Walk {
-        leaf,
-        faults: Vec::new(),
-    };
+    let mut walk = Walk { leaf, faults: Vec::new() };
     walk.value(&Schema::new(schema), document.value(), &Path::root());
     walk.faults
 }
@@ -49,8 +46,7 @@ impl Walk<'_> {
         }
         if schema.is_quantity() {
             if schema.takes(value) {
-                self.faults
-                    .extend((self.leaf)(&schema.merged(), value, path));
+                self.faults.extend((self.leaf)(&schema.merged(), value, path));
             } else {
                 self.wrong_kind(schema, value, path);
             }
@@ -78,9 +74,7 @@ impl Walk<'_> {
     pub(crate) fn map(&mut self, schema: &Schema<'_>, map: &Mapping, path: &Path) {
         let keys = schema.keys();
         let closed = schema.get("additionalProperties") == Some(&Json::Bool(false));
-        let others = schema
-            .get("additionalProperties")
-            .filter(|others| others.is_object());
+        let others = schema.get("additionalProperties").filter(|others| others.is_object());
         let mut meant = Vec::new();
         for (key, value) in map {
             let Some(key) = key.as_str() else { continue };
@@ -91,10 +85,7 @@ impl Walk<'_> {
                     if self.faults.len() >= MOST_FAULTS {
                         return;
                     }
-                    let unused = keys
-                        .iter()
-                        .copied()
-                        .filter(|known| !map.contains_key(*known));
+                    let unused = keys.iter().copied().filter(|known| !map.contains_key(*known));
                     meant.extend(nearest(key, unused));
                     self.unknown_key(key, &keys, path);
                 }
@@ -116,11 +107,8 @@ impl Walk<'_> {
             format!("unknown key `{}` in `{path}`", short(key))
         };
         let help = did_you_mean(key, keys.iter().copied());
-        let fault = Diagnostic::error(path.key(key), message)
-            .at_key()
-            .label("not known here");
-        self.faults
-            .push(fault.help(help.unwrap_or_else(|| "delete it".to_owned())));
+        let fault = Diagnostic::error(path.key(key), message).at_key().label("not known here");
+        self.faults.push(fault.help(help.unwrap_or_else(|| "delete it".to_owned())));
     }
 
     fn missing(&mut self, schema: &Schema<'_>, key: &str, path: &Path) {
@@ -128,23 +116,17 @@ impl Walk<'_> {
         let inner = schema.property(key);
         let says = inner.as_ref().map(|inner| {
             let what = inner.summary().unwrap_or_else(|| inner.expected());
-            let example = inner
-                .example()
-                .map(|text| format!("; for example `{key}: {text}`"));
+            let example = inner.example().map(|text| format!("; for example `{key}: {text}`"));
             format!(": {what}{}", example.unwrap_or_default())
         });
         let help = format!("add `{key}`{}", says.unwrap_or_default());
         let fault = Diagnostic::error(at.clone(), format!("`{at}` is missing"));
-        self.faults
-            .push(fault.label(format!("`{key}` belongs here")).help(help));
+        self.faults.push(fault.label(format!("`{key}` belongs here")).help(help));
     }
 
     fn list(&mut self, schema: &Schema<'_>, items: &[Value], path: &Path) {
         let bound = |keyword| schema.get(keyword).and_then(Json::as_u64);
-        let (least, most) = (
-            bound("minItems").unwrap_or(0),
-            bound("maxItems").unwrap_or(u64::MAX),
-        );
+        let (least, most) = (bound("minItems").unwrap_or(0), bound("maxItems").unwrap_or(u64::MAX));
         let count = items.len() as u64;
         if count < least || count > most {
             let expected = match (least, most) {
@@ -155,9 +137,7 @@ impl Walk<'_> {
             };
             let message = format!("`{path}` must have {expected} items, got {count}");
             let fault = Diagnostic::error(path.clone(), message);
-            let help = schema
-                .example()
-                .map(|example| format!("for example `{example}`"));
+            let help = schema.example().map(|example| format!("for example `{example}`"));
             let otherwise = format!("write {expected} items: `[…]`");
             self.faults.push(fault.help(help.unwrap_or(otherwise)));
         }
@@ -175,33 +155,16 @@ impl Walk<'_> {
         let Some(value) = number.as_f64() else { return };
         let bound = |keyword| schema.get(keyword).and_then(Json::as_f64);
         let limits = [
-            (
-                "at least",
-                bound("minimum"),
-                value >= bound("minimum").unwrap_or(value),
-            ),
-            (
-                "at most",
-                bound("maximum"),
-                value <= bound("maximum").unwrap_or(value),
-            ),
-            (
-                "above",
-                bound("exclusiveMinimum"),
-                bound("exclusiveMinimum").is_none_or(|b| value > b),
-            ),
-            (
-                "below",
-                bound("exclusiveMaximum"),
-                bound("exclusiveMaximum").is_none_or(|b| value < b),
-            ),
+            ("at least", bound("minimum"), value >= bound("minimum").unwrap_or(value)),
+            ("at most", bound("maximum"), value <= bound("maximum").unwrap_or(value)),
+            ("above", bound("exclusiveMinimum"), bound("exclusiveMinimum").is_none_or(|b| value > b)),
+            ("below", bound("exclusiveMaximum"), bound("exclusiveMaximum").is_none_or(|b| value < b)),
         ];
         for (words, limit, kept) in limits {
             if let Some(limit) = limit.filter(|_| !kept) {
                 let message = format!("`{path}` must be {words} {limit}, got {number}");
                 let fault = Diagnostic::error(path.clone(), message).label("out of range");
-                self.faults
-                    .push(fault.help(format!("write a number that is {words} {limit}")));
+                self.faults.push(fault.help(format!("write a number that is {words} {limit}")));
             }
         }
     }

@@ -51,14 +51,9 @@ pub fn sources(scenario: &Scenario) -> Vec<Box<dyn Source>> {
 }
 
 /// Writes the torque of a force about the body origin and what a centre of mass at c takes from it:
-/// r × F − c × F, as four features: 1, c_x, c_y, c_z.
+/// r × F − c × F, as four features: one, and the three components of c.
 fn force_features(torque_about_origin: Vector3<f64>, force: Vector3<f64>, out: &mut [Vector3<f64>]) {
-    let moments = [
-        torque_about_origin,
-        -Vector3::x().cross(&force),
-        -Vector3::y().cross(&force),
-        -Vector3::z().cross(&force),
-    ];
+    let moments = [torque_about_origin, -Vector3::x().cross(&force), -Vector3::y().cross(&force), -Vector3::z().cross(&force)];
     for (place, moment) in out.iter_mut().zip(moments) {
         *place = moment;
     }

@@ -53,10 +53,7 @@ impl Source for Radiation {
     /// body origin and per component of the centre of mass.
     fn features(&self) -> Vec<Feature> {
         let shares = self.optics.iter().flatten().map(|share| share.factor);
-        std::iter::once(None)
-            .chain(shares)
-            .flat_map(|factor| with_arms(&factor.into_iter().collect::<Vec<Factor>>()))
-            .collect()
+        std::iter::once(None).chain(shares).flat_map(|factor| with_arms(&factor.into_iter().collect::<Vec<Factor>>())).collect()
     }
 
     fn torques(&self, surroundings: &Surroundings, out: &mut [Vector3<f64>]) {

@@ -3,8 +3,8 @@
 use nalgebra::{Rotation3, Vector3};
 
 use crate::environment::{
-    ASTRONOMICAL_UNIT_M, Activity, Body, Epoch, Igrf, Orbit, SOLAR_IRRADIANCE_W_PER_M2, SPEED_OF_LIGHT_M_PER_S, State, air_velocity_m_per_s,
-    density_kg_per_m3, earth_fixed_from_inertial, sun_position_m, sunlit_fraction,
+    ASTRONOMICAL_UNIT_M, Activity, Body, Epoch, Igrf, Orbit, SOLAR_IRRADIANCE_W_PER_M2, SPEED_OF_LIGHT_M_PER_S, State,
+    air_velocity_m_per_s, density_kg_per_m3, earth_fixed_from_inertial, sun_position_m, sunlit_fraction,
 };
 
 /// What surrounds the spacecraft at an instant; all vectors in one frame.
@@ -88,7 +88,8 @@ impl<'a> Observer<'a> {
 
     /// Mean visible share of the solar disc over a step.
     fn sunlit_share(&self, middle: Epoch, step_s: f64, sun_m: &Vector3<f64>, body: &Body) -> f64 {
-        let visible = |offset_s: f64| sunlit_fraction(&self.orbit.state(middle.plus_seconds(offset_s)).position_m, sun_m, body.equatorial_radius_m);
+        let visible =
+            |offset_s: f64| sunlit_fraction(&self.orbit.state(middle.plus_seconds(offset_s)).position_m, sun_m, body.equatorial_radius_m);
         let ends = [visible(-step_s / 2.0), visible(0.0), visible(step_s / 2.0)];
         if ends.iter().all(|share| *share >= 1.0) {
             return 1.0;

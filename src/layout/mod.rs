@@ -169,4 +169,3 @@ fn verdict(capability: &Capability, thrusters: &[Thruster]) -> Verdict {
         axes: axes.to_vec(),
     }
 }
-

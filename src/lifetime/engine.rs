@@ -51,7 +51,8 @@ impl Plan {
     #[must_use]
     pub fn nominal_unloads(&self, stratum: usize) -> (Vec<Vector3<f64>>, Option<UnloadRate>) {
         let values = FeatureValues::new(&self.scenario, &self.nominal);
-        let weights = nalgebra::DVector::from_iterator(self.basis.features.len(), self.basis.features.iter().map(|f| values.of(f, &self.nominal)));
+        let weights =
+            nalgebra::DVector::from_iterator(self.basis.features.len(), self.basis.features.iter().map(|f| values.of(f, &self.nominal)));
         let momentum = &self.basis.matrix * weights;
         let (windows, rate) = self.unloads(stratum, momentum.as_slice());
         (windows.iter().map(|h| h * rate.map_or(1.0, |rate| rate.repeat)).collect(), rate)

@@ -7,10 +7,12 @@ mod engine;
 mod outcome;
 mod plan;
 mod policy;
+mod summary;
 
 pub use outcome::Outcome;
 pub use plan::{Plan, PlanError};
 pub use policy::UnloadRate;
+pub use summary::{PhaseSummary, TypicalUnload};
 
 /// Lifetimes flown together: one matrix product of this width.
 pub const BLOCK: usize = 64;

@@ -2,7 +2,10 @@
 
 use crate::authority::{Authority, Price};
 use crate::mission::{Scenario, UnloadPolicy};
-use crate::momentum::{FoldedBasis, MassHistory, PhaseMomentum, RawBasis, Resolution, Stratum, phase_momentum, simulate_all, strata, wheel_envelope, wheel_torque};
+use crate::momentum::{
+    FoldedBasis, MassHistory, PhaseMomentum, RawBasis, Resolution, Stratum, phase_momentum, simulate_all, strata, wheel_envelope,
+    wheel_torque,
+};
 use crate::pulses::Pricer;
 use crate::uncertain::Draw;
 use crate::vehicle::Vehicle;

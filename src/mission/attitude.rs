@@ -16,7 +16,7 @@ impl NadirAttitude {
     /// Rotation from the body frame (nominal bias) to the inertial frame.
     #[must_use]
     pub fn inertial_from_body(&self, state: &State) -> Rotation3<f64> {
-        let bias = Vector3::from(self.bias_rad.each_ref().map(|angle| angle.nominal()));
+        let bias = Vector3::from(self.bias_rad.each_ref().map(Uncertain::nominal));
         nadir_frame(state) * Rotation3::new(bias)
     }
 }

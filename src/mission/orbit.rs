@@ -19,7 +19,9 @@ pub(super) fn read(written: &config::Orbit, at: &str, start: Epoch, faults: &mut
         mean_anomaly_rad: angle(&written.mean_anomaly),
     };
     Orbit::new(elements, start, body)
-        .map_err(|error| faults.push(at, error.to_string(), "raise the perigee above the surface; altitudes count from the equatorial radius"))
+        .map_err(|error| {
+            faults.push(at, error.to_string(), "raise the perigee above the surface; altitudes count from the equatorial radius");
+        })
         .ok()
 }
 

@@ -83,12 +83,18 @@ fn attitude(written: &config::Attitude, phase: &str, parameters: &mut Parameters
 fn policy(written: Option<&config::Unload>, at: &str, has_wheels: bool, faults: &mut Faults) -> Option<UnloadPolicy> {
     let Some(written) = written else { return Some(UnloadPolicy::Never) };
     if !has_wheels {
-        faults.push(&format!("{at}.unload"), "there are no wheels to unload", "describe at least three wheels under `wheels`, or leave `unload` out");
+        faults.push(
+            &format!("{at}.unload"),
+            "there are no wheels to unload",
+            "describe at least three wheels under `wheels`, or leave `unload` out",
+        );
         return None;
     }
     match (written.every, written.at_fill) {
         (Some(interval), None) => faults.positive(&format!("{at}.unload.every"), interval.0, "an interval").map(UnloadPolicy::Every),
-        (None, Some(fill)) => faults.within(&format!("{at}.unload.at_fill"), fill.0, 0.01, 1.0, "a share of the wheel envelope").map(UnloadPolicy::AtFill),
+        (None, Some(fill)) => {
+            faults.within(&format!("{at}.unload.at_fill"), fill.0, 0.01, 1.0, "a share of the wheel envelope").map(UnloadPolicy::AtFill)
+        }
         _ => {
             faults.push(&format!("{at}.unload"), "expected one of `every` and `at_fill`", "keep one: `every: 1 d`, or `at_fill: 70 %`");
             None

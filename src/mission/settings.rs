@@ -63,9 +63,9 @@ impl Figure {
     pub const fn name(self) -> &'static str {
         match self {
             Self::PropellantNominal => "attitude propellant, nominal",
-            Self::PropellantP95 => "attitude propellant, P95 upper limit",
-            Self::PropellantP99 => "attitude propellant, P99 upper limit",
-            Self::ProbabilityEnough => "probability that the load is enough",
+            Self::PropellantP95 => "attitude propellant, P95 limit",
+            Self::PropellantP99 => "attitude propellant, P99 limit",
+            Self::ProbabilityEnough => "probability of enough propellant",
             Self::UnloadInterval => "shortest time between unloads",
             Self::WheelFill => "largest fill of the wheels",
             Self::GuaranteedPureTorque => "pure torque in every direction",
@@ -77,7 +77,8 @@ impl Figure {
 const MOST_LIFETIMES: f64 = 1e8;
 
 pub(super) fn settings(written: &config::Budget, faults: &mut Faults) -> Option<Settings> {
-    let lifetimes = faults.within("budget.lifetimes", written.lifetimes.map_or(10_000.0, |n| n.0), 1.0, MOST_LIFETIMES, "a number of lifetimes");
+    let lifetimes =
+        faults.within("budget.lifetimes", written.lifetimes.map_or(10_000.0, |n| n.0), 1.0, MOST_LIFETIMES, "a number of lifetimes");
     let margin = faults.within("budget.margin", written.margin.map_or(0.0, |margin| margin.0), 0.0, 100.0, "a margin");
     let confidence = faults.within("budget.confidence", written.confidence.map_or(0.95, |c| c.0), 0.5, 0.999_999, "a confidence");
     #[expect(clippy::cast_possible_truncation, clippy::cast_sign_loss, reason = "checked to lie from 1 to 1e8")]

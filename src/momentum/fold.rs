@@ -113,7 +113,9 @@ fn expand(feature: &Feature, scenario: &Scenario, phase: &Phase, mass: &MassStat
                 let deviation = dry.inertia_kg_m2[element].parameter().map(|id| (1.0, Some(PlanFactor::Deviation(id))));
                 [Some((mass.inertia_kg_m2[INERTIA_ELEMENTS[element]], None)), deviation].into_iter().flatten().collect()
             }
-            Factor::Bias(axis) => phase.attitude.bias_rad[axis].parameter().map(|id| (1.0, Some(PlanFactor::Deviation(id)))).into_iter().collect(),
+            Factor::Bias(axis) => {
+                phase.attitude.bias_rad[axis].parameter().map(|id| (1.0, Some(PlanFactor::Deviation(id)))).into_iter().collect()
+            }
         };
         terms = terms
             .iter()

@@ -122,11 +122,8 @@ struct Mark {
 fn simulate(scenario: &Scenario, sources: &[Box<dyn Source>], stratum: &Stratum) -> SpanBasis {
     let span = &stratum.span;
     let phase = &scenario.mission.phases[stratum.phase];
-    let evaluator = Evaluator {
-        sources,
-        lengths: sources.iter().map(|source| source.features().len()).collect(),
-        bias_axes: uncertain_bias(phase),
-    };
+    let evaluator =
+        Evaluator { sources, lengths: sources.iter().map(|source| source.features().len()).collect(), bias_axes: uncertain_bias(phase) };
     let count = evaluator.lengths.iter().sum::<usize>() * (1 + evaluator.bias_axes.len());
     let start = scenario.mission.start.plus_seconds(span.start_s);
     let observer = Observer::new(&phase.orbit, scenario.mission.activity.levels(), start.plus_seconds(span.length_s() / 2.0));
@@ -170,7 +167,13 @@ impl Marks {
         }
     }
 
-    fn note(&mut self, step: usize, momentum: &[Vector3<f64>], torque: Option<&[Vector3<f64>]>, attitude: impl Fn(usize) -> Rotation3<f64>) {
+    fn note(
+        &mut self,
+        step: usize,
+        momentum: &[Vector3<f64>],
+        torque: Option<&[Vector3<f64>]>,
+        attitude: impl Fn(usize) -> Rotation3<f64>,
+    ) {
         let wanted = |list: &[(usize, Option<Mark>)]| list.iter().any(|(at, _)| *at == step);
         if let (true, Some(torque)) = (wanted(&self.checkpoints), torque) {
             self.torques.push(torque.to_vec());
@@ -184,7 +187,8 @@ impl Marks {
 
     fn finish(self, span: &Span) -> SpanBasis {
         let pairs: Vec<(Mark, Mark)> = self.starts.into_iter().zip(self.ends).filter_map(|((_, a), (_, b))| Some((a?, b?))).collect();
-        let gain = |a: &Mark, b: &Mark| -> Vec<Vector3<f64>> { b.momentum.iter().zip(&a.momentum).map(|(end, start)| end - start).collect() };
+        let gain =
+            |a: &Mark, b: &Mark| -> Vec<Vector3<f64>> { b.momentum.iter().zip(&a.momentum).map(|(end, start)| end - start).collect() };
         let mut basis = SpanBasis { torques: self.torques, ..SpanBasis::default() };
         for (start, end) in &pairs {
             let gained = gain(start, end);

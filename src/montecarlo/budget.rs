@@ -2,7 +2,10 @@
 
 use std::io;
 
-use super::{Driver, Figure, Moments, Proportion, QuantileEstimate, Store, Wanted, drivers, lower_limit_rank, proportion, run, upper_limit_rank, wilks_sample_size};
+use super::{
+    Driver, Figure, Moments, Proportion, QuantileEstimate, Store, Wanted, drivers, lower_limit_rank, proportion, run, upper_limit_rank,
+    wilks_sample_size,
+};
 use crate::config;
 use crate::layout::{LayoutCase, intact};
 use crate::lifetime::{Outcome, Plan};
@@ -159,8 +162,10 @@ fn distributions(store: &mut Store, plan: &Plan, nominal: &Outcome, confidence: 
     let mut moments = vec![Moments::new(); columns];
     store.for_each(|row| moments.iter_mut().zip(row).for_each(|(moment, value)| moment.push(*value)))?;
     // Point estimate, lower and upper limit of every quantile; a rank that does not exist asks for rank 0.
-    let ranks: Vec<[usize; 3]> =
-        QUANTILES.iter().map(|p| [rank_of(n, *p), lower_limit_rank(n, *p, confidence).unwrap_or(0), upper_limit_rank(n, *p, confidence).unwrap_or(0)]).collect();
+    let ranks: Vec<[usize; 3]> = QUANTILES
+        .iter()
+        .map(|p| [rank_of(n, *p), lower_limit_rank(n, *p, confidence).unwrap_or(0), upper_limit_rank(n, *p, confidence).unwrap_or(0)])
+        .collect();
     let wanted: Vec<Wanted> =
         (0..columns).flat_map(|column| ranks.iter().flatten().map(move |rank| Wanted { column, rank: *rank })).collect();
     let values = store.select(&wanted)?;

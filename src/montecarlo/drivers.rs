@@ -47,7 +47,11 @@ pub fn drivers(plan: &Plan, seed: u64) -> Vec<Driver> {
 fn listed(groups: Vec<(String, Vec<usize>)>, found: &Indices) -> Vec<Driver> {
     let first = found.first_order.iter().copied().zip(found.first_order_interval.iter().copied());
     let total = found.total.iter().copied().zip(found.total_interval.iter().copied());
-    groups.into_iter().zip(first.zip(total)).map(|((parameter, _), (first_order, total))| Driver { parameter, first_order, total }).collect()
+    groups
+        .into_iter()
+        .zip(first.zip(total))
+        .map(|((parameter, _), (first_order, total))| Driver { parameter, first_order, total })
+        .collect()
 }
 
 fn attitude_totals(plan: &Plan, uniforms: &[f64], rows: usize, columns: usize) -> Vec<f64> {

@@ -141,7 +141,8 @@ mod tests {
         let mut sorted = numbers.clone();
         sorted.sort_by(f64::total_cmp);
         let ranks = [1, 2, 499, 947, 996, 997];
-        let wanted: Vec<_> = ranks.iter().flat_map(|rank| [Wanted { column: 0, rank: *rank }, Wanted { column: 1, rank: 998 - rank }]).collect();
+        let wanted: Vec<_> =
+            ranks.iter().flat_map(|rank| [Wanted { column: 0, rank: *rank }, Wanted { column: 1, rank: 998 - rank }]).collect();
         let found = store.select(&wanted).unwrap();
         for (pair, rank) in found.chunks(2).zip(ranks) {
             assert_eq!(pair[0].to_bits(), sorted[rank - 1].to_bits());

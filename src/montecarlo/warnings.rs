@@ -11,13 +11,24 @@ pub(super) fn warnings(plan: &Plan, budget: &Budget) -> Vec<String> {
     let name = |index: usize| plan.vehicle().propulsion.thrusters[index].name.as_str();
     if let Some(estimate) = budget.attitude.quantiles.iter().find(|estimate| estimate.upper.is_none()) {
         let needed = estimate.needed.map_or_else(String::new, |n| format!(": at least {n} are needed (`--lifetimes {n}`)"));
-        list.push(format!("{} lifetimes cannot bound P{:.0} with {:.0} % confidence{needed}", budget.lifetimes, estimate.p * 100.0, budget.confidence * 100.0));
+        list.push(format!(
+            "{} lifetimes cannot bound P{:.0} with {:.0} % confidence{needed}",
+            budget.lifetimes,
+            estimate.p * 100.0,
+            budget.confidence * 100.0
+        ));
     }
     if budget.nominal.unserved > 0.0 {
-        list.push(format!("the thrusters cannot make {:.0} of the torques asked for in the nominal mission; their propellant is missing from the ledger", budget.nominal.unserved));
+        list.push(format!(
+            "the thrusters cannot make {:.0} of the torques asked for in the nominal mission; their propellant is missing from the ledger",
+            budget.nominal.unserved
+        ));
     }
     if let Some(fill) = budget.wheel_fill.filter(|fill| *fill > 1.0) {
-        list.push(format!("the wheels overflow: {:.0} % of their envelope is asked for; unload more often, or take larger wheels", fill * 100.0));
+        list.push(format!(
+            "the wheels overflow: {:.0} % of their envelope is asked for; unload more often, or take larger wheels",
+            fill * 100.0
+        ));
     }
     if let Some(limit) = plan.vehicle().propulsion.qualified_pulses {
         let over = budget.cycles.iter().enumerate().filter_map(|(k, d)| Some((k, d.at(0.95)?.value))).filter(|(_, cycles)| *cycles > limit);
@@ -26,11 +37,16 @@ pub(super) fn warnings(plan: &Plan, budget: &Budget) -> Vec<String> {
         }
     }
     if budget.needed.nominal > budget.loaded_kg {
-        list.push(format!("the propellant loaded, {:.2} kg, does not cover the nominal need of {:.2} kg", budget.loaded_kg, budget.needed.nominal));
+        list.push(format!(
+            "the propellant loaded, {:.2} kg, does not cover the nominal need of {:.2} kg",
+            budget.loaded_kg, budget.needed.nominal
+        ));
     }
     let ends = plan.scenario().mission.start.decimal_year() + plan.scenario().mission.duration_s() / SECONDS_PER_YEAR;
     if ends > 2030.0 {
-        list.push(format!("the mission ends in {ends:.1}; the geomagnetic model (IGRF-14) is a prediction to 2030 and carried on unchanged beyond"));
+        list.push(format!(
+            "the mission ends in {ends:.1}; the geomagnetic model (IGRF-14) is a prediction to 2030 and carried on unchanged beyond"
+        ));
     }
     if plan.scenario().mission.phases.iter().any(|phase| phase.unload == UnloadPolicy::Never) {
         list.push("a phase has no `unload`: what its wheels collect is not charged to propellant".to_owned());

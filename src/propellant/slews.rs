@@ -25,7 +25,13 @@ pub struct SlewMomentum {
 /// with T the lesser of the torques along ±I e. A slew too short to reach the rate is bang-bang:
 /// t = 2 sqrt(θ I / T). `None` if the thrusters make no such torque.
 #[must_use]
-pub fn slew_momentum(axis: &Vector3<f64>, angle_rad: f64, rate_rad_per_s: f64, mass: &MassState, authority: &Authority) -> Option<SlewMomentum> {
+pub fn slew_momentum(
+    axis: &Vector3<f64>,
+    angle_rad: f64,
+    rate_rad_per_s: f64,
+    mass: &MassState,
+    authority: &Authority,
+) -> Option<SlewMomentum> {
     let momentum_per_rate = mass.inertia_kg_m2 * axis;
     let along = momentum_per_rate.normalize();
     let torque = authority.most(&along).min(authority.most(&-along));

@@ -29,9 +29,5 @@ pub fn fire(impulse_n_s: f64, thrust_n: f64, exhaust_speed_m_per_s: f64, limits:
     let on_s = impulse_n_s / thrust_n;
     let whole = (on_s / limits.longest_s).ceil().max(1.0);
     let on_time_s = (on_s / whole).max(limits.shortest_s);
-    Firing {
-        pulses: on_s / on_time_s,
-        on_time_s,
-        propellant_kg: impulse_n_s / (exhaust_speed_m_per_s * limits.share(on_time_s)),
-    }
+    Firing { pulses: on_s / on_time_s, on_time_s, propellant_kg: impulse_n_s / (exhaust_speed_m_per_s * limits.share(on_time_s)) }
 }

@@ -1,1 +1,19 @@
-//! The `report` room of the pipeline.
+//! Results for a person and for programs: text, JSON, CSV.
+//!
+//! In: results. Out: text. Computes nothing.
+
+mod budget;
+mod json;
+mod layout;
+mod momentum;
+mod table;
+mod unload;
+mod words;
+
+pub use budget::budget_text;
+pub use budget::ledger_table;
+pub use json::{Provenance, budget_json, layout_json, momentum_json, unload_json};
+pub use layout::{layout_table, layout_text};
+pub use momentum::{momentum_table, momentum_text};
+pub use table::Table;
+pub use unload::{unload_table, unload_text};

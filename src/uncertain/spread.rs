@@ -138,7 +138,9 @@ impl Spread {
     /// Probabilities of the normal at the limits of a truncated one.
     fn cut(&self) -> (f64, f64) {
         match *self {
-            Self::TruncatedNormal { mean, sigma, low, high } => (standard().cdf((low - mean) / sigma), standard().cdf((high - mean) / sigma)),
+            Self::TruncatedNormal { mean, sigma, low, high } => {
+                (standard().cdf((low - mean) / sigma), standard().cdf((high - mean) / sigma))
+            }
             _ => (0.0, 1.0),
         }
     }

@@ -81,13 +81,17 @@ fn spread_over(numbers: &[f64], count: usize, text: &str) -> Result<[f64; 3], Qu
 }
 
 fn wrong_count(text: &str, got: usize, count: usize) -> QuantityError {
-    let (wanted, help) =
-        if count == 3 { ("three numbers", "write x y z with the unit behind them, such as `0.01 0 0.74 m`") } else { ("one number", "write one number with its unit") };
+    let (wanted, help) = if count == 3 {
+        ("three numbers", "write x y z with the unit behind them, such as `0.01 0 0.74 m`")
+    } else {
+        ("one number", "write one number with its unit")
+    };
     fault(text, format!("expected {wanted}, got {got}"), help)
 }
 
 fn read(text: &str, asked: Asked<'_>, count: usize) -> Result<[Spread; 3], QuantityError> {
-    let unit = |side: &Side<'_>| expect_unit(side.unit, asked.dimension, asked.name, asked.example).map_err(|error| error.shifted(side.unit_at));
+    let unit =
+        |side: &Side<'_>| expect_unit(side.unit, asked.dimension, asked.name, asked.example).map_err(|error| error.shifted(side.unit_at));
     let first_side = |left: &str| {
         let found = side(left, 0).map_err(|error| for_kind(error, left, asked.name, asked.example))?;
         if found.numbers.len() == count { Ok(found.numbers) } else { Err(wrong_count(text, found.numbers.len(), count)) }
@@ -106,7 +110,7 @@ fn read(text: &str, asked: Asked<'_>, count: usize) -> Result<[Spread; 3], Quant
             let means = spread_over(&first_side(left)?, count, text)?;
             let sigmas = spread_over(&b.numbers, count, text)?;
             // Percent means percent of the value, whatever the quantity.
-            let relative = b.unit.trim() == "%" && !(a.unit.trim() == "%");
+            let relative = b.unit.trim() == "%" && a.unit.trim() != "%";
             let left_unit = if a.unit.trim().is_empty() && !relative { unit(&b)? } else { unit(&a)? };
             let means = scaled(means, left_unit)?;
             let sigmas = if relative {

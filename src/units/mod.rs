@@ -10,5 +10,5 @@ mod table;
 
 pub use dimension::{Dimension, Kind, kind};
 pub use expression::unit_factor;
-pub(crate) use parse::{expect_unit, finite, for_kind};
 pub use parse::{QuantityError, number_prefix, parse, parse_kind};
+pub(crate) use parse::{expect_unit, finite, for_kind};

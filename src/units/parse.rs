@@ -59,14 +59,20 @@ pub fn number_prefix(text: &str) -> Result<(f64, usize), QuantityError> {
             return Err(fault(format!("`{}` uses a decimal comma", body.trim()), "write a decimal point: `1.5`"));
         }
         Some('_' | 'x' | 'X') if !written.is_empty() => {
-            return Err(fault(format!("`{}` is not a plain decimal number", body.trim()), "write digits with a decimal point or an exponent: `1000`, `1e-3`"));
+            return Err(fault(
+                format!("`{}` is not a plain decimal number", body.trim()),
+                "write digits with a decimal point or an exponent: `1000`, `1e-3`",
+            ));
         }
         _ => {}
     }
     match written.replace('−', "-").parse::<f64>() {
         Ok(number) if number.is_finite() => Ok((number, start + end)),
         Ok(_) => Err(fault(format!("`{written}` is too large a number"), "write a finite number")),
-        Err(_) => Err(fault(format!("expected a number, got `{}`", clipped(body.trim())), "begin with a number and put its unit behind it: `1 N`")),
+        Err(_) => Err(fault(
+            format!("expected a number, got `{}`", clipped(body.trim())),
+            "begin with a number and put its unit behind it: `1 N`",
+        )),
     }
 }
 
@@ -126,7 +132,11 @@ pub(crate) fn finite(value: f64, text: &str) -> Result<f64, QuantityError> {
     if value.is_finite() {
         return Ok(value);
     }
-    Err(QuantityError { range: 0..text.len(), message: "the number is too large".to_owned(), help: "check the exponent and the unit".to_owned() })
+    Err(QuantityError {
+        range: 0..text.len(),
+        message: "the number is too large".to_owned(),
+        help: "check the exponent and the unit".to_owned(),
+    })
 }
 
 /// [`parse`] for a kind of quantity.

@@ -121,14 +121,19 @@ impl Propulsion {
 fn pulse_limits(written: &config::Propulsion, faults: &mut Faults) -> Option<PulseLimits> {
     let shortest = faults.positive("propulsion.shortest_pulse", written.shortest_pulse.0, "an on-time");
     let longest = faults.positive("propulsion.longest_pulse", written.longest_pulse.0, "an on-time");
-    let duty_cycle = faults.within("propulsion.duty_cycle", written.duty_cycle.map_or(0.1, |duty| duty.0), 1e-6, 1.0, "a share of the time");
+    let duty_cycle =
+        faults.within("propulsion.duty_cycle", written.duty_cycle.map_or(0.1, |duty| duty.0), 1e-6, 1.0, "a share of the time");
     let mut performance: Vec<(f64, f64)> = Vec::new();
     for (index, point) in written.pulse_performance.iter().enumerate() {
         let at = format!("propulsion.pulse_performance[{index}]");
         let on_time = faults.positive(&format!("{at}.on_time"), point.on_time.0, "an on-time")?;
         let share = faults.within(&format!("{at}.share"), point.share.0, 1e-3, 1.0, "a share of the exhaust speed")?;
         if performance.last().is_some_and(|(before, _)| *before >= on_time) {
-            faults.push(&format!("{at}.on_time"), "expected a longer on-time than in the entry before", "sort the entries by rising on-time");
+            faults.push(
+                &format!("{at}.on_time"),
+                "expected a longer on-time than in the entry before",
+                "sort the entries by rising on-time",
+            );
             return None;
         }
         performance.push((on_time, share));
@@ -205,7 +210,13 @@ fn push_direction(at: &str, written: &config::Thruster, faults: &mut Faults) -> 
         (None, Some(plume)) => faults.direction(&format!("{at}.plume"), plume.0).map(|plume| Unit::new_unchecked(-plume)),
         (Some(_), Some(_)) => {
             let other = format!("{at}.push");
-            faults.push_also(&format!("{at}.plume"), "given together with `push`", "keep one of the two: the plume leaves against the push", &other, "here");
+            faults.push_also(
+                &format!("{at}.plume"),
+                "given together with `push`",
+                "keep one of the two: the plume leaves against the push",
+                &other,
+                "here",
+            );
             None
         }
         (None, None) => {

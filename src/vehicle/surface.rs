@@ -104,7 +104,11 @@ fn facet(spec: &Spec, index: usize, faults: &mut Faults) -> Option<Surface> {
     let names = spec.materials.iter().map(|material| material.name.as_str());
     let Some(material) = names.clone().position(|name| name == written.material) else {
         let help = did_you_mean(&written.material, names).unwrap_or_else(|| "describe it under `materials`".to_owned());
-        faults.push(&format!("{at}.material"), format!("names the material `{}`, which `materials` does not describe", written.material), help);
+        faults.push(
+            &format!("{at}.material"),
+            format!("names the material `{}`, which `materials` does not describe", written.material),
+            help,
+        );
         return None;
     };
     Some(Surface {

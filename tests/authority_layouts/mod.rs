@@ -96,9 +96,8 @@ pub(crate) fn layout(kind: Kind, count: usize, rng: &mut ChaCha8Rng) -> Vec<Plac
         Kind::Mirrored => {
             let seeds: Vec<Placed> = (0..count.div_ceil(4)).map(|_| placed(rng)).collect();
             let images = |k: usize| move |v: Vector3<f64>| Vector3::new(sign(0, k) * v.x, sign(1, k) * v.y, v.z);
-            let all = seeds.iter().flat_map(|p| {
-                (0..4).map(move |k| Placed { position: images(k)(p.position), push: images(k)(p.push), ..*p })
-            });
+            let all =
+                seeds.iter().flat_map(|p| (0..4).map(move |k| Placed { position: images(k)(p.position), push: images(k)(p.push), ..*p }));
             all.map(|p| Placed { thrust: 1.0, speed: 2000.0, ..p }).collect()
         }
         Kind::Duplicated => {
@@ -144,8 +143,7 @@ fn expression(variables: &[Variable], coefficients: impl Iterator<Item = f64>) -
 /// Rows of the wrench, torques over the longest arm.
 fn rows(generators: &[Generator], net: NetForce) -> (f64, Vec<Vec<f64>>) {
     let arm = generators.iter().map(|g| g.torque.norm()).fold(1e-300, f64::max);
-    let mut rows: Vec<Vec<f64>> =
-        (0..3).map(|axis| generators.iter().map(|g| g.torque[axis] / arm).collect()).collect();
+    let mut rows: Vec<Vec<f64>> = (0..3).map(|axis| generators.iter().map(|g| g.torque[axis] / arm).collect()).collect();
     if net == NetForce::Zero {
         rows.extend((0..3).map(|axis| generators.iter().map(|g| g.force[axis]).collect()));
     }
@@ -163,13 +161,7 @@ pub(crate) struct Answer {
 /// Solves max or min cost · x with rows · x = right and x between bounds by a general-purpose solver (microlp), and
 /// mends what its feasibility tolerance of 1e-7 leaves: variables on a bound are put there, the others corrected until
 /// the rows hold. `None` if infeasible.
-fn solve(
-    goal: OptimizationDirection,
-    cost: &[f64],
-    bounds: &[(f64, f64)],
-    rows: &[Vec<f64>],
-    right: &[f64],
-) -> Option<Answer> {
+fn solve(goal: OptimizationDirection, cost: &[f64], bounds: &[(f64, f64)], rows: &[Vec<f64>], right: &[f64]) -> Option<Answer> {
     let mut problem = Problem::new(goal);
     let variables: Vec<Variable> = cost.iter().zip(bounds).map(|(c, b)| problem.add_var(*c, *b)).collect();
     for (row, right) in rows.iter().zip(right) {
@@ -232,7 +224,8 @@ pub(crate) fn lp_most(generators: &[Generator], net: NetForce, e: &Vector3<f64>)
 
 /// Torque and force of `levels`.
 pub(crate) fn wrench(generators: &[Generator], levels: &[f64]) -> (Vector3<f64>, Vector3<f64>) {
-    generators.iter().zip(levels).fold((Vector3::zeros(), Vector3::zeros()), |(torque, force), (g, f)| {
-        (torque + g.torque * *f, force + g.force * *f)
-    })
+    generators
+        .iter()
+        .zip(levels)
+        .fold((Vector3::zeros(), Vector3::zeros()), |(torque, force), (g, f)| (torque + g.torque * *f, force + g.force * *f))
 }

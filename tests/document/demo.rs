@@ -152,11 +152,7 @@ fn leaf(_: &serde_json::Value, value: &serde_yaml::Value, path: &Path) -> Vec<Di
             let unit = text.rfind(' ').map_or(0, |space| space + 1);
             let message = format!("`{path}` must be a force, got `{text}`");
             let fault = Diagnostic::error(path.clone(), message).label("not a unit of force");
-            vec![
-                fault
-                    .within(unit..text.len())
-                    .help("write it in newtons: `1 N`"),
-            ]
+            vec![fault.within(unit..text.len()).help("write it in newtons: `1 N`")]
         }
         _ => Vec::new(),
     }

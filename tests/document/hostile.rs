@@ -47,9 +47,7 @@ fn an_alias_bomb_is_refused_before_it_grows() {
     };
     let levels: Vec<String> = (1..20).map(level).collect();
     let bomb = format!("a0: &a0 [x, x, x, x, x, x, x, x, x]\n{}", levels.concat());
-    assert!(
-        soon(&bomb).starts_with("error: anchors (`&name`) and aliases (`*name`) are not allowed")
-    );
+    assert!(soon(&bomb).starts_with("error: anchors (`&name`) and aliases (`*name`) are not allowed"));
 }
 
 #[test]
@@ -117,10 +115,7 @@ fn files_that_are_not_there_are_named_with_their_neighbour() {
         let faults = Document::load(&path, &[] as &[&str], &[] as &[&str]).unwrap_err();
         render_all(&faults, None, false).replace(&folder.path().display().to_string(), "")
     };
-    assert_eq!(
-        shown("misson.yaml"),
-        "error: `/misson.yaml` does not exist\n |\n = help: did you mean `/mission.yaml`?\n"
-    );
+    assert_eq!(shown("misson.yaml"), "error: `/misson.yaml` does not exist\n |\n = help: did you mean `/mission.yaml`?\n");
     assert!(shown("other.yaml").contains("help: check the path"));
     assert!(shown("").contains("is a directory, expected a YAML file"));
 }
@@ -142,10 +137,9 @@ fn terminal_codes_in_a_file_are_not_passed_on() {
 /// Texts of the signs that mean something in YAML, which arbitrary text seldom holds.
 fn yamlish() -> impl Strategy<Value = String> {
     let piece = prop::sample::select(vec![
-        "a", "b", "name", ": ", ":", "\n", "\n  ", "\n    ", "- ", "-", "[", "]", "{", "}", ", ",
-        "\"", "'", "#", " #", "&a ", "*a", "!t ", "|\n", ">\n", "? ", "<<", "---\n", "...\n", "\t",
-        "\r\n", "\r", "é", "漢", "\u{85}", "\u{2028}", "\u{FEFF}", "1", "-1.5", ".nan", "0x1", "~",
-        "true", "%", "@", "`", "\\", "\\n", " ", "",
+        "a", "b", "name", ": ", ":", "\n", "\n  ", "\n    ", "- ", "-", "[", "]", "{", "}", ", ", "\"", "'", "#", " #", "&a ", "*a", "!t ",
+        "|\n", ">\n", "? ", "<<", "---\n", "...\n", "\t", "\r\n", "\r", "é", "漢", "\u{85}", "\u{2028}", "\u{FEFF}", "1", "-1.5", ".nan",
+        "0x1", "~", "true", "%", "@", "`", "\\", "\\n", " ", "",
     ]);
     prop::collection::vec(piece, 0..40).prop_map(|pieces| pieces.concat())
 }

@@ -21,12 +21,9 @@ fn marked(fault: &Diagnostic) -> (usize, usize, String) {
 #[test]
 fn a_fault_is_shown_with_its_line_and_remedy() {
     let document = read("mass: 1 kg\nthrust: -0.5 N # oops\n").unwrap();
-    let fault = Diagnostic::error(
-        Path::parse("thrust"),
-        "`thrust` must be above zero, got -0.5 N",
-    )
-    .label("not above zero")
-    .help("turn the direction around instead");
+    let fault = Diagnostic::error(Path::parse("thrust"), "`thrust` must be above zero, got -0.5 N")
+        .label("not above zero")
+        .help("turn the direction around instead");
     assert_eq!(
         fault.render(Some(&document), false),
         "\
@@ -45,16 +42,8 @@ error: `thrust` must be above zero, got -0.5 N
 #[test]
 fn a_warning_carries_the_name_that_silences_it() {
     let document = read("inertia: 0.2\n").unwrap();
-    let fault = Diagnostic::warning(
-        "inertia-magnitude",
-        Path::parse("inertia"),
-        "`inertia` is very small",
-    );
-    assert!(
-        fault
-            .render(Some(&document), false)
-            .starts_with("warning[inertia-magnitude]: `inertia` is")
-    );
+    let fault = Diagnostic::warning("inertia-magnitude", Path::parse("inertia"), "`inertia` is very small");
+    assert!(fault.render(Some(&document), false).starts_with("warning[inertia-magnitude]: `inertia` is"));
 }
 
 #[test]
@@ -63,10 +52,7 @@ fn part_of_a_scalar_is_marked_if_it_stands_there_as_it_reads() {
     let document = Document::from_text("m", text, &[], &["g=1 lb"]).unwrap();
     let marked = |path: &str, bytes: std::ops::Range<usize>| {
         let place = at(path).within(bytes).place(Some(&document)).unwrap();
-        (
-            place.source.line_column(place.range.start),
-            place.text().to_owned(),
-        )
+        (place.source.line_column(place.range.start), place.text().to_owned())
     };
     assert_eq!(marked("a", 5..7), ((1, 8), "lb".to_owned()));
     assert_eq!(marked("b", 2..4), ((2, 7), "lb".to_owned()));
@@ -83,68 +69,43 @@ fn part_of_a_scalar_is_marked_if_it_stands_there_as_it_reads() {
 #[test]
 fn what_does_not_exist_is_marked_at_what_holds_it() {
     assert_eq!(marked(&at("mission.stop")), (2, 1, "mission".to_owned()));
-    assert_eq!(
-        marked(&at("thrusters[0].burn")),
-        (9, 5, "name: A1".to_owned())
-    );
+    assert_eq!(marked(&at("thrusters[0].burn")), (9, 5, "name: A1".to_owned()));
     assert_eq!(marked(&at("thrusters[9]")), (8, 1, "thrusters".to_owned()));
     assert_eq!(marked(&at("mission.orbits.x.y")), (4, 11, "15".to_owned()));
     assert_eq!(marked(&at("nothing")), (1, 1, "name".to_owned()));
-    assert_eq!(
-        marked(&at("mission.stop").at_key()),
-        (2, 1, "mission".to_owned())
-    );
+    assert_eq!(marked(&at("mission.stop").at_key()), (2, 1, "mission".to_owned()));
 }
 
 #[test]
 fn maps_and_lists_are_marked_whole_on_one_line_and_by_their_key_on_several() {
-    assert_eq!(
-        marked(&at("thrusters[0].push")),
-        (11, 11, "[1, 0, 0]".to_owned())
-    );
+    assert_eq!(marked(&at("thrusters[0].push")), (11, 11, "[1, 0, 0]".to_owned()));
     assert_eq!(marked(&at("mission")), (2, 1, "mission".to_owned()));
     assert_eq!(marked(&at("thrusters[1]")), (13, 5, "name: A2".to_owned()));
-    assert_eq!(
-        marked(&at("mission.mode").at_key()),
-        (6, 3, "mode".to_owned())
-    );
+    assert_eq!(marked(&at("mission.mode").at_key()), (6, 3, "mode".to_owned()));
 }
 
 #[test]
 fn an_empty_value_is_marked_at_its_key() {
     let document = read("a:\n  b:\n  c: 1\n").unwrap();
     let place = at("a.b").place(Some(&document)).unwrap();
-    assert_eq!(
-        (place.text(), place.source.line_column(place.range.start)),
-        ("b", (2, 3))
-    );
+    assert_eq!((place.text(), place.source.line_column(place.range.start)), ("b", (2, 3)));
 }
 
 #[test]
 fn related_places_are_shown_near_and_far() {
     let near = read("a: 1\nb: 2\n").unwrap();
-    let fault = at("b")
-        .label("this")
-        .also(Path::parse("a"), "and this")
-        .help("mend it");
+    let fault = at("b").label("this").also(Path::parse("a"), "and this").help("mend it");
     let shown = fault.render(Some(&near), false);
-    assert!(
-        shown.contains("1 | a: 1\n  |    - and this\n2 | b: 2\n  |    ^ this\n"),
-        "{shown}"
-    );
+    assert!(shown.contains("1 | a: 1\n  |    - and this\n2 | b: 2\n  |    ^ this\n"), "{shown}");
     let far = read(&format!("a: 1\n{}b: 2\n", "# far\n".repeat(5000))).unwrap();
     let shown = fault.render(Some(&far), false);
-    assert!(
-        shown.contains("--> mission.yaml:5002:4") && shown.contains("mission.yaml:1:4"),
-        "{shown}"
-    );
+    assert!(shown.contains("--> mission.yaml:5002:4") && shown.contains("mission.yaml:1:4"), "{shown}");
     assert!(shown.len() < 1000, "{shown}");
 }
 
 #[test]
 fn faults_are_shown_in_file_order() {
-    let document =
-        Document::from_text("m", "a: 1\nb: 2\n", &[("o", "c: 3\n")], &["d=4", "e=5"]).unwrap();
+    let document = Document::from_text("m", "a: 1\nb: 2\n", &[("o", "c: 3\n")], &["d=4", "e=5"]).unwrap();
     let nowhere = Diagnostic::new(Severity::Error, Site::Nowhere, "a file is missing");
     let mut faults = vec![at("e"), at("c"), at("b"), at("d"), nowhere, at("a")];
     sort(&mut faults, Some(&document));
@@ -164,9 +125,7 @@ fn many_faults_are_counted() {
 #[test]
 fn faults_as_json_have_file_line_column_and_key() {
     let document = Document::from_text("m.yaml", "é: 1\nt: [{x: 1}]\n", &[], &["é=é 2"]).unwrap();
-    let faults = [at("é").help("mend it").label("here"), at("t[0].x"), {
-        Diagnostic::new(Severity::Warning, Site::Nowhere, "no place")
-    }];
+    let faults = [at("é").help("mend it").label("here"), at("t[0].x"), { Diagnostic::new(Severity::Warning, Site::Nowhere, "no place") }];
     assert_eq!(
         to_json(&faults, Some(&document)),
         json!([
@@ -183,11 +142,6 @@ fn faults_as_json_have_file_line_column_and_key() {
 #[test]
 fn a_long_line_is_cut() {
     let document = read(&format!("a: [{}1 lb, 2]\n", "1, ".repeat(20_000))).unwrap();
-    let shown = at("a[20000]")
-        .help("mend it")
-        .render(Some(&document), false);
-    assert!(
-        shown.contains("mission.yaml:1:60005\n") && shown.len() < 2000,
-        "{shown}"
-    );
+    let shown = at("a[20000]").help("mend it").render(Some(&document), false);
+    assert!(shown.contains("mission.yaml:1:60005\n") && shown.len() < 2000, "{shown}");
 }

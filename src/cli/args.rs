@@ -1,0 +1,101 @@
+//! The command line.
+
+use std::path::PathBuf;
+
+use clap::{Args, Parser, Subcommand, ValueEnum};
+
+/// Attitude-control propellant, wheel momentum and thruster layout, from one YAML description of a
+/// spacecraft and its mission.
+#[derive(Debug, Parser)]
+#[command(name = "couplet", version, max_term_width = 80)]
+pub(super) struct Cli {
+    #[command(subcommand)]
+    pub(super) command: Command,
+}
+
+#[derive(Debug, Subcommand)]
+pub(super) enum Command {
+    /// The whole budget: layout, momentum, unloads, propellant with confidence, drivers, requirements.
+    Budget(BudgetArgs),
+    /// Torque of the thruster layout on every axis and in every direction, in every failure case.
+    Layout(Common),
+    /// Disturbance torques by source, secular and cyclic momentum, wheels, unload interval.
+    Momentum(Common),
+    /// One unload as valve commands.
+    Unload(UnloadArgs),
+    /// Validate the configuration and say nothing else.
+    Check(Common),
+    /// Print the JSON Schema of the configuration, for editors.
+    Schema(Output),
+}
+
+/// How results are written.
+#[derive(Debug, Clone, Copy, PartialEq, Eq, ValueEnum)]
+pub(super) enum Format {
+    /// For a person, 80 columns.
+    Text,
+    /// For programs, all figures.
+    Json,
+    /// For spreadsheets, the main table.
+    Csv,
+}
+
+#[derive(Debug, Args)]
+pub(super) struct Output {
+    /// Write the result to this file, whole or not at all. Default: standard output.
+    #[arg(long, value_name = "FILE")]
+    pub(super) out: Option<PathBuf>,
+}
+
+#[derive(Debug, Args)]
+pub(super) struct Common {
+    /// The configuration, such as configs/heron.yaml.
+    pub(super) file: PathBuf,
+
+    /// A YAML file laid over it, key by key; may be repeated.
+    #[arg(long = "with", value_name = "OVERLAY")]
+    pub(super) overlays: Vec<PathBuf>,
+
+    /// One key changed, such as --set wheels.capacity="8 N m s"; may be repeated.
+    #[arg(long = "set", value_name = "KEY=VALUE")]
+    pub(super) settings: Vec<String>,
+
+    /// How the result is written.
+    #[arg(long, value_enum, default_value_t = Format::Text)]
+    pub(super) format: Format,
+
+    #[command(flatten)]
+    pub(super) output: Output,
+
+    /// Seed of the draws, a whole number. Default: budget.seed.
+    #[arg(long, value_name = "N")]
+    pub(super) seed: Option<u64>,
+
+    /// Lifetimes drawn, such as 100000. Default: budget.lifetimes.
+    #[arg(long, value_name = "N", value_parser = clap::value_parser!(u64).range(1..=100_000_000))]
+    pub(super) lifetimes: Option<u64>,
+
+    /// Threads; the result does not depend on them. Default: one for each core.
+    #[arg(long, value_name = "N", value_parser = clap::value_parser!(u16).range(1..=1024))]
+    pub(super) threads: Option<u16>,
+
+    /// No progress and no warnings on standard error.
+    #[arg(long)]
+    pub(super) quiet: bool,
+}
+
+#[derive(Debug, Args)]
+pub(super) struct BudgetArgs {
+    #[command(flatten)]
+    pub(super) common: Common,
+}
+
+#[derive(Debug, Args)]
+pub(super) struct UnloadArgs {
+    #[command(flatten)]
+    pub(super) common: Common,
+
+    /// Momentum in the wheels, body frame, such as "1 2 -0.5 N m s". Default: the largest of the nominal mission.
+    #[arg(long, value_name = "VECTOR", allow_hyphen_values = true)]
+    pub(super) momentum: Option<String>,
+}

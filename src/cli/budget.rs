@@ -1,0 +1,39 @@
+//! `couplet budget`.
+
+use super::Outcome;
+use super::args::{BudgetArgs, Format};
+use super::output::{Failure, Target};
+use super::scenario::{Progress, load, on_threads, plan};
+use crate::montecarlo::Budget;
+use crate::report::{budget_json, budget_text, ledger_table};
+
+pub(super) fn run(args: &BudgetArgs) -> Outcome {
+    let common = &args.common;
+    let loaded = load(common)?;
+    let target = Target::open(&common.output)?;
+    let progress = Progress::new(common.quiet);
+    let (plan, budget) = on_threads(common, || {
+        progress.show("basis", 0, 1);
+        let plan = plan(loaded.scenario, common)?;
+        let settings = plan.scenario().settings.clone();
+        let budget = Budget::new(&plan, settings.seed, settings.lifetimes, &|step, done, of| progress.show(step, done, of))
+            .map_err(|error| Failure::Machine(format!("error: cannot keep the lifetimes in a temporary file: {error}")))?;
+        Ok::<_, Failure>((plan, budget))
+    })??;
+    progress.finish();
+    let scenario = plan.scenario();
+    let momentum = plan.summary();
+    let typical = plan.largest_unload().and_then(Result::ok);
+    let text = match common.format {
+        Format::Text => budget_text(scenario, &budget, &momentum, typical.as_ref(), scenario.settings.seed),
+        Format::Json => pretty(&budget_json(scenario, &budget, &momentum, typical.as_ref(), &loaded.provenance)),
+        Format::Csv => ledger_table(&budget).to_csv(),
+    };
+    target.finish(&text)?;
+    Ok(budget.requirements.iter().all(|checked| checked.met))
+}
+
+/// Indented JSON with a line end.
+pub(super) fn pretty(value: &serde_json::Value) -> String {
+    format!("{value:#}\n")
+}

@@ -1,0 +1,88 @@
+//! From the command line to a plan.
+
+use indicatif::{ProgressBar, ProgressStyle};
+
+use super::args::Common;
+use super::output::{Failure, styled};
+use crate::config::{Diagnostic, Document, ResolutionChoice, read, render_all};
+use crate::lifetime::{Plan, PlanError};
+use crate::mission::Scenario;
+use crate::momentum::Resolution;
+use crate::report::Provenance;
+
+/// A validated configuration with its provenance.
+pub(super) struct Loaded {
+    pub(super) scenario: Scenario,
+    pub(super) provenance: Provenance,
+}
+
+fn refused(faults: &[Diagnostic], document: Option<&Document>) -> Failure {
+    Failure::Input(render_all(faults, document, styled()))
+}
+
+/// Reads and validates the configuration of a call.
+pub(super) fn load(common: &Common) -> Result<Loaded, Failure> {
+    let document = Document::load(&common.file, &common.overlays, &common.settings).map_err(|faults| refused(&faults, None))?;
+    let spec = read(&document).map_err(|faults| refused(&faults, Some(&document)))?;
+    let mut scenario = Scenario::new(&spec).map_err(|faults| refused(&faults, Some(&document)))?;
+    scenario.settings.seed = common.seed.unwrap_or(scenario.settings.seed);
+    scenario.settings.lifetimes = common.lifetimes.unwrap_or(scenario.settings.lifetimes);
+    let provenance = Provenance {
+        version: env!("CARGO_PKG_VERSION"),
+        config: common.file.display().to_string(),
+        config_sha256: document.sha256(),
+        overlays: common.overlays.iter().map(|overlay| overlay.display().to_string()).collect(),
+        settings: common.settings.clone(),
+        seed: scenario.settings.seed,
+        lifetimes: scenario.settings.lifetimes,
+    };
+    Ok(Loaded { scenario, provenance })
+}
+
+/// Simulates the mission.
+pub(super) fn plan(scenario: Scenario, common: &Common) -> Result<Plan, Failure> {
+    let resolution = match scenario.settings.resolution {
+        ResolutionChoice::Default => Resolution::Default,
+        ResolutionChoice::Full => Resolution::Full,
+    };
+    let margin = scenario.settings.margin;
+    Plan::new(scenario, resolution, margin).map_err(|error| {
+        let PlanError::NotServed { .. } = &error;
+        let file = common.file.display();
+        Failure::Input(format!(
+            "error: {error}\n --> {file}: `thrusters`\n  = help: `couplet layout {file}` shows what the layout can do; turn or add a thruster, or set `propulsion.net_force: any`"
+        ))
+    })
+}
+
+/// Runs on the number of threads that was asked for.
+pub(super) fn on_threads<T: Send>(common: &Common, work: impl FnOnce() -> T + Send) -> Result<T, Failure> {
+    let threads = common.threads.map_or(0, usize::from);
+    let pool = rayon::ThreadPoolBuilder::new().num_threads(threads).build();
+    pool.map(|pool| pool.install(work)).map_err(|error| Failure::Machine(format!("error: cannot start threads: {error}")))
+}
+
+/// Progress on standard error, seen only on a terminal.
+pub(super) struct Progress {
+    bar: ProgressBar,
+}
+
+impl Progress {
+    pub(super) fn new(quiet: bool) -> Self {
+        let bar = if quiet { ProgressBar::hidden() } else { ProgressBar::no_length() };
+        if let Ok(style) = ProgressStyle::with_template("{msg:12} {bar:40} {pos}/{len} {eta}") {
+            bar.set_style(style);
+        }
+        Self { bar }
+    }
+
+    pub(super) fn show(&self, step: &'static str, done: u64, of: u64) {
+        self.bar.set_message(step);
+        self.bar.set_length(of);
+        self.bar.set_position(done);
+    }
+
+    pub(super) fn finish(&self) {
+        self.bar.finish_and_clear();
+    }
+}

@@ -1,0 +1,84 @@
+//! The nominal mission in a few figures: momentum by phase, and one unload.
+
+use nalgebra::Vector3;
+
+use super::Plan;
+use crate::pulses::{UnloadCommand, UnloadError, unload};
+
+/// Nominal torque and momentum of one phase. Torques in the body, secular momentum in the inertial frame.
+#[derive(Debug, Clone, PartialEq)]
+pub struct PhaseSummary {
+    /// Name of the phase.
+    pub name: String,
+    /// Name, largest torque, N·m, and secular momentum per day, N·m·s, of each source.
+    pub sources: Vec<(&'static str, f64, Vector3<f64>)>,
+    /// Secular momentum of all sources per day, N·m·s.
+    pub secular_n_m_s_per_day: Vector3<f64>,
+    /// Largest body-frame excursion within an orbit, N·m·s.
+    pub cyclic_n_m_s: f64,
+    /// Momentum that the wheels can hold in every direction, N·m·s; `None` without wheels.
+    pub wheel_envelope_n_m_s: Option<f64>,
+    /// Unloads in the phase; a last interval cut short counts by its share.
+    pub unloads: f64,
+    /// Shortest time between unloads, s.
+    pub unload_interval_s: Option<f64>,
+}
+
+/// An unload of the nominal mission.
+#[derive(Debug, Clone, PartialEq)]
+pub struct TypicalUnload {
+    /// Name of its phase.
+    pub phase: String,
+    /// The commands.
+    pub command: UnloadCommand,
+    /// Mass of the spacecraft then, kg.
+    pub mass_kg: f64,
+}
+
+impl Plan {
+    /// Nominal torque and momentum, phase by phase.
+    #[must_use]
+    pub fn summary(&self) -> Vec<PhaseSummary> {
+        let envelope = self.wheel_envelope().map(crate::authority::Authority::guaranteed);
+        let phases = self.scenario.mission.phases.iter().zip(self.phase_momentum()).enumerate();
+        let one = |(index, (phase, momentum)): (usize, (&crate::mission::Phase, crate::momentum::PhaseMomentum))| {
+            let strata = (0..self.strata.len()).filter(|k| self.strata[*k].phase == index);
+            let rates: Vec<_> = strata.filter_map(|k| self.nominal_unloads(k).1).collect();
+            let each = momentum.peak_torque_n_m.iter().zip(&momentum.secular_n_m_s_per_day);
+            PhaseSummary {
+                name: phase.name.clone(),
+                sources: self.sources().iter().zip(each).map(|(name, (peak, secular))| (*name, *peak, *secular)).collect(),
+                secular_n_m_s_per_day: momentum.secular_n_m_s_per_day.iter().sum(),
+                cyclic_n_m_s: momentum.cyclic_n_m_s,
+                wheel_envelope_n_m_s: envelope,
+                unloads: rates.iter().map(|rate| rate.count).sum(),
+                unload_interval_s: rates.iter().map(|rate| rate.interval_s).reduce(f64::min),
+            }
+        };
+        phases.map(one).collect()
+    }
+
+    /// The unload of the nominal mission with the largest momentum; `None` without unloads.
+    ///
+    /// # Errors
+    /// The thrusters cannot make its torque.
+    #[must_use]
+    pub fn largest_unload(&self) -> Option<Result<TypicalUnload, UnloadError>> {
+        let all = (0..self.strata.len()).flat_map(|k| {
+            let (windows, rate) = self.nominal_unloads(k);
+            windows.into_iter().filter(move |_| rate.is_some()).map(move |momentum| (k, momentum))
+        });
+        let (stratum, momentum) = all.reduce(|a, b| if b.1.norm() > a.1.norm() { b } else { a })?;
+        Some(self.unload_in(stratum, momentum))
+    }
+
+    /// Unloads a momentum (N·m·s, body frame) with the layout and mass of a stratum.
+    ///
+    /// # Errors
+    /// The thrusters cannot make its torque.
+    pub fn unload_in(&self, stratum: usize, momentum_n_m_s: Vector3<f64>) -> Result<TypicalUnload, UnloadError> {
+        let command = unload(momentum_n_m_s, self.pricer(stratum), self.wheel_torque())?;
+        let phase = self.scenario.mission.phases[self.strata[stratum].phase].name.clone();
+        Ok(TypicalUnload { phase, command, mass_kg: self.basis.masses[stratum].mass_kg })
+    }
+}

@@ -1,0 +1,179 @@
+//! The budget on one page of text.
+
+use super::layout::{axes_table, verdict_text};
+use super::momentum::phase_text;
+use super::table::Table;
+use super::unload::unload_text;
+use super::words::{heading, number, paragraph, percent, plain, vector};
+use crate::layout::TravelEnd;
+use crate::lifetime::{PhaseSummary, TypicalUnload};
+use crate::mission::{Bound, Scenario};
+use crate::montecarlo::{Budget, Checked, Distribution};
+use crate::propellant::ROWS;
+
+const SECONDS_PER_YEAR: f64 = 31_557_600.0;
+
+fn ledger_row(name: &str, distribution: &Distribution, format: &dyn Fn(f64) -> String) -> Vec<String> {
+    let at = |p: f64| distribution.at(p).map_or_else(String::new, |estimate| format(estimate.value));
+    vec![name.to_owned(), format(distribution.nominal), format(distribution.mean), at(0.50), at(0.95), at(0.99)]
+}
+
+/// The ledger with full digits, for programs.
+#[must_use]
+pub fn ledger_table(budget: &Budget) -> Table {
+    let mut table = Table::new(&["row", "nominal_kg", "mean_kg", "p50_kg", "p95_kg", "p99_kg"]);
+    let full = |x: f64| x.to_string();
+    for (row, distribution) in ROWS.iter().zip(&budget.rows) {
+        table.push(ledger_row(row.key(), distribution, &full));
+    }
+    table.push(ledger_row("attitude_total", &budget.attitude, &full));
+    table.push(ledger_row("needed", &budget.needed, &full));
+    table
+}
+
+fn answer(budget: &Budget) -> String {
+    let p95 = budget.attitude.at(0.95);
+    let bound = match p95.and_then(|estimate| estimate.upper) {
+        Some(upper) => {
+            format!("at most {} kg in 95 % of lifetimes (upper limit with {:.0} % confidence)", number(upper, 4), budget.confidence * 100.0)
+        }
+        None => "a P95 that this few lifetimes cannot bound".to_owned(),
+    };
+    let life = budget.life_s.iter().find(|(p, _)| (p - 0.95).abs() < 1e-9).and_then(|(_, life)| *life);
+    let life = life.map_or_else(
+        || " At least 95 % of lifetimes never run dry.".to_owned(),
+        |life| format!(" 95 % of lifetimes last {} years or longer.", number(life / SECONDS_PER_YEAR, 3)),
+    );
+    paragraph(
+        "  ",
+        "  ",
+        &format!(
+            "Attitude control takes {} kg nominally and {bound}. The {} kg loaded are enough with probability {} (at least {}).{life}",
+            number(budget.attitude.nominal, 4),
+            number(budget.loaded_kg, 4),
+            percent(budget.enough.share),
+            percent(budget.enough.lower),
+        ),
+    )
+}
+
+fn ledger(budget: &Budget) -> String {
+    let kg = |x: f64| format!("{x:.3}");
+    let mut table = Table::new(&["propellant, kg", "nominal", "mean", "P50", "P95", "P99"]);
+    for (row, distribution) in ROWS.iter().zip(&budget.rows) {
+        table.push(ledger_row(&plain(row.key()), distribution, &kg));
+    }
+    table.push(ledger_row("attitude control, total", &budget.attitude, &kg));
+    table.push(ledger_row("needed on board", &budget.needed, &kg));
+    let limits = budget.attitude.quantiles.iter().map(|q| {
+        let limit = |x: Option<f64>| x.map_or_else(|| "—".to_owned(), kg);
+        vec![format!("P{:.0}", q.p * 100.0), limit(q.lower), kg(q.value), limit(q.upper)]
+    });
+    let mut bounds = Table::new(&["attitude total, kg", "lower limit", "estimate", "upper limit"]);
+    limits.for_each(|row| bounds.push(row));
+    let note = format!(
+        "Total: unloading, rate damping and slews. Needed on board adds leakage and residual, not margin. Limits are one-sided, each with {:.0} % confidence, free of any assumption on the distribution.",
+        budget.confidence * 100.0
+    );
+    format!("{}{}\n{}", table.to_text(), paragraph("  ", "  ", &note), bounds.to_text())
+}
+
+fn drivers(budget: &Budget) -> String {
+    if budget.drivers.is_empty() {
+        return paragraph("  ", "  ", "Nothing in the configuration is uncertain.");
+    }
+    let mut table = Table::new(&["what drives the attitude total", "alone", "with interactions"]);
+    // An estimate of a share may fall a little below zero; the share itself cannot.
+    let whole = |share: f64| (share * 100.0).round().max(0.0).abs();
+    let share = |(value, (low, high)): (f64, (f64, f64))| format!("{} % ({} to {})", whole(value), whole(low), whole(high));
+    for driver in budget.drivers.iter().take(8) {
+        table.push(vec![driver.parameter.clone(), share(driver.first_order), share(driver.total)]);
+    }
+    let note = "Shares of the variance (Sobol' indices) with 95 % bootstrap intervals; vectors count as one.";
+    format!("{}{}", table.to_text(), paragraph("  ", "  ", note))
+}
+
+/// A figure in the unit of its requirement.
+fn in_unit(value: f64, unit: &str) -> String {
+    if unit.is_empty() { percent(value) } else { format!("{} {unit}", number(value, 4)) }
+}
+
+fn requirement(checked: &Checked) -> Vec<String> {
+    let unit = checked.requirement.figure.unit();
+    let (sign, limit) = match checked.requirement.bound {
+        Bound::AtMost(limit) => ("≤", limit),
+        Bound::AtLeast(limit) => ("≥", limit),
+    };
+    vec![
+        checked.requirement.name.clone(),
+        checked.requirement.figure.name().to_owned(),
+        checked.value.map_or_else(|| "—".to_owned(), |value| in_unit(value, unit)),
+        format!("{sign} {}", in_unit(limit, unit)),
+        if checked.met { "met" } else { "NOT MET" }.to_owned(),
+    ]
+}
+
+fn requirements(budget: &Budget) -> String {
+    let mut table = Table::new(&["requirement", "figure", "value", "bound", ""]);
+    budget.requirements.iter().for_each(|checked| table.push(requirement(checked)));
+    table.to_text()
+}
+
+fn valves(budget: &Budget, scenario: &Scenario) -> String {
+    let most = scenario.vehicle.propulsion.thrusters.iter().zip(&budget.cycles).max_by(|a, b| a.1.nominal.total_cmp(&b.1.nominal));
+    let Some((thruster, cycles)) = most else { return String::new() };
+    let qualified = scenario.vehicle.propulsion.qualified_pulses.map_or_else(String::new, |limit| format!("; qualified for {limit:.0}"));
+    let p95 = cycles.at(0.95).map_or(f64::NAN, |estimate| estimate.value);
+    let text = format!("Busiest valve: {}, {:.0} pulses nominally, {p95:.0} at P95{qualified}.", thruster.name, cycles.nominal);
+    paragraph("  ", "  ", &text)
+}
+
+const CAUTIONS: [&str; 3] = [
+    "Preliminary design figures from models with stated assumptions; they replace neither the analyses nor the margins that your mission's standards ask for, and a qualified review decides.",
+    "Facets do not shade one another; propellant slosh, flexible modes and plume impingement are left out.",
+    "Hydrazine and other propellants are toxic, and tanks are pressurised: loading and handling belong to trained crews under the range's safety rules.",
+];
+
+/// The budget on one page.
+#[must_use]
+pub fn budget_text(scenario: &Scenario, budget: &Budget, phases: &[PhaseSummary], unload: Option<&TypicalUnload>, seed: u64) -> String {
+    let years = scenario.mission.duration_s() / SECONDS_PER_YEAR;
+    let title = format!(
+        "{}: attitude-control budget over {} years from {}; {} lifetimes, seed {seed}.",
+        scenario.vehicle.name,
+        number(years, 3),
+        scenario.mission.start,
+        budget.lifetimes
+    );
+    let mut text = paragraph("", "", &title);
+    let mut section = |title: &str, body: String| {
+        text.push_str(&heading(title));
+        text.push_str(&body);
+    };
+    section("Answer", answer(budget));
+    if !budget.requirements.is_empty() {
+        section("Requirements", requirements(budget));
+    }
+    section("Propellant", ledger(budget));
+    section("Drivers", drivers(budget));
+    for case in &budget.layout {
+        let tank = if case.travel_end == TravelEnd::Start { "full" } else { "empty" };
+        let title = format!("Thruster layout, all working, tank {tank} (body frame)");
+        let at = format!("Centre of mass {} m.", vector(&case.centre_of_mass_m, 3));
+        let table = if case.travel_end == TravelEnd::Start { axes_table(case).to_text() } else { String::new() };
+        let verdicts = verdict_text(&case.pure_torque, "Pure torque") + &verdict_text(&case.any_force, "Torque with net force");
+        section(&title, paragraph("  ", "  ", &at) + &verdicts + &table);
+    }
+    for phase in phases {
+        section(&format!("Momentum in phase {} (secular: inertial frame J2000)", phase.name), phase_text(phase));
+    }
+    if let Some(unload) = unload {
+        let body = unload_text(unload, &scenario.vehicle.propulsion.thrusters) + &valves(budget, scenario);
+        section(&format!("The largest nominal unload, in phase {}", unload.phase), body);
+    }
+    if !budget.warnings.is_empty() {
+        section("Warnings", budget.warnings.iter().map(|warning| paragraph("  • ", "    ", warning)).collect());
+    }
+    section("Cautions", CAUTIONS.iter().map(|caution| paragraph("  • ", "    ", caution)).collect());
+    text
+}

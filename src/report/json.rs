@@ -1,0 +1,248 @@
+//! Documents for programs. The keys are fixed; docs/output.md describes them.
+
+use nalgebra::Vector3;
+use serde::Serialize;
+use serde_json::{Map, Value, json};
+
+use crate::layout::{LayoutCase, OutBecause, TravelEnd, Verdict};
+use crate::lifetime::{PhaseSummary, TypicalUnload};
+use crate::mission::{Bound, Scenario};
+use crate::montecarlo::{Budget, Distribution};
+use crate::propellant::ROWS;
+use crate::vehicle::Thruster;
+
+const SECONDS_PER_YEAR: f64 = 31_557_600.0;
+
+/// Where a result came from.
+#[derive(Debug, Clone, PartialEq, Eq, Serialize)]
+pub struct Provenance {
+    /// Version of the program.
+    pub version: &'static str,
+    /// The configuration file.
+    pub config: String,
+    /// SHA-256 of the merged configuration.
+    pub config_sha256: String,
+    /// Overlay files in order.
+    pub overlays: Vec<String>,
+    /// Settings of the command line in order.
+    pub settings: Vec<String>,
+    /// Seed of the draws.
+    pub seed: u64,
+    /// Lifetimes drawn.
+    pub lifetimes: u64,
+}
+
+fn document(name: &str, provenance: &Provenance, mut body: Map<String, Value>) -> Value {
+    body.insert("schema".to_owned(), json!(format!("couplet/{name}/1")));
+    body.insert("provenance".to_owned(), json!(provenance));
+    Value::Object(body)
+}
+
+fn object(value: Value) -> Map<String, Value> {
+    match value {
+        Value::Object(map) => map,
+        _ => Map::new(),
+    }
+}
+
+fn xyz(v: &Vector3<f64>) -> Value {
+    json!([v.x, v.y, v.z])
+}
+
+fn verdict(verdict: &Verdict) -> Value {
+    let axes: Map<String, Value> = verdict
+        .axes
+        .iter()
+        .map(|axis| {
+            let body = json!({ "most_N_m": axis.most_n_m, "price_kg_per_N_m_s": axis.price, "thrusters": axis.thrusters });
+            (axis.axis.to_owned(), body)
+        })
+        .collect();
+    json!({
+        "every_direction": verdict.every_direction,
+        "guaranteed_N_m": verdict.guaranteed_n_m,
+        "weakest_direction": xyz(&verdict.weakest_direction),
+        "dearest_direction": verdict.dearest.map(|(direction, _)| xyz(&direction)),
+        "dearest_price_kg_per_N_m_s": verdict.dearest.map(|(_, price)| price),
+        "axes": axes,
+    })
+}
+
+fn cases(cases: &[LayoutCase]) -> Value {
+    let one = |case: &LayoutCase| {
+        json!({
+            "thrusters_out": case.thrusters_out,
+            "out_because": match case.out_because { OutBecause::None => "none", OutBecause::Thruster => "thruster", OutBecause::String => "string" },
+            "centre_of_mass": match case.travel_end { TravelEnd::Start => "start", TravelEnd::End => "end" },
+            "centre_of_mass_m": xyz(&case.centre_of_mass_m),
+            "torque_rank": case.torque_rank,
+            "wrench_rank": case.wrench_rank,
+            "pure_torque": verdict(&case.pure_torque),
+            "any_force": verdict(&case.any_force),
+        })
+    };
+    cases.iter().map(one).collect()
+}
+
+/// `couplet/layout/1`.
+#[must_use]
+pub fn layout_json(list: &[LayoutCase], provenance: &Provenance) -> Value {
+    document("layout", provenance, object(json!({ "cases": cases(list) })))
+}
+
+fn phases(list: &[PhaseSummary]) -> Value {
+    let one = |phase: &PhaseSummary| {
+        let peaks: Map<String, Value> = phase.sources.iter().map(|(name, peak, _)| ((*name).to_owned(), json!(peak))).collect();
+        let mut secular: Map<String, Value> = phase.sources.iter().map(|(name, _, h)| ((*name).to_owned(), xyz(h))).collect();
+        secular.insert("total".to_owned(), xyz(&phase.secular_n_m_s_per_day));
+        json!({
+            "name": phase.name,
+            "peak_torque_N_m": peaks,
+            "secular_N_m_s_per_day": secular,
+            "cyclic_N_m_s": phase.cyclic_n_m_s,
+            "wheel_envelope_N_m_s": phase.wheel_envelope_n_m_s,
+            "unloads": phase.unloads,
+            "unload_interval_s": phase.unload_interval_s,
+        })
+    };
+    list.iter().map(one).collect()
+}
+
+/// `couplet/momentum/1`.
+#[must_use]
+pub fn momentum_json(list: &[PhaseSummary], provenance: &Provenance) -> Value {
+    document("momentum", provenance, object(json!({ "phases": phases(list) })))
+}
+
+fn unload(unload: &TypicalUnload, thrusters: &[Thruster]) -> Value {
+    let command = &unload.command;
+    let firings: Value = command
+        .thrusters
+        .iter()
+        .map(|firing| {
+            json!({
+                "name": thrusters[firing.thruster].name,
+                "impulse_N_s": firing.impulse_n_s,
+                "pulses": firing.pulses,
+                "on_time_s": firing.on_time_s,
+                "propellant_kg": firing.propellant_kg,
+            })
+        })
+        .collect();
+    json!({
+        "momentum_N_m_s": xyz(&command.momentum_n_m_s),
+        "thrusters": firings,
+        "propellant_kg": command.propellant_kg,
+        "ideal_propellant_kg": command.ideal_propellant_kg,
+        "duration_s": command.duration_s,
+        "residual_N_m_s": xyz(&command.residual_n_m_s),
+        "net_impulse_N_s": xyz(&command.net_impulse_n_s),
+        "delta_v_m_per_s": xyz(&(command.net_impulse_n_s / unload.mass_kg)),
+        "valve_cycles": command.thrusters.iter().map(|firing| firing.pulses).sum::<u32>(),
+        "phase": unload.phase,
+    })
+}
+
+/// `couplet/unload/1`.
+#[must_use]
+pub fn unload_json(typical: &TypicalUnload, thrusters: &[Thruster], provenance: &Provenance) -> Value {
+    document("unload", provenance, object(unload(typical, thrusters)))
+}
+
+fn quantile(distribution: &Distribution, p: f64) -> Option<f64> {
+    distribution.at(p).map(|estimate| estimate.value)
+}
+
+fn ledger(budget: &Budget) -> Value {
+    let one = |(row, distribution): (&crate::propellant::Row, &Distribution)| {
+        json!({
+            "row": row.key(),
+            "nominal_kg": distribution.nominal,
+            "mean_kg": distribution.mean,
+            "p50_kg": quantile(distribution, 0.50),
+            "p95_kg": quantile(distribution, 0.95),
+            "p99_kg": quantile(distribution, 0.99),
+        })
+    };
+    ROWS.iter().zip(&budget.rows).map(one).collect()
+}
+
+fn attitude_total(budget: &Budget) -> Value {
+    let total = &budget.attitude;
+    let quantiles: Value = total
+        .quantiles
+        .iter()
+        .map(|q| json!({ "p": q.p, "kg": q.value, "lower_kg": q.lower, "upper_kg": q.upper, "confidence": q.confidence, "lifetimes_needed": q.needed }))
+        .collect();
+    json!({ "nominal": total.nominal, "mean": total.mean, "sd": total.sd, "quantiles": quantiles })
+}
+
+fn requirements(budget: &Budget) -> Value {
+    let one = |checked: &crate::montecarlo::Checked| {
+        let (bound, limit) = match checked.requirement.bound {
+            Bound::AtMost(limit) => ("at_most", limit),
+            Bound::AtLeast(limit) => ("at_least", limit),
+        };
+        json!({
+            "name": checked.requirement.name,
+            "figure": checked.requirement.figure.name(),
+            "met": checked.met,
+            "value": checked.value,
+            "bound": bound,
+            "limit": limit,
+            "unit": checked.requirement.figure.unit(),
+        })
+    };
+    budget.requirements.iter().map(one).collect()
+}
+
+/// `couplet/budget/1`.
+#[must_use]
+pub fn budget_json(
+    scenario: &Scenario,
+    budget: &Budget,
+    momentum: &[PhaseSummary],
+    typical: Option<&TypicalUnload>,
+    provenance: &Provenance,
+) -> Value {
+    let propulsion = &scenario.vehicle.propulsion;
+    let life: Value = budget.life_s.iter().map(|(p, life)| json!({ "p": p, "years": life.map(|s| s / SECONDS_PER_YEAR) })).collect();
+    let cycles: Value = propulsion
+        .thrusters
+        .iter()
+        .zip(&budget.cycles)
+        .map(|(thruster, d)| json!({ "thruster": thruster.name, "nominal": d.nominal, "p95": quantile(d, 0.95), "qualified": propulsion.qualified_pulses }))
+        .collect();
+    let drivers: Value = budget
+        .drivers
+        .iter()
+        .map(|d| {
+            let interval = |(low, high): (f64, f64)| json!([low, high]);
+            json!({
+                "parameter": d.parameter,
+                "first_order": d.first_order.0,
+                "first_order_interval": interval(d.first_order.1),
+                "total": d.total.0,
+                "total_interval": interval(d.total.1),
+            })
+        })
+        .collect();
+    let body = json!({
+        "ledger": ledger(budget),
+        "attitude_total_kg": attitude_total(budget),
+        "propellant_loaded_kg": budget.loaded_kg,
+        "probability_enough": budget.enough.share,
+        "probability_enough_interval": [budget.enough.lower, budget.enough.upper],
+        "life_years": life,
+        "unloads": { "nominal": budget.unloads.nominal, "p95": quantile(&budget.unloads, 0.95) },
+        "valve_cycles": cycles,
+        "drivers": drivers,
+        "wheel_fill": budget.wheel_fill,
+        "requirements": requirements(budget),
+        "warnings": budget.warnings,
+        "layout": { "cases": cases(&budget.layout) },
+        "momentum": { "phases": phases(momentum) },
+        "unload": typical.map(|typical| unload(typical, &propulsion.thrusters)),
+    });
+    document("budget", provenance, object(body))
+}
