@@ -44,15 +44,20 @@ fn answer(budget: &Budget) -> String {
         || " At least 95 % of lifetimes never run dry.".to_owned(),
         |life| format!(" 95 % of lifetimes last {} years or longer.", number(life / SECONDS_PER_YEAR, 3)),
     );
+    // A lower limit of 99.97 % must not read as certainty.
+    let fine = |share: f64| format!("{:.3} %", share * 100.0);
+    let enough = if budget.enough.share >= 1.0 {
+        format!("in every lifetime flown (probability at least {})", fine(budget.enough.lower))
+    } else {
+        format!("with probability {} (at least {})", fine(budget.enough.share), fine(budget.enough.lower))
+    };
     paragraph(
         "  ",
         "  ",
         &format!(
-            "Attitude control takes {} kg nominally and {bound}. The {} kg loaded are enough with probability {} (at least {}).{life}",
+            "Attitude control takes {} kg nominally and {bound}. The {} kg loaded are enough {enough}.{life}",
             number(budget.attitude.nominal, 4),
             number(budget.loaded_kg, 4),
-            percent(budget.enough.share),
-            percent(budget.enough.lower),
         ),
     )
 }
