@@ -96,7 +96,11 @@ fn policy(written: Option<&config::Unload>, at: &str, has_wheels: bool, faults: 
             faults.within(&format!("{at}.unload.at_fill"), fill.0, 0.01, 1.0, "a share of the wheel envelope").map(UnloadPolicy::AtFill)
         }
         _ => {
-            faults.push(&format!("{at}.unload"), "expected one of `every` and `at_fill`", "keep one: `every: 1 d`, or `at_fill: 70 %`");
+            faults.push(
+                &format!("{at}.unload"),
+                "expected one of `every` and `at_fill`",
+                "keep one: `every: 1 d`, or `at_fill: 70 %`; an overlay takes the other away with `every: null`",
+            );
             None
         }
     }

@@ -17,8 +17,8 @@ pub struct PhaseMomentum {
     pub secular_n_m_s_per_day: Vec<Vector3<f64>>,
     /// Largest excursion from the steady gain within an orbit, any stratum, N·m·s.
     pub cyclic_n_m_s: f64,
-    /// The excursions themselves, body frame, all strata.
-    pub excursions: Vec<Vector3<f64>>,
+    /// The excursions themselves, body frame, each with the index of its stratum.
+    pub excursions: Vec<(usize, Vector3<f64>)>,
 }
 
 /// Nominal value of a feature with the mass properties of a stratum; a deviation from nominal is zero.
@@ -45,7 +45,7 @@ pub fn phase_momentum(scenario: &Scenario, strata: &[Stratum], raw: &RawBasis, m
         excursions: Vec::new(),
     };
     let mut phases = vec![none; scenario.mission.phases.len()];
-    for ((stratum, span), mass) in strata.iter().zip(&raw.spans).zip(masses) {
+    for (index, ((stratum, span), mass)) in strata.iter().zip(&raw.spans).zip(masses).enumerate() {
         let phase = &mut phases[stratum.phase];
         let features = &raw.features[stratum.phase];
         let values: Vec<f64> = features.iter().map(|f| nominal_value(&f.feature, scenario, &nominal, mass)).collect();
@@ -66,7 +66,7 @@ pub fn phase_momentum(scenario: &Scenario, strata: &[Stratum], raw: &RawBasis, m
         for excursion in &span.excursions {
             let total: Vector3<f64> = excursion.iter().zip(&values).map(|(part, value)| part * *value).sum();
             phase.cyclic_n_m_s = phase.cyclic_n_m_s.max(total.norm());
-            phase.excursions.push(total);
+            phase.excursions.push((index, total));
         }
     }
     phases

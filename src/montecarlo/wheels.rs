@@ -11,8 +11,8 @@ pub(super) fn nominal_fill(plan: &Plan) -> Option<f64> {
     let mut most: f64 = 0.0;
     for (index, stratum) in plan.strata().iter().enumerate() {
         let (windows, rate) = plan.nominal_unloads(index);
-        let excursions = &phases[stratum.phase].excursions;
-        let cyclic = excursions.iter().map(|h| envelope.fill(h)).fold(0.0, f64::max);
+        let excursions = phases[stratum.phase].excursions.iter().filter(|(own, _)| *own == index);
+        let cyclic = excursions.map(|(_, h)| envelope.fill(h)).fold(0.0, f64::max);
         // Without unloads a window's momentum goes on growing over the whole stratum.
         let grown = if rate.is_some() { 1.0 } else { stratum.duration_s / stratum.span.window_s() };
         let steady = windows.iter().map(|h| envelope.fill(h)).fold(0.0, f64::max) * grown;
