@@ -71,6 +71,40 @@ pub(super) fn extend<const N: usize>(
     }
 }
 
+/// Orthonormal rows that span `rows` beside the orthonormal `given`, strongest first; rows with less than
+/// [`DEPENDENT`] of the strongest row left add nothing.
+pub(super) fn orthonormal_rows(given: &[Vec<f64>], rows: &[Vec<f64>]) -> Vec<Vec<f64>> {
+    let inner = |a: &[f64], b: &[f64]| a.iter().zip(b).map(|(x, y)| x * y).sum::<f64>();
+    let size = |row: &Vec<f64>| inner(row, row).sqrt();
+    let smallest = DEPENDENT * rows.iter().map(size).fold(0.0, f64::max);
+    let mut found: Vec<Vec<f64>> = Vec::new();
+    let beside = |row: &Vec<f64>, found: &[Vec<f64>]| {
+        let mut left = row.clone();
+        // Twice, as in `residual`.
+        for e in given.iter().chain(found).chain(given).chain(found) {
+            let along = inner(&left, e);
+            left.iter_mut().zip(e).for_each(|(x, e)| *x -= along * e);
+        }
+        left
+    };
+    while found.len() < rows.len() {
+        let left = rows.iter().map(|row| beside(row, &found));
+        let Some(mut most) = left.reduce(|a, b| if size(&b) > size(&a) { b } else { a }) else {
+            break;
+        };
+        let length = size(&most);
+        if length <= smallest {
+            break;
+        }
+        most.iter_mut().for_each(|x| *x /= length);
+        let mut unit = beside(&most, &found);
+        let length = size(&unit);
+        unit.iter_mut().for_each(|x| *x /= length);
+        found.push(unit);
+    }
+    found
+}
+
 /// Extends the orthonormal `basis` to the first `dimensions` coordinates and returns what was added.
 pub(super) fn complement<const N: usize>(basis: &[[f64; N]], dimensions: usize) -> Vec<[f64; N]> {
     let axes: Vec<[f64; N]> = (0..dimensions).map(unit_axis).collect();
