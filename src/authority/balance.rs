@@ -29,11 +29,7 @@ pub(super) fn balanced(forces: &[Vector3<f64>], two_sided: &[bool]) -> (Vec<bool
     }
     let mut taking_part = vec![true; forces.len()];
     let mut across = Vector3::zeros();
-    for unit in normals
-        .iter()
-        .filter_map(|n| n.try_normalize(DEPENDENT))
-        .flat_map(|n| [n, -n])
-    {
+    for unit in normals.iter().filter_map(|n| n.try_normalize(DEPENDENT)).flat_map(|n| [n, -n]) {
         let supports = |(d, two): (&Vector3<f64>, &bool)| {
             let along = unit.dot(d);
             along <= DEPENDENT && (!two || along >= -DEPENDENT)
@@ -80,11 +76,7 @@ mod tests {
 
     #[test]
     fn all_on_one_side_leaves_none() {
-        let forces = [
-            (x() + z()).normalize(),
-            (z() - x()).normalize(),
-            (y() + z()).normalize(),
-        ];
+        let forces = [(x() + z()).normalize(), (z() - x()).normalize(), (y() + z()).normalize()];
         assert_eq!(balanced(&forces, &[false; 3]).0, [false; 3]);
     }
 
@@ -97,17 +89,9 @@ mod tests {
     #[test]
     fn tetrahedron_is_whole_and_wheels_always_take_part() {
         let s = 1.0 / 3.0_f64.sqrt();
-        let forces = [
-            Vector3::new(s, s, s),
-            Vector3::new(s, -s, -s),
-            Vector3::new(-s, s, -s),
-            Vector3::new(-s, -s, s),
-        ];
+        let forces = [Vector3::new(s, s, s), Vector3::new(s, -s, -s), Vector3::new(-s, s, -s), Vector3::new(-s, -s, s)];
         assert_eq!(balanced(&forces, &[false; 4]).0, [true; 4]);
         assert_eq!(balanced(&forces[..3], &[false; 3]).0, [false; 3]);
-        assert_eq!(
-            balanced(&[Vector3::zeros(), x()], &[true, false]).0,
-            [true, false]
-        );
+        assert_eq!(balanced(&[Vector3::zeros(), x()], &[true, false]).0, [true, false]);
     }
 }

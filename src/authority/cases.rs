@@ -17,10 +17,7 @@ impl Capability {
     /// Both answers for `generators`.
     #[must_use]
     pub fn new(generators: &[Generator], net: NetForce) -> Self {
-        Self {
-            authority: Authority::new(generators, net),
-            price: PriceMap::new(generators, net),
-        }
+        Self { authority: Authority::new(generators, net), price: PriceMap::new(generators, net) }
     }
 }
 
@@ -42,11 +39,7 @@ pub struct Case {
 pub fn cases(generators: &[Generator], lost: &[Vec<usize>]) -> Vec<Case> {
     let case = |lost: &Vec<usize>| {
         let left = without(generators, lost);
-        Case {
-            lost: lost.clone(),
-            pure_torque: Capability::new(&left, NetForce::Zero),
-            any_force: Capability::new(&left, NetForce::Any),
-        }
+        Case { lost: lost.clone(), pure_torque: Capability::new(&left, NetForce::Zero), any_force: Capability::new(&left, NetForce::Any) }
     };
     lost.par_iter().map(case).collect()
 }
@@ -55,15 +48,7 @@ pub fn cases(generators: &[Generator], lost: &[Vec<usize>]) -> Vec<Case> {
 #[must_use]
 pub fn without(generators: &[Generator], lost: &[usize]) -> Vec<Generator> {
     let keep = |(index, g): (usize, &Generator)| {
-        if lost.contains(&index) {
-            Generator {
-                least: 0.0,
-                most: 0.0,
-                ..*g
-            }
-        } else {
-            *g
-        }
+        if lost.contains(&index) { Generator { least: 0.0, most: 0.0, ..*g } } else { *g }
     };
     generators.iter().enumerate().map(keep).collect()
 }
@@ -71,7 +56,5 @@ pub fn without(generators: &[Generator], lost: &[usize]) -> Vec<Generator> {
 /// The sets for [`cases`]: nothing lost, then each of `count` generators alone.
 #[must_use]
 pub fn single_failures(count: usize) -> Vec<Vec<usize>> {
-    std::iter::once(Vec::new())
-        .chain((0..count).map(|lost| vec![lost]))
-        .collect()
+    std::iter::once(Vec::new()).chain((0..count).map(|lost| vec![lost])).collect()
 }

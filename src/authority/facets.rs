@@ -2,13 +2,10 @@
 
 use std::collections::HashMap;
 
-use super::linear::{DEPENDENT, Vec6, dot, unit_axis};
+use super::Generator;
+use super::linear::{DEPENDENT, Vec6, dot, norm, scaled, unit_axis};
 use super::planes::{Plane, each_plane, parallel};
-use super::reduced::{Normal, Reduced};
-use super::{Generator, HalfSpace};
-
-/// An offset below this fraction of the sum it is the rest of is rounding: 32 terms round to 32 × 2.2e-16.
-const OFFSET_IS_ROUNDING: f64 = 1e-13;
+use super::reduced::{ROUNDINGS, Reduced};
 
 /// Sine below which a column counts as lying in a face when faces are weeded out. Generous: a face kept without
 /// need costs a dot product, a face dropped wrongly costs the answer.
@@ -27,21 +24,24 @@ struct Line {
     force: [f64; 3],
 }
 
+/// A face in the reduced coordinates of the attainable torques: unit normal and offset. There the set is round even
+/// where it is flat in newton metres, so that directions and offsets keep their digits.
+#[derive(Debug, Clone, Copy)]
+pub(super) struct ReducedFace {
+    pub(super) normal: [f64; 3],
+    pub(super) offset: f64,
+}
+
 /// All faces of the attainable torques of `generators`, which `reduced` describes.
-pub(super) fn facets(reduced: &Reduced, generators: &[Generator]) -> Vec<HalfSpace> {
-    let mut faces = Faces {
-        reduced,
-        generators,
-        seen: HashMap::new(),
-        half_spaces: Vec::new(),
-    };
+pub(super) fn facets(reduced: &Reduced, generators: &[Generator]) -> Vec<ReducedFace> {
+    let mut faces = Faces { reduced, generators, seen: HashMap::new(), found: Vec::new() };
     if reduced.torque_rank == 0 {
         return Vec::new();
     }
     if reduced.rank == 1 {
         faces.add(&unit_axis(0));
         faces.add(&unit_axis::<6>(0).map(|x| -x));
-        return faces.half_spaces;
+        return faces.found;
     }
     let lines = lines(reduced, generators);
     let units: Vec<Vec6> = lines.iter().map(|line| line.unit).collect();
@@ -58,33 +58,21 @@ pub(super) fn facets(reduced: &Reduced, generators: &[Generator]) -> Vec<HalfSpa
             faces.add_both(plane, along, &rates, &balance);
         }
     });
-    faces.half_spaces
+    faces.found
 }
 
 fn lines(reduced: &Reduced, generators: &[Generator]) -> Vec<Line> {
     let mut lines: Vec<Line> = Vec::new();
     for column in &reduced.columns {
         let generator = &generators[column.index];
-        let (least, most) = (
-            generator.least * column.length,
-            generator.most * column.length,
-        );
-        let known = lines
-            .iter_mut()
-            .find_map(|line| parallel(&line.unit, &column.unit).map(|sign| (line, sign)));
+        let (least, most) = (generator.least * column.length, generator.most * column.length);
+        let known = lines.iter_mut().find_map(|line| parallel(&line.unit, &column.unit).map(|sign| (line, sign)));
         if let Some((line, sign)) = known {
             line.least += if sign > 0.0 { least } else { -most };
             line.most += if sign > 0.0 { most } else { -least };
         } else {
-            let force = std::array::from_fn(|i| {
-                column.unit.get(reduced.torque_rank + i).map_or(0.0, |x| *x)
-            });
-            lines.push(Line {
-                unit: column.unit,
-                least,
-                most,
-                force,
-            });
+            let force = std::array::from_fn(|i| column.unit.get(reduced.torque_rank + i).map_or(0.0, |x| *x));
+            lines.push(Line { unit: column.unit, least, most, force });
         }
     }
     lines
@@ -94,7 +82,7 @@ struct Faces<'a> {
     reduced: &'a Reduced,
     generators: &'a [Generator],
     seen: HashMap<[i64; 3], usize>,
-    half_spaces: Vec<HalfSpace>,
+    found: Vec<ReducedFace>,
 }
 
 impl Faces<'_> {
@@ -113,48 +101,33 @@ impl Faces<'_> {
     }
 
     fn add(&mut self, reduced_normal: &Vec6) {
-        let Some(normal) = self.reduced.normal(reduced_normal) else {
+        let torque = std::array::from_fn(|i| if i < self.reduced.torque_rank { reduced_normal[i] } else { 0.0 });
+        let size = norm(&torque);
+        if size <= DEPENDENT {
             return;
-        };
-        let face = HalfSpace {
-            normal: normal.along,
-            offset: self.offset(&normal),
-        };
-        #[expect(
-            clippy::cast_possible_truncation,
-            reason = "components of a unit vector over 1e-12 fit 2^63"
-        )]
-        let key = face.normal.map(|x| (x / SAME_NORMAL).round() as i64).into();
-        let next = self.half_spaces.len();
+        }
+        let face = ReducedFace { normal: scaled(&torque, size.recip()), offset: self.offset(reduced_normal) / size };
+        #[expect(clippy::cast_possible_truncation, reason = "components of a unit vector over 1e-12 fit 2^63")]
+        let key = face.normal.map(|x| (x / SAME_NORMAL).round() as i64);
+        let next = self.found.len();
         let index = *self.seen.entry(key).or_insert(next);
-        match self.half_spaces.get_mut(index) {
+        match self.found.get_mut(index) {
             Some(known) => known.offset = known.offset.min(face.offset),
-            None => self.half_spaces.push(face),
+            None => self.found.push(face),
         }
     }
 
-    /// Support of the zonotope along the normal, from the generators themselves: a bound that holds for any normal,
-    /// so that rounding of a normal can only loosen a face, never cut the set.
-    fn offset(&self, normal: &Normal) -> f64 {
-        let used = self
-            .generators
-            .iter()
-            .zip(&self.reduced.taking_part)
-            .filter_map(|(g, part)| part.then_some(g));
-        let (mut offset, mut scale) = (0.0, 0.0);
-        for generator in used {
-            let value = normal.value(generator);
-            let (most, least) = (generator.most * value, generator.least * value);
-            offset += most.max(least);
-            let size = generator.torque.norm() * normal.torque.norm()
-                + generator.force.norm() * normal.force.norm();
-            scale += generator.most.max(-generator.least) * size;
+    /// Support of the zonotope along the normal, from all its columns: a bound that holds for any normal, so that
+    /// rounding of a normal can only loosen a face, never cut the set.
+    fn offset(&self, reduced_normal: &Vec6) -> f64 {
+        let (mut offset, mut noise) = (0.0, 0.0);
+        for column in &self.reduced.columns {
+            let generator = &self.generators[column.index];
+            let value = dot(reduced_normal, &column.unit) * column.length;
+            offset += (generator.most * value).max(generator.least * value);
+            noise += generator.most.max(-generator.least) * column.length * column.noise;
         }
-        if offset <= OFFSET_IS_ROUNDING * scale {
-            0.0
-        } else {
-            offset
-        }
+        if offset <= ROUNDINGS * noise { 0.0 } else { offset }
     }
 }
 
@@ -176,14 +149,8 @@ impl Balance {
         let reach = |line: &Line| (line.most - line.least) * dot(&line.force, &line.force).sqrt();
         Self {
             dimensions,
-            least: lines
-                .iter()
-                .map(|line| line.force.map(|x| x * line.least))
-                .collect(),
-            most: lines
-                .iter()
-                .map(|line| line.force.map(|x| x * line.most))
-                .collect(),
+            least: lines.iter().map(|line| line.force.map(|x| x * line.least)).collect(),
+            most: lines.iter().map(|line| line.force.map(|x| x * line.most)).collect(),
             force: lines.iter().map(|line| line.force).collect(),
             slack: IN_FACE * lines.iter().map(reach).sum::<f64>(),
         }
@@ -195,21 +162,13 @@ impl Balance {
             return [true; 2];
         }
         let (mut up, mut down) = ([0.0; 3], [0.0; 3]);
-        let mut inside = Inside {
-            count: 0,
-            lines: [0; 64],
-            whole: true,
-        };
+        let mut inside = Inside { count: 0, lines: [0; 64], whole: true };
         for (index, rate) in rates.iter().enumerate() {
             if rate.abs() <= IN_FACE {
                 inside.push(index);
                 continue;
             }
-            let (above, below) = if *rate > 0.0 {
-                (&mut up, &mut down)
-            } else {
-                (&mut down, &mut up)
-            };
+            let (above, below) = if *rate > 0.0 { (&mut up, &mut down) } else { (&mut down, &mut up) };
             for (sum, x) in above.iter_mut().zip(&self.most[index]) {
                 *sum += x;
             }
@@ -233,10 +192,7 @@ impl Balance {
             }
             let (mut low, mut high) = (dot(force, &normal), dot(force, &normal));
             for &index in inside {
-                let (least, most) = (
-                    dot(&self.least[index], &normal),
-                    dot(&self.most[index], &normal),
-                );
+                let (least, most) = (dot(&self.least[index], &normal), dot(&self.most[index], &normal));
                 low += least.min(most);
                 high += least.max(most);
             }
@@ -276,9 +232,5 @@ impl Inside {
 }
 
 fn cross(a: &[f64; 3], b: &[f64; 3]) -> [f64; 3] {
-    [
-        a[1] * b[2] - a[2] * b[1],
-        a[2] * b[0] - a[0] * b[2],
-        a[0] * b[1] - a[1] * b[0],
-    ]
+    [a[1] * b[2] - a[2] * b[1], a[2] * b[0] - a[0] * b[2], a[0] * b[1] - a[1] * b[0]]
 }

@@ -52,29 +52,13 @@ impl Generator {
     ) -> Self {
         let arm_m = (position_m - centre_of_mass_m).cross(&push);
         let rounding_m = ARM_IS_ROUNDING * (position_m.norm() + centre_of_mass_m.norm());
-        let torque = if arm_m.norm() <= rounding_m {
-            Vector3::zeros()
-        } else {
-            arm_m
-        };
-        Self {
-            torque,
-            force: push,
-            least: 0.0,
-            most: thrust_n,
-            cost: exhaust_speed_m_per_s.recip(),
-        }
+        let torque = if arm_m.norm() <= rounding_m { Vector3::zeros() } else { arm_m };
+        Self { torque, force: push, least: 0.0, most: thrust_n, cost: exhaust_speed_m_per_s.recip() }
     }
 
     /// A wheel on the unit vector `axis` that holds up to `capacity` (N·m·s, or N·m for its torque) either way.
     #[must_use]
     pub fn wheel(axis: Vector3<f64>, capacity: f64) -> Self {
-        Self {
-            torque: axis,
-            force: Vector3::zeros(),
-            least: -capacity,
-            most: capacity,
-            cost: 0.0,
-        }
+        Self { torque: axis, force: Vector3::zeros(), least: -capacity, most: capacity, cost: 0.0 }
     }
 }

@@ -50,17 +50,10 @@ pub(super) fn residual<const N: usize>(vector: &[f64; N], basis: &[[f64; N]]) ->
 
 /// Extends the orthonormal `basis` to the span of it and `vectors`, the vector with most left first; stops when no
 /// vector has more than `tolerance` left.
-pub(super) fn extend<const N: usize>(
-    basis: &mut Vec<[f64; N]>,
-    vectors: &[[f64; N]],
-    tolerance: f64,
-) {
+pub(super) fn extend<const N: usize>(basis: &mut Vec<[f64; N]>, vectors: &[[f64; N]], tolerance: f64) {
     while basis.len() < N {
         let left = vectors.iter().map(|v| residual(v, basis));
-        let Some((most, size)) = left
-            .map(|v| (v, norm(&v)))
-            .reduce(|a, b| if b.1 > a.1 { b } else { a })
-        else {
+        let Some((most, size)) = left.map(|v| (v, norm(&v))).reduce(|a, b| if b.1 > a.1 { b } else { a }) else {
             return;
         };
         if size <= tolerance {
@@ -69,6 +62,40 @@ pub(super) fn extend<const N: usize>(
         let unit = residual(&scaled(&most, size.recip()), basis);
         basis.push(scaled(&unit, norm(&unit).recip()));
     }
+}
+
+/// Orthonormal rows that span `rows` beside the orthonormal `given`, strongest first; rows with less than
+/// [`DEPENDENT`] of the strongest row left add nothing.
+pub(super) fn orthonormal_rows(given: &[Vec<f64>], rows: &[Vec<f64>]) -> Vec<Vec<f64>> {
+    let inner = |a: &[f64], b: &[f64]| a.iter().zip(b).map(|(x, y)| x * y).sum::<f64>();
+    let size = |row: &Vec<f64>| inner(row, row).sqrt();
+    let smallest = DEPENDENT * rows.iter().map(size).fold(0.0, f64::max);
+    let mut found: Vec<Vec<f64>> = Vec::new();
+    let beside = |row: &Vec<f64>, found: &[Vec<f64>]| {
+        let mut left = row.clone();
+        // Twice, as in `residual`.
+        for e in given.iter().chain(found).chain(given).chain(found) {
+            let along = inner(&left, e);
+            left.iter_mut().zip(e).for_each(|(x, e)| *x -= along * e);
+        }
+        left
+    };
+    while found.len() < rows.len() {
+        let left = rows.iter().map(|row| beside(row, &found));
+        let Some(mut most) = left.reduce(|a, b| if size(&b) > size(&a) { b } else { a }) else {
+            break;
+        };
+        let length = size(&most);
+        if length <= smallest {
+            break;
+        }
+        most.iter_mut().for_each(|x| *x /= length);
+        let mut unit = beside(&most, &found);
+        let length = size(&unit);
+        unit.iter_mut().for_each(|x| *x /= length);
+        found.push(unit);
+    }
+    found
 }
 
 /// Extends the orthonormal `basis` to the first `dimensions` coordinates and returns what was added.
@@ -91,8 +118,7 @@ pub(super) fn inverse(columns: &[Vec6], rank: usize) -> Option<[Vec6; 6]> {
         right[row][row] = 1.0;
     }
     for pivot in 0..rank {
-        let best =
-            (pivot..rank).max_by(|&a, &b| left[a][pivot].abs().total_cmp(&left[b][pivot].abs()))?;
+        let best = (pivot..rank).max_by(|&a, &b| left[a][pivot].abs().total_cmp(&left[b][pivot].abs()))?;
         left.swap(pivot, best);
         right.swap(pivot, best);
         let factor = left[pivot][pivot].recip();
@@ -121,23 +147,11 @@ mod tests {
     #[test]
     fn inverse_of_a_small_integer_matrix() {
         // Columns of [[2,1,0],[1,3,1],[0,1,2]]: determinant 8, adjugate over 8 by hand.
-        let columns = [
-            [2.0, 1.0, 0.0, 0.0, 0.0, 0.0],
-            [1.0, 3.0, 1.0, 0.0, 0.0, 0.0],
-            [0.0, 1.0, 2.0, 0.0, 0.0, 0.0],
-        ];
-        let expected = [
-            [0.625, -0.25, 0.125],
-            [-0.25, 0.5, -0.25],
-            [0.125, -0.25, 0.625],
-        ];
+        let columns = [[2.0, 1.0, 0.0, 0.0, 0.0, 0.0], [1.0, 3.0, 1.0, 0.0, 0.0, 0.0], [0.0, 1.0, 2.0, 0.0, 0.0, 0.0]];
+        let expected = [[0.625, -0.25, 0.125], [-0.25, 0.5, -0.25], [0.125, -0.25, 0.625]];
         let found = inverse(&columns, 3).expect("regular");
         for (row, wanted) in found.iter().zip(expected) {
-            assert!(
-                row.iter()
-                    .zip(wanted)
-                    .all(|(a, b)| (a - b).abs() < ROUNDING)
-            );
+            assert!(row.iter().zip(wanted).all(|(a, b)| (a - b).abs() < ROUNDING));
         }
     }
 
@@ -149,11 +163,7 @@ mod tests {
     #[test]
     fn noise_does_not_add_a_dimension() {
         let mut basis = Vec::new();
-        extend(
-            &mut basis,
-            &[[1.0, 1.0, 1e-16], [1.0, -1.0, 0.0], [0.3, 0.1, -1e-16]],
-            DEPENDENT,
-        );
+        extend(&mut basis, &[[1.0, 1.0, 1e-16], [1.0, -1.0, 0.0], [0.3, 0.1, -1e-16]], DEPENDENT);
         assert_eq!(basis.len(), 2);
         let across = complement(&basis, 3);
         assert_eq!(across.len(), 1);

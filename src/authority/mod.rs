@@ -9,6 +9,7 @@ mod cases;
 mod edges;
 mod envelope;
 mod facets;
+mod factors;
 mod generator;
 mod linear;
 mod opening;
@@ -16,6 +17,7 @@ mod planes;
 mod price;
 mod reduced;
 mod simplex;
+mod tariff;
 
 pub use cases::{Capability, Case, cases, single_failures, without};
 pub use envelope::{Authority, HalfSpace};

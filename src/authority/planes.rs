@@ -6,12 +6,17 @@
 
 use super::linear::{DEPENDENT, Vec6, add_scaled, dot, norm, residual, scaled, unit_axis};
 
+/// Unit columns closer than this are one line: a few roundings of their components.
+const SAME_LINE: f64 = 1e-14;
+
 /// The plane across r − 2 independent columns.
 pub(super) struct Plane<'a> {
     /// The columns chosen, ascending.
     pub(super) chosen: &'a [usize],
     /// Orthonormal basis of their span, in that order.
     pub(super) basis: &'a [Vec6],
+    /// The least that was left of a chosen column beside those before it: their independence.
+    pub(super) independence: f64,
     /// Orthonormal basis of the plane.
     pub(super) across: [Vec6; 2],
     /// Coordinates of every column in the plane; zero for the chosen ones.
@@ -45,6 +50,7 @@ pub(super) fn each_plane(columns: &[Vec6], rank: usize, visit: &mut impl FnMut(&
         rank,
         chosen: Vec::with_capacity(rank),
         basis: Vec::with_capacity(rank),
+        independence: Vec::with_capacity(rank),
         coordinates: vec![[0.0; 2]; columns.len()],
     };
     walk.descend(0, visit);
@@ -55,6 +61,7 @@ struct Walk<'a> {
     rank: usize,
     chosen: Vec<usize>,
     basis: Vec<Vec6>,
+    independence: Vec<f64>,
     coordinates: Vec<[f64; 2]>,
 }
 
@@ -74,8 +81,10 @@ impl Walk<'_> {
             let unit = residual(&scaled(&left, size.recip()), &self.basis);
             self.basis.push(scaled(&unit, norm(&unit).recip()));
             self.chosen.push(next);
+            self.independence.push(size);
             self.descend(next + 1, visit);
             self.chosen.pop();
+            self.independence.pop();
             self.basis.pop();
         }
     }
@@ -92,6 +101,7 @@ impl Walk<'_> {
         visit(&Plane {
             chosen: &self.chosen,
             basis: &self.basis,
+            independence: self.independence.iter().copied().fold(1.0, f64::min),
             across: [p, q],
             coordinates: &self.coordinates,
         });
@@ -101,9 +111,7 @@ impl Walk<'_> {
 /// A unit vector orthogonal to the orthonormal `basis` and `other`, from the axis with most left beside them.
 fn across(basis: &[Vec6], other: Option<Vec6>, rank: usize) -> Vec6 {
     let taken = |i: usize| basis.iter().chain(&other).map(|e| e[i] * e[i]).sum::<f64>();
-    let axis = (0..rank)
-        .map(|i| (i, taken(i)))
-        .reduce(|a, b| if b.1 < a.1 { b } else { a });
+    let axis = (0..rank).map(|i| (i, taken(i))).reduce(|a, b| if b.1 < a.1 { b } else { a });
     let mut left = unit_axis(axis.map_or(0, |(i, _)| i));
     for _ in 0..2 {
         for e in basis.iter().chain(&other) {
@@ -113,11 +121,11 @@ fn across(basis: &[Vec6], other: Option<Vec6>, rank: usize) -> Vec6 {
     scaled(&left, norm(&left).recip())
 }
 
-/// Whether two unit columns are the same line; the sign tells whether they point the same way.
+/// Whether two unit columns are the same line, to rounding; the sign tells whether they point the same way.
 pub(super) fn parallel(a: &Vec6, b: &Vec6) -> Option<f64> {
     let sign = dot(a, b).signum();
     let apart: f64 = a.iter().zip(b).map(|(x, y)| (x - sign * y).powi(2)).sum();
-    (apart.sqrt() <= DEPENDENT).then_some(sign)
+    (apart.sqrt() <= SAME_LINE).then_some(sign)
 }
 
 #[cfg(test)]
@@ -127,25 +135,14 @@ mod tests {
     #[test]
     fn every_pair_of_a_general_set_is_visited_once() {
         let s = 0.5_f64.sqrt();
-        let columns = [
-            unit_axis(0),
-            unit_axis(1),
-            unit_axis(2),
-            [s, s, 0.0, 0.0, 0.0, 0.0],
-        ];
+        let columns = [unit_axis(0), unit_axis(1), unit_axis(2), [s, s, 0.0, 0.0, 0.0, 0.0]];
         let mut pairs = Vec::new();
         each_plane(&columns, 3, &mut |plane| {
             for k in plane.followers() {
                 let (along, _) = plane.along(k).expect("no two are parallel");
                 let normal = plane.normal(along);
-                assert!(
-                    dot(&normal, &columns[k]).abs() < 1e-15,
-                    "rounding of one product"
-                );
-                assert!(
-                    dot(&normal, &columns[plane.chosen[0]]).abs() < 1e-15,
-                    "rounding of one product"
-                );
+                assert!(dot(&normal, &columns[k]).abs() < 1e-15, "rounding of one product");
+                assert!(dot(&normal, &columns[plane.chosen[0]]).abs() < 1e-15, "rounding of one product");
                 pairs.push((plane.chosen[0], k));
             }
         });

@@ -3,14 +3,9 @@
 use nalgebra::Vector3;
 
 use super::balance::balanced;
-use super::linear::{
-    DEPENDENT, Vec6, add_scaled, complement, dot, extend, norm, residual, scaled, unit_axis,
-};
+use super::factors::Factors;
+use super::linear::{DEPENDENT, Vec6, complement, norm, orthonormal_rows, scaled};
 use super::{Generator, NetForce};
-
-/// Forces of a wrench known to be outside the range by less than this are rounding that a poorly conditioned but
-/// regular layout has amplified from 1e-16.
-const OUTSIDE: f64 = 1e-10;
 
 /// One generator that can contribute.
 #[derive(Debug, Clone, Copy)]
@@ -21,22 +16,40 @@ pub(super) struct Column {
     pub(super) unit: Vec6,
     /// Length per unit level.
     pub(super) length: f64,
+    /// Rounding of the unit vector: what the geometry rounds to, enlarged where the layout is nearly flat.
+    pub(super) noise: f64,
 }
+
+/// A direction leaves the span of the attainable torques if this much of it lies outside: directions come out of
+/// rotations that round to 1e-15 and integrals that round to 1e-13.
+const OUTSIDE: f64 = 1e-10;
+
+/// Rounding of a torque or force per unit of the longest arm: positions and pushes typed in decimals, turned from
+/// degrees and subtracted from a centre of mass carry a few times 2.2e-16.
+const ROUNDING: f64 = 1e-15;
+
+/// How many roundings of a column make a component or an offset that counts as zero.
+pub(super) const ROUNDINGS: f64 = 30.0;
 
 /// The layout as seen by the enumerations.
 ///
-/// Torques are divided by the longest arm, so that torque and force rows have like size. The first `torque_rank`
-/// coordinates are the attainable torques (τ, 0), the others complete the range of the wrenches: there the set of
-/// pure torques is the slice on which they vanish, through the relative interior of the whole.
+/// The matrix of the wrenches, torques over the longest arm, is written as
+///
+/// ```text
+/// [ torque rows ]   [ T  C ] [ s ]
+/// [ force rows  ] = [ 0  D ] [ f ]
+/// ```
+///
+/// with orthonormal rows in s and f (Gram–Schmidt, force rows first). A column of (s, f) are the reduced coordinates
+/// of a generator. The set of pure torques is the slice f = 0, there torque = T s. Since the rows are orthonormal, a
+/// layout that is nearly flat in some direction is no worse to enumerate than a round one.
 #[derive(Debug)]
 pub(super) struct Reduced {
     /// Dimension of the range, r.
     pub(super) rank: usize,
-    /// Dimension of the attainable torques, at most 3.
+    /// Dimension of the attainable torques, at most 3: the s come first.
     pub(super) torque_rank: usize,
-    /// Orthonormal directions of the attainable torques.
-    pub(super) axes: Vec<Vector3<f64>>,
-    /// Orthonormal directions that complete them.
+    /// Orthonormal directions of torque that are not attainable.
     pub(super) missing: Vec<Vector3<f64>>,
     /// The longest arm, m.
     pub(super) arm: f64,
@@ -46,7 +59,47 @@ pub(super) struct Reduced {
     pub(super) taking_part: Vec<bool>,
     /// m with m · d = 0 for those and m · d < 0 for the others.
     pub(super) across: Vector3<f64>,
-    basis: Vec<Vec6>,
+    /// T.
+    torque_factors: Factors,
+    /// D.
+    force_factors: Factors,
+    /// Columns of C.
+    common: Vec<Vector3<f64>>,
+}
+
+/// A linear function of torque and force: torque · a + force · d for a generator (a, d).
+#[derive(Debug, Clone, Copy)]
+pub(super) struct Normal {
+    /// Unit vector within the attainable torques, or beside them.
+    pub(super) torque: Vector3<f64>,
+    /// Force part, m.
+    pub(super) force: Vector3<f64>,
+}
+
+/// Takes torques into the reduced coordinates.
+#[derive(Debug, Clone)]
+pub(super) struct Direction {
+    factors: Factors,
+    arm: f64,
+    missing: Vec<Vector3<f64>>,
+}
+
+impl Direction {
+    /// The reduced coordinates of a torque, or `None` if it leaves the attainable span.
+    pub(super) fn of(&self, torque: &Vector3<f64>) -> Option<Vec6> {
+        let outside = OUTSIDE * torque.norm();
+        if self.missing.iter().any(|m| m.dot(torque).abs() > outside) {
+            return None;
+        }
+        Some(self.factors.solve(&(torque / self.arm)))
+    }
+}
+
+impl Normal {
+    /// Value per unit level of a generator.
+    pub(super) fn value(&self, generator: &Generator) -> f64 {
+        self.torque.dot(&generator.torque) + self.force.dot(&generator.force)
+    }
 }
 
 impl Reduced {
@@ -56,115 +109,84 @@ impl Reduced {
             NetForce::Any => (generators.iter().map(works).collect(), Vector3::zeros()),
             NetForce::Zero => balanced_among(generators),
         };
-        let dimensions = if net == NetForce::Zero { 6 } else { 3 };
-        let used = || {
-            generators
-                .iter()
-                .enumerate()
-                .zip(&taking_part)
-                .filter_map(|(g, &part)| part.then_some(g))
-        };
-        let arm = longest_arm(used().map(|(_, g)| g));
-        let wrenches: Vec<(usize, Vec6)> = used().map(|(i, g)| (i, wrench(g, arm, net))).collect();
-        let plain: Vec<Vec6> = wrenches.iter().map(|(_, w)| *w).collect();
-        let (basis, axes, missing) = coordinates(&plain, dimensions);
-        let to_column = |&(index, w): &(usize, Vec6)| {
+        let used: Vec<(usize, &Generator)> =
+            generators.iter().enumerate().zip(&taking_part).filter_map(|(g, &part)| part.then_some(g)).collect();
+        let arm = longest_arm(used.iter().map(|(_, g)| *g));
+        let row = |of: &dyn Fn(&Generator) -> f64| used.iter().map(|(_, g)| of(g)).collect::<Vec<f64>>();
+        let torques: [Vec<f64>; 3] = std::array::from_fn(|axis| row(&|g| g.torque[axis] / arm));
+        let forces: [Vec<f64>; 3] = std::array::from_fn(|axis| row(&|g| g.force[axis]));
+        let f = if net == NetForce::Zero { orthonormal_rows(&[], &forces) } else { Vec::new() };
+        let s = orthonormal_rows(&f, &torques);
+        let torque_factors = Factors::new(&products(&torques, &s));
+        let force_factors = Factors::new(&products(&forces, &f));
+        let enlarged = (torque_factors.inverse_size_squared() + force_factors.inverse_size_squared()).sqrt();
+        let columns = used.iter().enumerate().filter_map(|(place, (index, g))| {
+            let force = if net == NetForce::Zero { g.force.norm() } else { 0.0 };
+            let rounding = ROUNDING * enlarged * (g.torque.norm() / arm).hypot(force);
             let mut x = [0.0; 6];
-            for (x, e) in x.iter_mut().zip(&basis) {
-                *x = dot(e, &w);
+            for (x, row) in x.iter_mut().zip(s.iter().chain(&f)) {
+                *x = row[place];
             }
             let length = norm(&x);
-            (length > DEPENDENT).then(|| Column {
-                index,
+            (length > DEPENDENT.max(rounding)).then(|| Column {
+                index: *index,
                 unit: scaled(&x, length.recip()),
                 length,
+                noise: (rounding / length).max(ROUNDING),
             })
-        };
-        let columns = wrenches.iter().filter_map(to_column).collect();
+        });
         Self {
-            rank: basis.len(),
-            torque_rank: axes.len(),
-            axes,
-            missing,
+            rank: s.len() + f.len(),
+            torque_rank: s.len(),
+            missing: complement(torque_factors.span(), 3).into_iter().map(Vector3::from).collect(),
             arm,
-            columns,
+            columns: columns.collect(),
+            common: products(&torques, &f),
             taking_part,
             across,
-            basis,
+            torque_factors,
+            force_factors,
         }
     }
 
-    /// The normal that `reduced` coordinates stand for, or `None` if its torque part is rounding.
+    /// What takes directions of torque here.
+    pub(super) fn direction(&self) -> Direction {
+        Direction { factors: self.torque_factors.clone(), arm: self.arm, missing: self.missing.clone() }
+    }
+
+    /// The reduced coordinates of a torque without force, as far as it is attainable.
+    pub(super) fn coordinates(&self, torque: &Vector3<f64>) -> Vec6 {
+        self.torque_factors.solve(&(torque / self.arm))
+    }
+
+    /// The v with v · torque = reduced · s for every attainable torque, whose coordinates are s.
+    pub(super) fn covector(&self, reduced: &[f64]) -> Vector3<f64> {
+        self.torque_factors.covector(reduced) / self.arm
+    }
+
+    /// The normal that unit `reduced` coordinates stand for, or `None` if its torque part is rounding.
     pub(super) fn normal(&self, reduced: &Vec6) -> Option<Normal> {
-        let size = reduced[..self.torque_rank]
-            .iter()
-            .map(|x| x * x)
-            .sum::<f64>()
-            .sqrt();
-        if size <= DEPENDENT {
+        let (torque, force) = reduced.split_at_checked(self.torque_rank)?;
+        if torque.iter().map(|x| x * x).sum::<f64>().sqrt() <= DEPENDENT {
             return None;
         }
-        let factor = size.recip();
-        let rest = self.basis.iter().zip(reduced).skip(self.torque_rank);
-        let rest = rest.fold([0.0; 6], |sum, (e, x)| add_scaled(&sum, *x, e));
-        let along = self.torque(reduced) * factor;
-        Some(Normal {
-            along,
-            torque: along + Vector3::new(rest[0], rest[1], rest[2]) * factor,
-            force: Vector3::new(rest[3], rest[4], rest[5]) * (self.arm * factor),
-        })
-    }
-
-    /// The vector with the given coordinates along the attainable torques.
-    pub(super) fn torque(&self, reduced: &[f64]) -> Vector3<f64> {
-        self.axes
-            .iter()
-            .zip(reduced)
-            .fold(Vector3::zeros(), |sum, (t, x)| sum + t * *x)
+        Some(self.lifted(self.covector(torque), force))
     }
 
     /// For each missing direction, both signs of a normal that vanishes on every column.
     pub(super) fn missing_normals(&self) -> Vec<Normal> {
-        let lift = |t: &Vector3<f64>| {
-            let left = residual(&[t.x, t.y, t.z, 0.0, 0.0, 0.0], &self.basis);
-            let torque = Vector3::new(left[0], left[1], left[2]);
-            let factor = torque.norm().recip();
-            let force = Vector3::new(left[3], left[4], left[5]) * (self.arm * factor);
-            Normal {
-                along: torque * factor,
-                torque: torque * factor,
-                force,
-            }
-        };
-        let both = |n: Normal| {
-            [
-                n,
-                Normal {
-                    along: -n.along,
-                    torque: -n.torque,
-                    force: -n.force,
-                },
-            ]
-        };
-        self.missing.iter().map(lift).flat_map(both).collect()
+        self.missing.iter().flat_map(|t| [self.lifted(*t, &[0.0; 3]), self.lifted(-t, &[0.0; 3])]).collect()
     }
-}
 
-/// A linear function of torque and force: torque · a + force · d for a column (a, d).
-#[derive(Debug, Clone, Copy)]
-pub(super) struct Normal {
-    /// Unit vector within the attainable torques.
-    pub(super) along: Vector3<f64>,
-    /// `along`, with what it needs beside the attainable torques.
-    pub(super) torque: Vector3<f64>,
-    /// Force part, m.
-    pub(super) force: Vector3<f64>,
-}
-
-impl Normal {
-    /// Value per unit level of a generator.
-    pub(super) fn value(&self, generator: &Generator) -> f64 {
-        self.torque.dot(&generator.torque) + self.force.dot(&generator.force)
+    /// The (n, m) with the given torque part whose value on the generators has the force coordinates `force`.
+    fn lifted(&self, torque: Vector3<f64>, force: &[f64]) -> Normal {
+        let factor = torque.norm().recip();
+        let mut left = [0.0; 3];
+        for ((left, x), common) in left.iter_mut().zip(force).zip(&self.common) {
+            *left = x - common.dot(&torque) * self.arm;
+        }
+        let force = self.force_factors.covector(&left);
+        Normal { torque: torque * factor, force: force * factor }
     }
 }
 
@@ -175,30 +197,16 @@ pub(super) fn works(generator: &Generator) -> bool {
 
 /// Ranks of the torques and of the wrenches of all working generators, whatever force they leave.
 pub(super) fn ranks(generators: &[Generator]) -> (usize, usize) {
-    let used = || generators.iter().filter(|g| works(g));
-    let arm = longest_arm(used());
-    let rank = |net| {
-        let mut basis = Vec::new();
-        let wrenches: Vec<Vec6> = used().map(|g| wrench(g, arm, net)).collect();
-        extend(&mut basis, &wrenches, DEPENDENT);
-        basis.len()
-    };
-    (rank(NetForce::Any), rank(NetForce::Zero))
-}
-
-/// Torque over `arm` and force of a generator; no force where it does not matter.
-pub(super) fn wrench(generator: &Generator, arm: f64, net: NetForce) -> Vec6 {
-    let torque = generator.torque / arm;
-    let force = if net == NetForce::Zero {
-        generator.force
-    } else {
-        Vector3::zeros()
-    };
-    [torque.x, torque.y, torque.z, force.x, force.y, force.z]
+    let used: Vec<&Generator> = generators.iter().filter(|g| works(g)).collect();
+    let arm = longest_arm(used.iter().copied());
+    let torques: [Vec<f64>; 3] = std::array::from_fn(|axis| used.iter().map(|g| g.torque[axis] / arm).collect());
+    let forces: [Vec<f64>; 3] = std::array::from_fn(|axis| used.iter().map(|g| g.force[axis]).collect());
+    let f = orthonormal_rows(&[], &forces);
+    (orthonormal_rows(&[], &torques).len(), f.len() + orthonormal_rows(&f, &torques).len())
 }
 
 /// Longest arm in m, 1 if there is none.
-pub(super) fn longest_arm<'a>(generators: impl Iterator<Item = &'a Generator>) -> f64 {
+fn longest_arm<'a>(generators: impl Iterator<Item = &'a Generator>) -> f64 {
     let arm = generators.map(|g| g.torque.norm()).fold(0.0, f64::max);
     if arm > 0.0 { arm } else { 1.0 }
 }
@@ -206,10 +214,7 @@ pub(super) fn longest_arm<'a>(generators: impl Iterator<Item = &'a Generator>) -
 fn balanced_among(generators: &[Generator]) -> (Vec<bool>, Vector3<f64>) {
     let force = |g: &Generator| if works(g) { g.force } else { Vector3::zeros() };
     let forces: Vec<_> = generators.iter().map(force).collect();
-    let two_sided: Vec<_> = generators
-        .iter()
-        .map(|g| g.least < 0.0 && g.most > 0.0)
-        .collect();
+    let two_sided: Vec<_> = generators.iter().map(|g| g.least < 0.0 && g.most > 0.0).collect();
     let (mut part, across) = balanced(&forces, &two_sided);
     for (part, generator) in part.iter_mut().zip(generators) {
         *part &= works(generator);
@@ -217,28 +222,43 @@ fn balanced_among(generators: &[Generator]) -> (Vec<bool>, Vector3<f64>) {
     (part, across)
 }
 
-type Coordinates = (Vec<Vec6>, Vec<Vector3<f64>>, Vec<Vector3<f64>>);
+/// Columns of the matrix `rows` · `basis`ᵀ.
+fn products(rows: &[Vec<f64>; 3], basis: &[Vec<f64>]) -> Vec<Vector3<f64>> {
+    let inner = |a: &[f64], b: &[f64]| a.iter().zip(b).map(|(x, y)| x * y).sum();
+    basis.iter().map(|b| Vector3::from_fn(|axis, _| inner(&rows[axis], b))).collect()
+}
 
-/// Orthonormal basis of the range, attainable torques first; those torques; the torques beside them.
-fn coordinates(wrenches: &[Vec6], dimensions: usize) -> Coordinates {
-    let mut range = Vec::new();
-    extend(&mut range, wrenches, DEPENDENT);
-    if range.len() == dimensions {
-        // Nothing is missing: the coordinates as they are, without the rounding of a rotation.
-        let axes = vec![Vector3::x(), Vector3::y(), Vector3::z()];
-        return ((0..dimensions).map(unit_axis).collect(), axes, Vec::new());
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::authority::linear::dot;
+
+    /// Four tetrahedral thrusters on a cube's corners: the reduced coordinates reproduce torque and force.
+    #[test]
+    fn normals_take_the_same_values_in_both_coordinates() {
+        let corners = [[1.0, 1.0, 1.0], [1.0, -1.0, -1.0], [-1.0, 1.0, -1.0], [-1.0, -1.0, 1.0], [1.0, 1.0, -1.0]];
+        let pushes = [[0.0, 0.0, 1.0], [1.0, 0.0, 0.0], [0.0, 1.0, 0.0], [-0.6, 0.0, -0.8], [0.0, -0.6, -0.8]];
+        let generators: Vec<Generator> = corners
+            .iter()
+            .zip(pushes)
+            .map(|(r, d)| Generator::thruster((*r).into(), d.into(), Vector3::new(0.1, 0.2, 0.0), 1.0, 1.0))
+            .collect();
+        for net in [NetForce::Zero, NetForce::Any] {
+            let reduced = Reduced::new(&generators, net);
+            let factor = reduced.covector(&[0.6, 0.48, 0.0]).norm().recip();
+            let normal = reduced.normal(&[0.6, 0.48, 0.0, 0.64, 0.0, 0.0]);
+            let normal = normal.expect("has torque");
+            for column in &reduced.columns {
+                let expected: f64 = dot(&column.unit, &[0.6, 0.48, 0.0, 0.64, 0.0, 0.0]) * column.length;
+                let mut generator = generators[column.index];
+                if net == NetForce::Any {
+                    generator.force = Vector3::zeros();
+                }
+                let expected =
+                    if net == NetForce::Any { dot(&column.unit, &[0.6, 0.48, 0.0, 0.0, 0.0, 0.0]) * column.length } else { expected };
+                // Rounding of entries near one, times a condition number near ten.
+                assert!((normal.value(&generator) - expected * factor).abs() < 1e-13);
+            }
+        }
     }
-    // (τ, 0) is in the range ⇔ it is orthogonal to all (α, β) outside the range ⇔ τ is orthogonal to all α.
-    let outside = complement(&range, dimensions);
-    let alphas: Vec<[f64; 3]> = outside.iter().map(|v| [v[0], v[1], v[2]]).collect();
-    let mut missing = Vec::new();
-    extend(&mut missing, &alphas, OUTSIDE);
-    let axes = complement(&missing, 3);
-    let mut basis: Vec<Vec6> = axes
-        .iter()
-        .map(|t| [t[0], t[1], t[2], 0.0, 0.0, 0.0])
-        .collect();
-    extend(&mut basis, wrenches, OUTSIDE);
-    let vectors = |list: Vec<[f64; 3]>| list.into_iter().map(Vector3::from).collect();
-    (basis, vectors(axes), vectors(missing))
 }

@@ -116,7 +116,12 @@ impl<'a> Schema<'a> {
     pub(crate) fn takes(&self, value: &Value) -> bool {
         if self.is_quantity() {
             let spread = self.get("x-spread") == Some(&Json::Bool(true));
-            return value.is_string() || value.is_number() || spread && value.is_mapping();
+            let types = self.types();
+            return value.is_string()
+                || value.is_number()
+                || spread && value.is_mapping()
+                || types.contains(&"array") && value.is_sequence()
+                || types.contains(&"null") && value.is_null();
         }
         let alternatives = self.alternatives();
         if !alternatives.is_empty() {

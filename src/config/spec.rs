@@ -58,6 +58,9 @@ pub fn read(document: &Document) -> Result<Spec, Vec<Diagnostic>> {
 }
 
 fn check_leaf(schema: &serde_json::Value, value: &Value, path: &Path) -> Vec<Diagnostic> {
+    if value.is_null() {
+        return Vec::new();
+    }
     let word = |key: &str| schema.get(key).and_then(serde_json::Value::as_str).unwrap_or_default();
     let (Some(words), Some(form)) = (leaf::kind_named(word("x-quantity")), Form::named(word("x-form"))) else {
         return Vec::new();

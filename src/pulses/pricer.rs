@@ -3,7 +3,7 @@
 use nalgebra::Vector3;
 
 use super::{Firing, fire};
-use crate::authority::{Authority, Basis, Capability, Generator, NetForce, PriceMap};
+use crate::authority::{Authority, Capability, Generator, NetForce, PriceMap};
 use crate::config::NetForceChoice;
 use crate::uncertain::Draw;
 use crate::vehicle::{Propulsion, PulseLimits};
@@ -75,11 +75,6 @@ impl Pricer {
         &self.capability.price
     }
 
-    /// The thrusters to fire for an angular impulse and the impulse of each, from the price's active set.
-    fn basis(&self, impulse_n_m_s: &Vector3<f64>) -> Option<&Basis> {
-        self.capability.price.basis(impulse_n_m_s)
-    }
-
     /// Adds up propellant, kg, of giving an angular impulse (N·m·s) `times` times; counts pulses into `cycles`.
     ///
     /// The thrusters and their impulses are chosen at nominal performance, as on-board software does;
@@ -89,14 +84,12 @@ impl Pricer {
         if impulse_n_m_s.norm_squared() <= 0.0 {
             return Some(0.0);
         }
-        let basis = self.basis(impulse_n_m_s)?;
         let mut total_kg = 0.0;
-        for (row, index) in basis.active.iter().enumerate() {
-            let impulse: f64 = (0..3).map(|axis| basis.allocation[(row, axis)] * impulse_n_m_s[axis]).sum();
-            let (thrust, speed) = performance.0[*index];
+        for (index, impulse) in self.capability.price.firings(impulse_n_m_s)? {
+            let (thrust, speed) = performance.0[index];
             let firing = fire(impulse, thrust, speed, &self.limits);
             total_kg += firing.propellant_kg * times;
-            cycles[*index] += firing.pulses * times;
+            cycles[index] += firing.pulses * times;
         }
         Some(total_kg)
     }
