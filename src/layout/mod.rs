@@ -9,14 +9,14 @@ use crate::authority::{Capability, Generator, Price, cases};
 use crate::vehicle::{Thruster, Vehicle};
 
 /// Why thrusters are out.
-#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+#[derive(Debug, Clone, PartialEq, Eq)]
 pub enum OutBecause {
     /// All work.
     None,
     /// One thruster failed.
     Thruster,
-    /// A string's latch valve is shut.
-    String,
+    /// The latch valve of this string is shut.
+    String(String),
 }
 
 /// Which end of the centre-of-mass travel.
@@ -110,7 +110,8 @@ pub fn all_cases(vehicle: &Vehicle) -> Vec<LayoutCase> {
     strings.sort_unstable();
     strings.dedup();
     let members = |string: &str| -> Vec<usize> { (0..thrusters.len()).filter(|k| thrusters[*k].string == string).collect() };
-    let whole = strings.into_iter().map(members).filter(|lost| lost.len() > 1).map(|lost| (OutBecause::String, lost));
+    let whole =
+        strings.into_iter().map(|string| (OutBecause::String(string.to_owned()), members(string))).filter(|(_, lost)| lost.len() > 1);
     let lost: Vec<_> = std::iter::once((OutBecause::None, Vec::new())).chain(single).chain(whole).collect();
     solve(vehicle, &lost)
 }
@@ -124,7 +125,7 @@ fn solve(vehicle: &Vehicle, lost: &[(OutBecause, Vec<usize>)]) -> Vec<LayoutCase
         for ((because, set), case) in lost.iter().zip(cases(&generators, &sets)) {
             found.push(LayoutCase {
                 thrusters_out: set.iter().map(|k| thrusters[*k].name.clone()).collect(),
-                out_because: *because,
+                out_because: because.clone(),
                 travel_end: end,
                 centre_of_mass_m: centre,
                 torque_rank: case.any_force.authority.rank,

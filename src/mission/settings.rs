@@ -65,7 +65,7 @@ impl Figure {
             Self::PropellantNominal => "attitude propellant, nominal",
             Self::PropellantP95 => "attitude propellant, P95 limit",
             Self::PropellantP99 => "attitude propellant, P99 limit",
-            Self::ProbabilityEnough => "probability of enough propellant",
+            Self::ProbabilityEnough => "probability of enough",
             Self::UnloadInterval => "shortest time between unloads",
             Self::WheelFill => "largest fill of the wheels",
             Self::GuaranteedPureTorque => "pure torque in every direction",

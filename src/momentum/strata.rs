@@ -5,7 +5,7 @@ use crate::mission::{Mission, Phase, UnloadPolicy};
 /// How finely the mission is simulated.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
 pub enum Resolution {
-    /// One span stands for about four weeks, at eight phases of the orbit.
+    /// One span stands for about four weeks, at nine phases of the orbit.
     Default,
     /// Every unload has its own span.
     Full,
@@ -74,8 +74,12 @@ const STRATUM_S: f64 = 365.25 / 13.0 * DAY_S;
 /// Fewest spans a phase is given, if it has that many unloads.
 const FEWEST: f64 = 4.0;
 
-const STEPS_PER_ORBIT: f64 = 96.0;
-const WINDOWS: usize = 8;
+/// A multiple of the windows, so that they are evenly spaced.
+const STEPS_PER_ORBIT: f64 = 99.0;
+
+/// Odd on purpose: the price of a momentum that turns in the body goes up and down four times an orbit, with overtones at
+/// 8, 12, 16 …; eight windows would all meet the overtone at the same place (seen: 4 % off), nine average it out.
+const WINDOWS: usize = 9;
 const CHECKPOINTS: usize = 24;
 const CHECKPOINTS_FULL: usize = 8;
 

@@ -72,7 +72,7 @@ fn cases(cases: &[LayoutCase]) -> Value {
     let one = |case: &LayoutCase| {
         json!({
             "thrusters_out": case.thrusters_out,
-            "out_because": match case.out_because { OutBecause::None => "none", OutBecause::Thruster => "thruster", OutBecause::String => "string" },
+            "out_because": match &case.out_because { OutBecause::None => "none", OutBecause::Thruster => "thruster", OutBecause::String(_) => "string" },
             "centre_of_mass": match case.travel_end { TravelEnd::Start => "start", TravelEnd::End => "end" },
             "centre_of_mass_m": xyz(&case.centre_of_mass_m),
             "torque_rank": case.torque_rank,

@@ -8,10 +8,10 @@ use crate::layout::{LayoutCase, OutBecause, TravelEnd, Verdict};
 
 /// What is out, in words.
 fn out(case: &LayoutCase) -> String {
-    match case.out_because {
+    match &case.out_because {
         OutBecause::None => "intact".to_owned(),
         OutBecause::Thruster => format!("{} out", case.thrusters_out.join(" ")),
-        OutBecause::String => format!("string {} out", case.thrusters_out.join(" ")),
+        OutBecause::String(name) => format!("string {name} out"),
     }
 }
 

@@ -110,7 +110,7 @@ impl Propulsion {
         let shared_speed = exhaust_speed("propulsion", "propulsion", both, parameters, faults);
         let mut thrusters = Vec::new();
         for (index, written) in spec.thrusters.iter().enumerate() {
-            thrusters.extend(thruster(index, written, shared_thrust, shared_speed, parameters, faults));
+            thrusters.extend(thruster(index, written, shared_written, shared_thrust, shared_speed, parameters, faults));
         }
         let qualified_pulses = spec.propulsion.qualified_pulses.map(|pulses| pulses.0);
         let net_force = spec.propulsion.net_force;
@@ -172,6 +172,7 @@ fn exhaust_speed(at: &str, name: &str, written: Written<'_>, parameters: &mut Pa
 fn thruster(
     index: usize,
     written: &config::Thruster,
+    shared: &config::Propulsion,
     shared_thrust: Option<Uncertain>,
     shared_speed: Option<ExhaustSpeed>,
     parameters: &mut Parameters,
@@ -186,12 +187,13 @@ fn thruster(
             .map(|spread| parameters.register(format!("{name}.thrust"), kind::Force::UNIT, spread)),
         None => shared_thrust,
     };
-    if thrust_n.is_none() && written.thrust.is_none() {
+    if thrust_n.is_none() && written.thrust.is_none() && shared.thrust.is_none() {
         faults.push(&at, "expected a thrust, here or as `propulsion.thrust`", "add `thrust: 1 N` under `propulsion`");
     }
     let own = exhaust_speed(&at, &name, (written.isp.as_ref(), written.exhaust_speed.as_ref()), parameters, faults);
     let speed = own.or(shared_speed);
-    if speed.is_none() && written.isp.is_none() && written.exhaust_speed.is_none() {
+    let here = written.isp.is_some() || written.exhaust_speed.is_some();
+    if !here && shared.isp.is_none() && shared.exhaust_speed.is_none() {
         faults.push(&at, "expected `isp` or `exhaust_speed`, here or under `propulsion`", "add `isp: 215 s` under `propulsion`");
     }
     Some(Thruster {
