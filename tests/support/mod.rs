@@ -3,6 +3,7 @@
 use couplet::config::{Document, read};
 use couplet::mission::Scenario;
 
+#[allow(dead_code, reason = "not every test file needs all")]
 /// A spacecraft with one facet, six thrusters that make every pure torque, and a nadir-pointing orbit at 700 km.
 pub(crate) const SMALL: &str = "
 spacecraft:
@@ -49,7 +50,7 @@ pub(crate) fn scenario(text: &str, settings: &[&str]) -> Scenario {
 }
 
 /// heron with settings as after `--set`.
-#[allow(dead_code, reason = "not every test file needs it")]
+#[allow(dead_code, reason = "not every test file needs all")]
 pub(crate) fn heron(settings: &[&str]) -> Scenario {
     scenario(include_str!("../../configs/heron.yaml"), settings)
 }
