@@ -96,10 +96,14 @@ pub(super) fn orthonormal_rows(given: &[Vec<f64>], rows: &[Vec<f64>]) -> Vec<Vec
         if length <= smallest {
             break;
         }
-        most.iter_mut().for_each(|x| *x /= length);
+        for x in &mut most {
+            *x /= length;
+        }
         let mut unit = beside(&most, &found);
         let length = size(&unit);
-        unit.iter_mut().for_each(|x| *x /= length);
+        for x in &mut unit {
+            *x /= length;
+        }
         found.push(unit);
     }
     found

@@ -16,7 +16,13 @@ pub(crate) const BOTH: [NetForce; 2] = [NetForce::Zero, NetForce::Any];
 
 /// A torque without force, one-sided: the published examples are of this kind.
 pub(crate) fn torque_only(torque: [f64; 3]) -> Generator {
-    Generator { torque: torque.into(), force: Vector3::zeros(), least: 0.0, most: 1.0, cost: 1.0 }
+    Generator {
+        torque: torque.into(),
+        force: Vector3::zeros(),
+        least: 0.0,
+        most: 1.0,
+        cost: 1.0,
+    }
 }
 
 /// A 1 N thruster with unit cost at `position`, pushing along `push`, about the origin.
@@ -35,7 +41,10 @@ pub(crate) struct Placed {
 
 /// The generators of `placed` about `centre`.
 pub(crate) fn about(placed: &[Placed], centre: Vector3<f64>) -> Vec<Generator> {
-    placed.iter().map(|p| Generator::thruster(p.position, p.push, centre, p.thrust, p.speed)).collect()
+    placed
+        .iter()
+        .map(|p| Generator::thruster(p.position, p.push, centre, p.thrust, p.speed))
+        .collect()
 }
 
 /// Uniform direction.
@@ -65,11 +74,11 @@ pub(crate) enum Kind {
     General,
     /// All positions and pushes in one plane, which is not a coordinate plane.
     Planar,
-    /// Each thruster has its mirror image, twice over: positions and pushes ± along axes, equal engines.
+    /// Each thruster has its images in two planes, equal engines.
     Mirrored,
-    /// Each thruster stands there two or three times.
+    /// Each thruster stands there twice.
     Duplicated,
-    /// A couple of pushes on each of few lines, canted by a millionth of a radian.
+    /// Each thruster stands there twice, canted by a millionth of a radian.
     Nearly,
     /// All pushes in one half-space.
     OneSided,
@@ -77,59 +86,94 @@ pub(crate) enum Kind {
     Box,
 }
 
-pub(crate) const KINDS: [Kind; 7] =
-    [Kind::General, Kind::Planar, Kind::Mirrored, Kind::Duplicated, Kind::Nearly, Kind::OneSided, Kind::Box];
+pub(crate) const KINDS: [Kind; 7] = [
+    Kind::General,
+    Kind::Planar,
+    Kind::Mirrored,
+    Kind::Duplicated,
+    Kind::Nearly,
+    Kind::OneSided,
+    Kind::Box,
+];
 
 /// A layout of `kind` with about `count` thrusters.
 pub(crate) fn layout(kind: Kind, count: usize, rng: &mut ChaCha8Rng) -> Vec<Placed> {
-    let turn = Rotation3::from_axis_angle(&nalgebra::Unit::new_normalize(direction(rng)), rng.random_range(0.0..3.0));
-    let sign = |bit: usize, of: usize| if of >> bit & 1 == 0 { 1.0 } else { -1.0 };
+    let axis = nalgebra::Unit::new_normalize(direction(rng));
+    let turn = Rotation3::from_axis_angle(&axis, rng.random_range(0.0..3.0));
     match kind {
         Kind::General => (0..count).map(|_| placed(rng)).collect(),
-        Kind::Planar => (0..count)
-            .map(|_| {
-                let p = placed(rng);
-                let flat = |v: Vector3<f64>| turn * Vector3::new(v.x, v.y, 0.0);
-                Placed { position: flat(p.position), push: flat(p.push).normalize(), ..p }
-            })
-            .collect(),
-        Kind::Mirrored => {
-            let seeds: Vec<Placed> = (0..count.div_ceil(4)).map(|_| placed(rng)).collect();
-            let images = |k: usize| move |v: Vector3<f64>| Vector3::new(sign(0, k) * v.x, sign(1, k) * v.y, v.z);
-            let all = seeds.iter().flat_map(|p| {
-                (0..4).map(move |k| Placed { position: images(k)(p.position), push: images(k)(p.push), ..*p })
-            });
-            all.map(|p| Placed { thrust: 1.0, speed: 2000.0, ..p }).collect()
+        Kind::Planar => {
+            let flat = |v: Vector3<f64>| turn * Vector3::new(v.x, v.y, 0.0);
+            let one = |p: Placed| Placed {
+                position: flat(p.position),
+                push: flat(p.push).normalize(),
+                ..p
+            };
+            (0..count).map(|_| one(placed(rng))).collect()
         }
-        Kind::Duplicated => {
-            let seeds: Vec<Placed> = (0..count.div_ceil(2)).map(|_| placed(rng)).collect();
-            (0..count).map(|i| seeds[i % seeds.len()]).collect()
+        Kind::Mirrored => mirrored(count, rng),
+        Kind::Duplicated => repeated(count, 0.0, rng),
+        Kind::Nearly => repeated(count, 1e-6, rng),
+        Kind::OneSided => {
+            let up = |d: Vector3<f64>| turn * Vector3::new(d.x, d.y, d.z.abs() + 0.05).normalize();
+            let one = |p: Placed| Placed {
+                push: up(p.push),
+                ..p
+            };
+            (0..count).map(|_| one(placed(rng))).collect()
         }
-        Kind::Nearly => {
-            let seeds: Vec<Placed> = (0..count.div_ceil(2)).map(|_| placed(rng)).collect();
-            (0..count)
-                .map(|i| {
-                    let p = seeds[i % seeds.len()];
-                    Placed { push: (p.push + 1e-6 * direction(rng)).normalize(), ..p }
-                })
-                .collect()
+        Kind::Box => (0..count).map(|_| at_a_corner(rng)).collect(),
+    }
+}
+
+/// 1 or −1 by one bit of a number.
+fn sign(bit: usize, of: usize) -> f64 {
+    if of >> bit & 1 == 0 { 1.0 } else { -1.0 }
+}
+
+fn mirrored(count: usize, rng: &mut ChaCha8Rng) -> Vec<Placed> {
+    let image = |k: usize, v: Vector3<f64>| Vector3::new(sign(0, k) * v.x, sign(1, k) * v.y, v.z);
+    let seeds: Vec<Placed> = (0..count.div_ceil(4)).map(|_| placed(rng)).collect();
+    let four = |p: Placed| {
+        (0..4).map(move |k| Placed {
+            position: image(k, p.position),
+            push: image(k, p.push),
+            thrust: 1.0,
+            speed: 2e3,
+        })
+    };
+    seeds.into_iter().flat_map(four).collect()
+}
+
+/// Each of half as many thrusters twice, canted by `cant`.
+fn repeated(count: usize, cant: f64, rng: &mut ChaCha8Rng) -> Vec<Placed> {
+    let seeds: Vec<Placed> = (0..count.div_ceil(2)).map(|_| placed(rng)).collect();
+    let mut canted = |p: Placed| {
+        if cant > 0.0 {
+            Placed {
+                push: (p.push + cant * direction(rng)).normalize(),
+                ..p
+            }
+        } else {
+            p
         }
-        Kind::OneSided => (0..count)
-            .map(|_| {
-                let p = placed(rng);
-                let up = Vector3::new(p.push.x, p.push.y, p.push.z.abs() + 0.05).normalize();
-                Placed { push: turn * up, ..p }
-            })
-            .collect(),
-        Kind::Box => (0..count)
-            .map(|_| {
-                let corner = rng.random_range(0..8_usize);
-                let axis = rng.random_range(0..3_usize);
-                let position = Vector3::new(sign(0, corner), 0.8 * sign(1, corner), 0.5 * sign(2, corner));
-                let push = -Vector3::ith(axis, position[axis].signum());
-                Placed { position, push, thrust: 1.0, speed: 2000.0 }
-            })
-            .collect(),
+    };
+    (0..count).map(|i| canted(seeds[i % seeds.len()])).collect()
+}
+
+fn at_a_corner(rng: &mut ChaCha8Rng) -> Placed {
+    let corner = rng.random_range(0..8_usize);
+    let axis = rng.random_range(0..3_usize);
+    let position = Vector3::new(
+        sign(0, corner),
+        0.8 * sign(1, corner),
+        0.5 * sign(2, corner),
+    );
+    Placed {
+        position,
+        push: -Vector3::ith(axis, position[axis].signum()),
+        thrust: 1.0,
+        speed: 2e3,
     }
 }
 
@@ -143,9 +187,13 @@ fn expression(variables: &[Variable], coefficients: impl Iterator<Item = f64>) -
 
 /// Rows of the wrench, torques over the longest arm.
 fn rows(generators: &[Generator], net: NetForce) -> (f64, Vec<Vec<f64>>) {
-    let arm = generators.iter().map(|g| g.torque.norm()).fold(1e-300, f64::max);
-    let mut rows: Vec<Vec<f64>> =
-        (0..3).map(|axis| generators.iter().map(|g| g.torque[axis] / arm).collect()).collect();
+    let arm = generators
+        .iter()
+        .map(|g| g.torque.norm())
+        .fold(1e-300, f64::max);
+    let mut rows: Vec<Vec<f64>> = (0..3)
+        .map(|axis| generators.iter().map(|g| g.torque[axis] / arm).collect())
+        .collect();
     if net == NetForce::Zero {
         rows.extend((0..3).map(|axis| generators.iter().map(|g| g.force[axis]).collect()));
     }
@@ -171,16 +219,25 @@ fn solve(
     right: &[f64],
 ) -> Option<Answer> {
     let mut problem = Problem::new(goal);
-    let variables: Vec<Variable> = cost.iter().zip(bounds).map(|(c, b)| problem.add_var(*c, *b)).collect();
+    let variables: Vec<Variable> = cost
+        .iter()
+        .zip(bounds)
+        .map(|(c, b)| problem.add_var(*c, *b))
+        .collect();
     for (row, right) in rows.iter().zip(right) {
-        problem.add_constraint(expression(&variables, row.iter().copied()), ComparisonOp::Eq, *right);
+        problem.add_constraint(
+            expression(&variables, row.iter().copied()),
+            ComparisonOp::Eq,
+            *right,
+        );
     }
     let solution = match problem.solve() {
         Ok(outcome) => outcome.into_solution().expect("no limit was set"),
         Err(Error::Infeasible) => return None,
         Err(other) => panic!("oracle: {other}"),
     };
-    let mut x = DVector::from_iterator(cost.len(), variables.iter().map(|v| solution.var_value(*v)));
+    let mut x =
+        DVector::from_iterator(cost.len(), variables.iter().map(|v| solution.var_value(*v)));
     let mut matrix = DMatrix::from_fn(rows.len(), cost.len(), |i, j| rows[i][j]);
     let whole = matrix.clone();
     let right = DVector::from_column_slice(right);
@@ -195,23 +252,44 @@ fn solve(
     }
     let free = matrix.svd(true, true);
     for _ in 0..3 {
-        x += free.solve(&(&right - &whole * &x), 1e-12).expect("both factors were asked for");
+        x += free
+            .solve(&(&right - &whole * &x), 1e-12)
+            .expect("both factors were asked for");
     }
     let residual = (&whole * &x - &right).amax();
-    let within = bounds.iter().zip(x.iter()).all(|((low, high), x)| (low - 1e-12..=high + 1e-12).contains(x));
+    let within = bounds
+        .iter()
+        .zip(x.iter())
+        .all(|((low, high), x)| (low - 1e-12..=high + 1e-12).contains(x));
     let exact = residual <= 1e-12 * reach && within;
-    Some(Answer { value: x.iter().zip(cost).map(|(x, c)| x * c).sum(), exact })
+    Some(Answer {
+        value: x.iter().zip(cost).map(|(x, c)| x * c).sum(),
+        exact,
+    })
 }
 
 /// Least propellant for the unit vector `h`; `None` if infeasible. Scaled to size one.
-pub(crate) fn lp_price(generators: &[Generator], net: NetForce, h: &Vector3<f64>) -> Option<Answer> {
+pub(crate) fn lp_price(
+    generators: &[Generator],
+    net: NetForce,
+    h: &Vector3<f64>,
+) -> Option<Answer> {
     let dearest = generators.iter().map(|g| g.cost).fold(1e-300, f64::max);
     let (arm, rows) = rows(generators, net);
     let cost: Vec<f64> = generators.iter().map(|g| g.cost / dearest).collect();
     let bounds = vec![(0.0, f64::INFINITY); cost.len()];
     let right: Vec<f64> = h.iter().copied().chain([0.0; 3]).take(rows.len()).collect();
-    let found = solve(OptimizationDirection::Minimize, &cost, &bounds, &rows, &right)?;
-    Some(Answer { value: found.value * dearest / arm, ..found })
+    let found = solve(
+        OptimizationDirection::Minimize,
+        &cost,
+        &bounds,
+        &rows,
+        &right,
+    )?;
+    Some(Answer {
+        value: found.value * dearest / arm,
+        ..found
+    })
 }
 
 /// Most torque along the unit vector `e`. Scaled to size one.
@@ -223,16 +301,30 @@ pub(crate) fn lp_most(generators: &[Generator], net: NetForce, e: &Vector3<f64>)
     }
     let mut cost = vec![0.0; generators.len()];
     cost.push(1.0);
-    let mut bounds: Vec<(f64, f64)> = generators.iter().map(|g| (g.least / strongest, g.most / strongest)).collect();
+    let mut bounds: Vec<(f64, f64)> = generators
+        .iter()
+        .map(|g| (g.least / strongest, g.most / strongest))
+        .collect();
     bounds.push((0.0, f64::INFINITY));
     let right = vec![0.0; rows.len()];
-    let found = solve(OptimizationDirection::Maximize, &cost, &bounds, &rows, &right).expect("rest is feasible");
-    Answer { value: found.value * strongest * arm, ..found }
+    let found = solve(
+        OptimizationDirection::Maximize,
+        &cost,
+        &bounds,
+        &rows,
+        &right,
+    )
+    .expect("rest is feasible");
+    Answer {
+        value: found.value * strongest * arm,
+        ..found
+    }
 }
 
 /// Torque and force of `levels`.
 pub(crate) fn wrench(generators: &[Generator], levels: &[f64]) -> (Vector3<f64>, Vector3<f64>) {
-    generators.iter().zip(levels).fold((Vector3::zeros(), Vector3::zeros()), |(torque, force), (g, f)| {
-        (torque + g.torque * *f, force + g.force * *f)
-    })
+    generators.iter().zip(levels).fold(
+        (Vector3::zeros(), Vector3::zeros()),
+        |(torque, force), (g, f)| (torque + g.torque * *f, force + g.force * *f),
+    )
 }
