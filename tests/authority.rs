@@ -95,7 +95,7 @@ fn zonohedra_of_solid_geometry() {
     assert!((volume - 84.72136).abs() < 1e-5, "{volume}");
 }
 
-/// Generators in general position: N(N−1) faces, N(N−1)+2 vertices, volume Σ |det| over triples (McMullen 1971).
+/// Generators in general position: N(N−1) faces, N(N−1)+2 vertices, volume Σ |det| over triples (P. `McMullen` 1971).
 #[test]
 fn zonotopes_in_general_position() {
     let mut rng = ChaCha8Rng::seed_from_u64(20);

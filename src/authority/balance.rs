@@ -23,7 +23,7 @@ pub(super) fn balanced(forces: &[Vector3<f64>], two_sided: &[bool]) -> (Vec<bool
         [a, b] => normals.extend(forces.iter().map(|d| a.cross(b).cross(d))),
         _ => {
             for (i, d) in forces.iter().enumerate() {
-                normals.extend(forces[..i].iter().map(|e| d.cross(e)));
+                normals.extend(forces[..i].iter().map(|e| across_both(d, e)));
             }
         }
     }
@@ -49,6 +49,11 @@ pub(super) fn balanced(forces: &[Vector3<f64>], two_sided: &[bool]) -> (Vec<bool
         }
     }
     (taking_part, across)
+}
+
+/// d × e, with its digits kept where the two are nearly parallel.
+fn across_both(d: &Vector3<f64>, e: &Vector3<f64>) -> Vector3<f64> {
+    if d.dot(e) > 0.0 { d.cross(&(e - d)) } else { d.cross(&(e + d)) }
 }
 
 #[cfg(test)]
@@ -84,6 +89,19 @@ mod tests {
     fn a_line_in_a_half_space_survives_alone() {
         let forces = [x(), -x(), (y() + z()).normalize(), (y() - z()).normalize()];
         assert_eq!(balanced(&forces, &[false; 4]).0, [true, true, false, false]);
+    }
+
+    /// Pushes a billionth of a radian apart, all in one half-space: none can be balanced.
+    #[test]
+    fn nearly_equal_pushes_do_not_hide_a_plane() {
+        let forces = [
+            Vector3::new(0.242_380_958_982_066_9, 0.367_620_307_376_778_03, -0.897_834_494_952_793),
+            Vector3::new(0.747_320_795_750_108, 0.543_574_357_267_152_1, -0.382_149_900_380_764_24),
+            Vector3::new(0.242_380_958_686_270_66, 0.367_620_308_276_189_86, -0.897_834_494_664_380_6),
+        ];
+        let (part, across) = balanced(&forces, &[false; 3]);
+        assert_eq!(part, [false; 3]);
+        assert!(forces.iter().all(|d| across.dot(d) < 0.0));
     }
 
     #[test]

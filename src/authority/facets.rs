@@ -118,16 +118,18 @@ impl Faces<'_> {
     }
 
     /// Support of the zonotope along the normal, from all its columns: a bound that holds for any normal, so that
-    /// rounding of a normal can only loosen a face, never cut the set.
+    /// rounding of a normal can only loosen a face, never cut the set. Zero if nothing that reaches beyond the face
+    /// does so by more than rounding: the rule that makes a ray of the dual, so that both come to the same verdict.
     fn offset(&self, reduced_normal: &Vec6) -> f64 {
-        let (mut offset, mut noise) = (0.0, 0.0);
+        let (mut offset, mut beyond) = (0.0, false);
         for column in &self.reduced.columns {
             let generator = &self.generators[column.index];
-            let value = dot(reduced_normal, &column.unit) * column.length;
-            offset += (generator.most * value).max(generator.least * value);
-            noise += generator.most.max(-generator.least) * column.length * column.noise;
+            let value = dot(reduced_normal, &column.unit);
+            let reach = (generator.most * value).max(generator.least * value);
+            offset += reach * column.length;
+            beyond |= reach > 0.0 && value.abs() > ROUNDINGS * column.noise;
         }
-        if offset <= ROUNDINGS * noise { 0.0 } else { offset }
+        if beyond { offset } else { 0.0 }
     }
 }
 

@@ -2,7 +2,7 @@
 //!
 //! In go [`Generator`]s: torque and force per unit level, bounds, cost. Out come an [`Authority`] (the attainable
 //! torques as half-spaces) and a [`PriceMap`] (the least propellant for any angular impulse), each with or without
-//! net force, and both for a list of failures with [`cases`]. The room knows no orbits, configuration or names.
+//! net force, and both for a list of failures with [`cases()`]. The room knows no orbits, configuration or names.
 
 mod balance;
 mod cases;

@@ -65,11 +65,11 @@ pub(crate) enum Kind {
     General,
     /// All positions and pushes in one plane, which is not a coordinate plane.
     Planar,
-    /// Each thruster has its mirror image, twice over: positions and pushes ± along axes, equal engines.
+    /// Each thruster has its images in two planes, equal engines.
     Mirrored,
-    /// Each thruster stands there two or three times.
+    /// Each thruster stands there twice.
     Duplicated,
-    /// A couple of pushes on each of few lines, canted by a millionth of a radian.
+    /// Each thruster stands there twice, canted by a millionth of a radian.
     Nearly,
     /// All pushes in one half-space.
     OneSided,
@@ -82,54 +82,53 @@ pub(crate) const KINDS: [Kind; 7] =
 
 /// A layout of `kind` with about `count` thrusters.
 pub(crate) fn layout(kind: Kind, count: usize, rng: &mut ChaCha8Rng) -> Vec<Placed> {
-    let turn = Rotation3::from_axis_angle(&nalgebra::Unit::new_normalize(direction(rng)), rng.random_range(0.0..3.0));
-    let sign = |bit: usize, of: usize| if of >> bit & 1 == 0 { 1.0 } else { -1.0 };
+    let axis = nalgebra::Unit::new_normalize(direction(rng));
+    let turn = Rotation3::from_axis_angle(&axis, rng.random_range(0.0..3.0));
     match kind {
         Kind::General => (0..count).map(|_| placed(rng)).collect(),
-        Kind::Planar => (0..count)
-            .map(|_| {
-                let p = placed(rng);
-                let flat = |v: Vector3<f64>| turn * Vector3::new(v.x, v.y, 0.0);
-                Placed { position: flat(p.position), push: flat(p.push).normalize(), ..p }
-            })
-            .collect(),
-        Kind::Mirrored => {
-            let seeds: Vec<Placed> = (0..count.div_ceil(4)).map(|_| placed(rng)).collect();
-            let images = |k: usize| move |v: Vector3<f64>| Vector3::new(sign(0, k) * v.x, sign(1, k) * v.y, v.z);
-            let all =
-                seeds.iter().flat_map(|p| (0..4).map(move |k| Placed { position: images(k)(p.position), push: images(k)(p.push), ..*p }));
-            all.map(|p| Placed { thrust: 1.0, speed: 2000.0, ..p }).collect()
+        Kind::Planar => {
+            let flat = |v: Vector3<f64>| turn * Vector3::new(v.x, v.y, 0.0);
+            let one = |p: Placed| Placed { position: flat(p.position), push: flat(p.push).normalize(), ..p };
+            (0..count).map(|_| one(placed(rng))).collect()
         }
-        Kind::Duplicated => {
-            let seeds: Vec<Placed> = (0..count.div_ceil(2)).map(|_| placed(rng)).collect();
-            (0..count).map(|i| seeds[i % seeds.len()]).collect()
+        Kind::Mirrored => mirrored(count, rng),
+        Kind::Duplicated => repeated(count, 0.0, rng),
+        Kind::Nearly => repeated(count, 1e-6, rng),
+        Kind::OneSided => {
+            let up = |d: Vector3<f64>| turn * Vector3::new(d.x, d.y, d.z.abs() + 0.05).normalize();
+            let one = |p: Placed| Placed { push: up(p.push), ..p };
+            (0..count).map(|_| one(placed(rng))).collect()
         }
-        Kind::Nearly => {
-            let seeds: Vec<Placed> = (0..count.div_ceil(2)).map(|_| placed(rng)).collect();
-            (0..count)
-                .map(|i| {
-                    let p = seeds[i % seeds.len()];
-                    Placed { push: (p.push + 1e-6 * direction(rng)).normalize(), ..p }
-                })
-                .collect()
-        }
-        Kind::OneSided => (0..count)
-            .map(|_| {
-                let p = placed(rng);
-                let up = Vector3::new(p.push.x, p.push.y, p.push.z.abs() + 0.05).normalize();
-                Placed { push: turn * up, ..p }
-            })
-            .collect(),
-        Kind::Box => (0..count)
-            .map(|_| {
-                let corner = rng.random_range(0..8_usize);
-                let axis = rng.random_range(0..3_usize);
-                let position = Vector3::new(sign(0, corner), 0.8 * sign(1, corner), 0.5 * sign(2, corner));
-                let push = -Vector3::ith(axis, position[axis].signum());
-                Placed { position, push, thrust: 1.0, speed: 2000.0 }
-            })
-            .collect(),
+        Kind::Box => (0..count).map(|_| at_a_corner(rng)).collect(),
     }
+}
+
+/// 1 or −1 by one bit of a number.
+fn sign(bit: usize, of: usize) -> f64 {
+    if of >> bit & 1 == 0 { 1.0 } else { -1.0 }
+}
+
+fn mirrored(count: usize, rng: &mut ChaCha8Rng) -> Vec<Placed> {
+    let image = |k: usize, v: Vector3<f64>| Vector3::new(sign(0, k) * v.x, sign(1, k) * v.y, v.z);
+    let seeds: Vec<Placed> = (0..count.div_ceil(4)).map(|_| placed(rng)).collect();
+    let four = |p: Placed| (0..4).map(move |k| Placed { position: image(k, p.position), push: image(k, p.push), thrust: 1.0, speed: 2e3 });
+    seeds.into_iter().flat_map(four).collect()
+}
+
+/// Each of half as many thrusters twice, canted by `cant`.
+fn repeated(count: usize, cant: f64, rng: &mut ChaCha8Rng) -> Vec<Placed> {
+    let seeds: Vec<Placed> = (0..count.div_ceil(2)).map(|_| placed(rng)).collect();
+    let mut canted = |p: Placed| {
+        if cant > 0.0 { Placed { push: (p.push + cant * direction(rng)).normalize(), ..p } } else { p }
+    };
+    (0..count).map(|i| canted(seeds[i % seeds.len()])).collect()
+}
+
+fn at_a_corner(rng: &mut ChaCha8Rng) -> Placed {
+    let corner = rng.random_range(0..8_usize);
+    let axis = rng.random_range(0..3_usize);
+    let position = Vector3::new(sign(0, corner), 0.8 * sign(1, corner), 0.5 * sign(2, corner));
+    Placed { position, push: -Vector3::ith(axis, position[axis].signum()), thrust: 1.0, speed: 2e3 }
 }
 
 fn expression(variables: &[Variable], coefficients: impl Iterator<Item = f64>) -> LinearExpr {
