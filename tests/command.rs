@@ -1,4 +1,5 @@
 //! The command from outside: text, files and exit status.
+#![allow(clippy::unwrap_used, reason = "a helper of a test fails by panicking")]
 
 use std::path::{Path, PathBuf};
 use std::process::Output;

@@ -18,6 +18,7 @@ mod node;
 mod offsets;
 mod overlay;
 mod path;
+mod reference;
 mod refuse;
 mod render;
 mod schema;
@@ -39,6 +40,7 @@ pub use mission::{
 };
 pub use nearest::{did_you_mean, known, nearest};
 pub use path::{Path, Segment};
+pub use reference::reference;
 pub use render::{render_all, sort, to_json};
 pub use source::{Place, Source};
 pub use spacecraft::{Material, NetForceChoice, Propulsion, PulsePerformance, Spacecraft, Surface, Tank, Thruster, Wheel, Wheels};
