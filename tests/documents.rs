@@ -16,7 +16,7 @@ fn document(name: &str) -> String {
 const BEGIN: &str = "<!-- made from the schema: COUPLET_UPDATE=1 cargo test --test documents -->\n";
 const END: &str = "<!-- end -->\n";
 
-/// docs/config.md carries the reference that the types give; COUPLET_UPDATE=1 writes it.
+/// docs/config.md carries the reference that the types give; `COUPLET_UPDATE=1` writes it.
 #[test]
 fn the_reference_of_keys_is_up_to_date() {
     let text = document("docs/config.md");

@@ -1,5 +1,7 @@
 //! The reference of all keys, made from the schema: docs/config.md carries it.
 
+use std::fmt::Write;
+
 use serde_json::Value;
 
 use super::spec::schema;
@@ -72,11 +74,12 @@ fn section(root: &Value, node: &Value, path: &str, text: &mut String) {
     let Some(properties) = node.get("properties").and_then(Value::as_object) else { return };
     let required: Vec<&str> = node.get("required").and_then(Value::as_array).into_iter().flatten().filter_map(Value::as_str).collect();
     let title = if path.is_empty() { "The whole file".to_owned() } else { format!("`{path}`") };
-    *text += &format!("\n### {title}\n\n{}\n\n", description(node));
+    // Writing to a `String` cannot fail.
+    let _ = writeln!(text, "\n### {title}\n\n{}\n", description(node));
     text.push_str("| key | must be given | value | meaning |\n| --- | --- | --- | --- |\n");
     for (key, value) in properties {
         let must = if required.contains(&key.as_str()) { "yes" } else { "" };
-        *text += &format!("| `{key}` | {must} | {} | {} |\n", kind(root, value), description(value));
+        let _ = writeln!(text, "| `{key}` | {must} | {} | {} |", kind(root, value), description(value));
     }
     for (key, value) in properties {
         if let Some((map, items)) = opens(root, value) {
