@@ -5,19 +5,21 @@ use super::args::{Common, Format};
 use super::budget::pretty;
 use super::output::Target;
 use super::scenario::{load, on_threads};
-use crate::layout::all_cases;
+use crate::layout::Study;
+use crate::montecarlo::check_layout;
 use crate::report::{layout_json, layout_table, layout_text};
 
 pub(super) fn run(common: &Common) -> Outcome {
     let loaded = load(common)?;
     let target = Target::open(&common.output)?;
     let vehicle = &loaded.scenario.vehicle;
-    let cases = on_threads(common, || all_cases(vehicle))?;
+    let study = on_threads(common, || Study::new(vehicle))?;
+    let requirements = check_layout(&loaded.scenario.requirements, &study.cases);
     let text = match common.format {
-        Format::Text => layout_text(&vehicle.name, &cases),
-        Format::Json => pretty(&layout_json(&cases, &loaded.provenance)),
-        Format::Csv => layout_table(&cases).to_csv(),
+        Format::Text => layout_text(&vehicle.name, &study, &requirements),
+        Format::Json => pretty(&layout_json(&study, &requirements, &loaded.provenance)),
+        Format::Csv => layout_table(&study.cases).to_csv(),
     };
     target.finish(&text)?;
-    Ok(true)
+    Ok(requirements.iter().all(|checked| checked.met))
 }

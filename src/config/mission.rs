@@ -186,6 +186,13 @@ pub struct Requirement {
     pub name: String,
     /// The result that is bounded.
     pub figure: Figure,
+    /// For `torque` and `price`: a signed axis such as `+x`, or `each`. Default: every direction.
+    pub axis: Option<Axis>,
+    /// For `torque` and `price`: what is out: `any thruster`, `any string`, or the name of a thruster or string. Default: nothing.
+    pub out: Option<String>,
+    /// For `torque` and `price`: whether a net force is allowed. Default: `zero`.
+    #[serde(default)]
+    pub net_force: super::NetForceChoice,
     /// Upper bound, in the unit of the figure.
     pub at_most: Option<String>,
     /// Lower bound, in the unit of the figure.
@@ -210,4 +217,34 @@ pub enum Figure {
     WheelFill,
     /// Guaranteed pure torque of the intact layout, both ends of the centre-of-mass travel, N·m.
     GuaranteedPureTorque,
+    /// Least torque of the cases that `axis`, `out` and `net_force` name, N·m.
+    Torque,
+    /// Highest price of the cases that `axis`, `out` and `net_force` name, kg/(N·m·s).
+    Price,
+}
+
+/// A signed body axis, or each of the six.
+#[derive(Debug, Clone, Copy, PartialEq, Eq, Deserialize, JsonSchema)]
+pub enum Axis {
+    /// About +x.
+    #[serde(rename = "+x")]
+    PlusX,
+    /// About −x.
+    #[serde(rename = "-x")]
+    MinusX,
+    /// About +y.
+    #[serde(rename = "+y")]
+    PlusY,
+    /// About −y.
+    #[serde(rename = "-y")]
+    MinusY,
+    /// About +z.
+    #[serde(rename = "+z")]
+    PlusZ,
+    /// About −z.
+    #[serde(rename = "-z")]
+    MinusZ,
+    /// Each of the six.
+    #[serde(rename = "each")]
+    Each,
 }

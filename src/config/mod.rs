@@ -35,14 +35,14 @@ pub use diagnostic::{Diagnostic, Mark, Related, Severity, Site};
 pub use document::Document;
 pub use leaf::{Quantity, SpreadQuantity, SpreadTriple, Triple};
 pub use mission::{
-    ActivityLevel, Attitude, Budget, Environment, Event, Figure, Mission, Orbit, Phase, RateDamping, Requirement, ResolutionChoice, Slews,
-    SolarActivity, Unload,
+    ActivityLevel, Attitude, Axis, Budget, Environment, Event, Figure, Mission, Orbit, Phase, RateDamping, Requirement, ResolutionChoice,
+    Slews, SolarActivity, Unload,
 };
 pub use nearest::{did_you_mean, known, nearest};
 pub use path::{Path, Segment};
 pub use reference::reference;
 pub use render::{render_all, sort, to_json};
 pub use source::{Place, Source};
-pub use spacecraft::{Material, NetForceChoice, Propulsion, PulsePerformance, Spacecraft, Surface, Tank, Thruster, Wheel, Wheels};
+pub use spacecraft::{Material, NetForceChoice, Plume, Propulsion, PulsePerformance, Spacecraft, Surface, Tank, Thruster, Wheel, Wheels};
 pub use spec::{Spec, read, schema};
 pub use walk::{Leaf, check_structure};

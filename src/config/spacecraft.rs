@@ -18,6 +18,8 @@ pub struct Spacecraft {
     pub dry_mass: SpreadQuantity<kind::Mass>,
     /// Centre of mass without propellant, in the body frame, such as `0.01 0 0.74 m`.
     pub centre_of_mass: SpreadTriple<kind::Length>,
+    /// Half widths of the box in which the centre of mass is stated to lie, for the layout's worst corner, such as `5 5 10 mm`. Default: none.
+    pub centre_of_mass_box: Option<Triple<kind::Length>>,
     /// Moments of inertia Ixx, Iyy, Izz without propellant about that centre of mass, such as `92 118 85 kg m2`.
     pub inertia: SpreadTriple<kind::Inertia>,
     /// Elements Ixy, Ixz, Iyz of the inertia matrix (with their sign in the matrix), such as `1.5 -0.8 2 kg m2`. Default: zero.
@@ -82,11 +84,27 @@ pub struct Propulsion {
     pub pulse_performance: Vec<PulsePerformance>,
     /// Largest share of the time a thruster may be on during an unload, such as `10 %`. Default: `10 %`.
     pub duty_cycle: Option<Quantity<kind::Number>>,
+    /// Half-angle of the cone in which the push of a thruster lies, such as `0.5 deg`. Default: exact.
+    pub alignment: Option<Quantity<kind::Angle>>,
+    /// How far the thrust of one thruster may lie from its nominal value, either way, for parasitic torque and force, such as `5 %`. Default: exact.
+    pub thrust_tolerance: Option<Quantity<kind::Number>>,
+    /// Plume, for the check against the facets. Default: not checked.
+    pub plume: Option<Plume>,
     /// Whether an unload may leave a net force: `zero` fires couples only, `any` takes the least propellant. Default: `zero`.
     #[serde(default)]
     pub net_force: NetForceChoice,
     /// Pulses that one thruster is qualified for. Default: not stated, not checked.
     pub qualified_pulses: Option<Quantity<kind::Number>>,
+}
+
+/// A plume as a cone.
+#[derive(Debug, Clone, Deserialize, JsonSchema)]
+#[serde(deny_unknown_fields)]
+pub struct Plume {
+    /// Half-angle, such as `30 deg`.
+    pub half_angle: Quantity<kind::Angle>,
+    /// Range within which it matters, such as `2 m`.
+    pub range: Quantity<kind::Length>,
 }
 
 /// Whether an unload may push the spacecraft.
@@ -124,6 +142,8 @@ pub struct Thruster {
     pub push: Option<Triple<kind::Number>>,
     /// Direction in which the plume leaves, opposite to the push; or give `push`.
     pub plume: Option<Triple<kind::Number>>,
+    /// Share of the thrust lost where the plume meets the spacecraft, such as `3 %`. Default: none.
+    pub plume_loss: Option<Quantity<kind::Number>>,
     /// Thrust of this one. Default: `propulsion.thrust`.
     pub thrust: Option<SpreadQuantity<kind::Force>>,
     /// Specific impulse of this one. Default: that of `propulsion`.

@@ -3,9 +3,23 @@
 //! In: a vehicle. Out: for each set of thrusters lost and each end of the centre-of-mass travel, the
 //! torque in every direction and its price, with names. Knows nothing of missions.
 
+mod advice;
+mod dispersion;
+mod plume;
+mod reasons;
+mod requirement;
+mod wheel_cases;
+
+pub use advice::{Addition, Advice, Cant, Turn, advise};
+pub use dispersion::{Dispersion, dispersions};
+pub use plume::{Impingement, impingements};
+pub use reasons::Reason;
+pub use requirement::{Scope, figure};
+pub use wheel_cases::{WheelCase, wheel_cases};
+
 use nalgebra::Vector3;
 
-use crate::authority::{Capability, Generator, Price, cases};
+use crate::authority::{Authority, Capability, Generator, NetForce, Price, PriceMap, cases};
 use crate::vehicle::{Thruster, Vehicle};
 
 /// Why thrusters are out.
@@ -56,6 +70,17 @@ pub struct Verdict {
     pub axes: Vec<AxisTorque>,
 }
 
+/// The corner of the stated box of the centre of mass with the least torque. Pure torque does not depend on it.
+#[derive(Debug, Clone, PartialEq)]
+pub struct Corner {
+    /// Centre of mass there, body frame, m.
+    pub centre_of_mass_m: Vector3<f64>,
+    /// Torque with net force in every direction, least over the corners, N·m.
+    pub guaranteed_n_m: f64,
+    /// Dearest price with net force, highest over the corners, kg/(N·m·s); `None` if a corner cannot serve some direction.
+    pub dearest_price: Option<f64>,
+}
+
 /// One case of a layout.
 #[derive(Debug, Clone, PartialEq)]
 pub struct LayoutCase {
@@ -75,6 +100,10 @@ pub struct LayoutCase {
     pub pure_torque: Verdict,
     /// With any net force.
     pub any_force: Verdict,
+    /// Worst corner of the stated box of the centre of mass, if one is stated.
+    pub worst_corner: Option<Corner>,
+    /// Why some axes have no torque.
+    pub reasons: Vec<Reason>,
 }
 
 /// The signed body axes in the order of results.
@@ -116,6 +145,59 @@ pub fn all_cases(vehicle: &Vehicle) -> Vec<LayoutCase> {
     solve(vehicle, &lost)
 }
 
+/// Everything about a layout.
+#[derive(Debug, Clone)]
+pub struct Study {
+    /// Every case.
+    pub cases: Vec<LayoutCase>,
+    /// Parasitic torque and force of the intact layout, full tank.
+    pub dispersions: Vec<Dispersion>,
+    /// Facets inside plumes.
+    pub impingements: Vec<Impingement>,
+    /// Wheels, intact and with each out; empty without wheels.
+    pub wheels: Vec<WheelCase>,
+    /// Mends: of the intact layout for each force condition it fails under, else of the first single failure
+    /// that lacks torque under the force condition of unloading.
+    pub advice: Vec<Advice>,
+}
+
+impl Study {
+    /// Studies the layout of a vehicle.
+    #[must_use]
+    pub fn new(vehicle: &Vehicle) -> Self {
+        let cases = all_cases(vehicle);
+        let centre = travel(vehicle)[0].1;
+        Self {
+            dispersions: dispersions(vehicle, &centre),
+            impingements: impingements(vehicle),
+            wheels: vehicle.wheels.as_ref().map(wheel_cases).unwrap_or_default(),
+            advice: needed_advice(vehicle, &cases),
+            cases,
+        }
+    }
+}
+
+fn needed_advice(vehicle: &Vehicle, cases: &[LayoutCase]) -> Vec<Advice> {
+    let lacks = |case: &LayoutCase, net: NetForce| match net {
+        NetForce::Zero => !case.pure_torque.every_direction,
+        NetForce::Any => !case.any_force.every_direction,
+    };
+    let intact: Vec<NetForce> = [NetForce::Zero, NetForce::Any]
+        .into_iter()
+        .filter(|net| cases.iter().any(|case| case.out_because == OutBecause::None && lacks(case, *net)))
+        .collect();
+    if !intact.is_empty() {
+        return intact.into_iter().map(|net| advise(vehicle, &[], net)).collect();
+    }
+    let net = match vehicle.propulsion.net_force {
+        crate::config::NetForceChoice::Zero => NetForce::Zero,
+        crate::config::NetForceChoice::Any => NetForce::Any,
+    };
+    let single = cases.iter().find(|case| case.out_because == OutBecause::Thruster && lacks(case, net));
+    let lost = single.and_then(|case| vehicle.propulsion.thrusters.iter().position(|thruster| case.thrusters_out.contains(&thruster.name)));
+    lost.map(|lost| advise(vehicle, &[lost], net)).into_iter().collect()
+}
+
 fn solve(vehicle: &Vehicle, lost: &[(OutBecause, Vec<usize>)]) -> Vec<LayoutCase> {
     let thrusters = &vehicle.propulsion.thrusters;
     let sets: Vec<Vec<usize>> = lost.iter().map(|(_, set)| set.clone()).collect();
@@ -132,15 +214,37 @@ fn solve(vehicle: &Vehicle, lost: &[(OutBecause, Vec<usize>)]) -> Vec<LayoutCase
                 wrench_rank: case.pure_torque.authority.wrench_rank,
                 pure_torque: verdict(&case.pure_torque, thrusters),
                 any_force: verdict(&case.any_force, thrusters),
+                worst_corner: worst_corner(vehicle, &centre, set),
+                reasons: reasons::reasons(&case, because, &generators, thrusters),
             });
         }
     }
     found
 }
 
+/// Searches the eight corners of the stated box, and its middle: the price has kinks, and may be highest there.
+fn worst_corner(vehicle: &Vehicle, centre: &Vector3<f64>, lost: &[usize]) -> Option<Corner> {
+    let half = vehicle.dry.centre_of_mass_box_m?;
+    let corner = |corner: u8| {
+        let sign = |axis: u8| if corner >> axis & 1 == 1 { 1.0 } else { -1.0 };
+        centre + half.component_mul(&Vector3::new(sign(0), sign(1), sign(2)))
+    };
+    let corners = (0..8).map(corner).chain([*centre]).map(|at| {
+        let all: Vec<_> = vehicle.propulsion.thrusters.iter().map(|thruster| generator(thruster, &at)).collect();
+        let left = crate::authority::without(&all, lost);
+        let price = PriceMap::new(&left, NetForce::Any).dearest().map(|(_, price)| price);
+        Corner { centre_of_mass_m: at, guaranteed_n_m: Authority::new(&left, NetForce::Any).guaranteed(), dearest_price: price }
+    });
+    corners.reduce(|worst, corner| {
+        let dearest_price = worst.dearest_price.zip(corner.dearest_price).map(|(a, b)| a.max(b));
+        let least = if corner.guaranteed_n_m < worst.guaranteed_n_m { corner } else { worst };
+        Corner { dearest_price, ..least }
+    })
+}
+
 fn generator(thruster: &Thruster, centre: &Vector3<f64>) -> Generator {
     let push = thruster.push.into_inner();
-    Generator::thruster(thruster.position_m, push, *centre, thruster.thrust_n.nominal(), thruster.exhaust_speed.nominal())
+    Generator::thruster(thruster.position_m, push, *centre, thruster.thrust_n(), thruster.effective_speed_m_per_s())
 }
 
 fn verdict(capability: &Capability, thrusters: &[Thruster]) -> Verdict {

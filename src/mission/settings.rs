@@ -1,6 +1,7 @@
 //! How the budget is made, and what must hold.
 
 use crate::config::{self, Figure, ResolutionChoice, Spec};
+use crate::layout::Scope;
 use crate::units::{self, Dimension, Kind, kind};
 use crate::vehicle::Faults;
 
@@ -35,6 +36,8 @@ pub struct Requirement {
     pub name: String,
     /// The figure it bounds.
     pub figure: Figure,
+    /// Cases and directions of the layout, for figures of the layout.
+    pub scope: Scope,
     /// The bound.
     pub bound: Bound,
 }
@@ -54,7 +57,10 @@ impl Figure {
             }
             Self::ProbabilityEnough | Self::WheelFill => (kind::Number::DIMENSION, "", "a share", "95 %"),
             Self::UnloadInterval => (kind::Time::DIMENSION, kind::Time::UNIT, kind::Time::NAME, "1 d"),
-            Self::GuaranteedPureTorque => (kind::Torque::DIMENSION, kind::Torque::UNIT, kind::Torque::NAME, kind::Torque::EXAMPLE),
+            Self::Price => (kind::Price::DIMENSION, kind::Price::UNIT, kind::Price::NAME, kind::Price::EXAMPLE),
+            Self::GuaranteedPureTorque | Self::Torque => {
+                (kind::Torque::DIMENSION, kind::Torque::UNIT, kind::Torque::NAME, kind::Torque::EXAMPLE)
+            }
         }
     }
 
@@ -69,6 +75,8 @@ impl Figure {
             Self::UnloadInterval => "shortest time between unloads",
             Self::WheelFill => "largest fill of the wheels",
             Self::GuaranteedPureTorque => "pure torque in every direction",
+            Self::Torque => "least torque",
+            Self::Price => "highest price",
         }
     }
 }
@@ -89,10 +97,31 @@ pub(super) fn settings(written: &config::Budget, faults: &mut Faults) -> Option<
 pub(super) fn requirements(spec: &Spec, faults: &mut Faults) -> Vec<Requirement> {
     faults.unique("requirements", spec.requirements.iter().map(|requirement| requirement.name.as_str()));
     let listed = spec.requirements.iter().enumerate();
-    listed.filter_map(|(index, written)| requirement(written, &format!("requirements[{index}]"), faults)).collect()
+    listed.filter_map(|(index, written)| requirement(spec, written, &format!("requirements[{index}]"), faults)).collect()
 }
 
-fn requirement(written: &config::Requirement, at: &str, faults: &mut Faults) -> Option<Requirement> {
+/// Checks that `out` names something that can be out, and that the keys of a layout stand with a figure of a layout.
+fn scope(spec: &Spec, written: &config::Requirement, at: &str, faults: &mut Faults) -> Option<Scope> {
+    let of_layout = matches!(written.figure, Figure::Torque | Figure::Price);
+    if !of_layout && (written.axis.is_some() || written.out.is_some()) {
+        faults.push(at, "`axis` and `out` go with the figures `torque` and `price` only", "leave them out, or change the figure");
+        return None;
+    }
+    if let Some(out) = &written.out {
+        let names = ["any thruster", "any string"].into_iter();
+        let thrusters = spec.thrusters.iter().map(|thruster| thruster.name.as_str());
+        let strings = spec.thrusters.iter().filter_map(|thruster| thruster.string.as_deref());
+        let known = names.chain(thrusters).chain(strings);
+        if !known.clone().any(|name| name == out) {
+            let help = config::did_you_mean(out, known).unwrap_or_default();
+            faults.push(&format!("{at}.out"), format!("`{out}` is no thruster and no string"), help);
+            return None;
+        }
+    }
+    Some(Scope { axis: written.axis, out: written.out.clone(), net_force: written.net_force })
+}
+
+fn requirement(spec: &Spec, written: &config::Requirement, at: &str, faults: &mut Faults) -> Option<Requirement> {
     let (key, text, make): (&str, &str, fn(f64) -> Bound) = match (&written.at_most, &written.at_least) {
         (Some(text), None) => ("at_most", text, Bound::AtMost),
         (None, Some(text)) => ("at_least", text, Bound::AtLeast),
@@ -103,7 +132,10 @@ fn requirement(written: &config::Requirement, at: &str, faults: &mut Faults) -> 
     };
     let (dimension, _, name, example) = written.figure.words();
     match units::parse(text, dimension, name, example) {
-        Ok(limit) => Some(Requirement { name: written.name.clone(), figure: written.figure, bound: make(limit) }),
+        Ok(limit) => {
+            let scope = scope(spec, written, at, faults)?;
+            Some(Requirement { name: written.name.clone(), figure: written.figure, scope, bound: make(limit) })
+        }
         Err(error) => {
             faults.push(&format!("{at}.{key}"), error.message, error.help);
             None

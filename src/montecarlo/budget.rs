@@ -7,7 +7,7 @@ use super::{
     wilks_sample_size,
 };
 use crate::config;
-use crate::layout::{LayoutCase, intact};
+use crate::layout::{LayoutCase, all_cases, figure, intact};
 use crate::lifetime::{Outcome, Plan};
 use crate::mission::{Bound, Requirement};
 use crate::propellant::{ROWS, Row};
@@ -49,6 +49,37 @@ pub struct Checked {
     pub value: Option<f64>,
     /// Whether the figure exists and keeps the bound.
     pub met: bool,
+}
+
+impl Checked {
+    /// Compares a figure with its bound.
+    #[must_use]
+    pub fn new(requirement: &Requirement, value: Option<f64>) -> Self {
+        let met = value.is_some_and(|value| match requirement.bound {
+            Bound::AtMost(limit) => value <= limit + BOUND_IS_ROUNDING * limit.abs(),
+            Bound::AtLeast(limit) => value >= limit - BOUND_IS_ROUNDING * limit.abs(),
+        });
+        Self { requirement: requirement.clone(), value, met }
+    }
+}
+
+/// Whether a requirement is about the layout alone.
+fn of_layout(requirement: &Requirement) -> bool {
+    matches!(requirement.figure, config::Figure::Torque | config::Figure::Price)
+}
+
+/// The requirements that are about the layout alone, checked.
+#[must_use]
+pub fn check_layout(requirements: &[Requirement], cases: &[LayoutCase]) -> Vec<Checked> {
+    let value = |requirement: &Requirement| match requirement.figure {
+        config::Figure::Torque => figure(cases, &requirement.scope).0,
+        _ => figure(cases, &requirement.scope).1,
+    };
+    requirements
+        .iter()
+        .filter(|requirement| of_layout(requirement))
+        .map(|requirement| Checked::new(requirement, value(requirement)))
+        .collect()
 }
 
 /// The whole budget.
@@ -128,7 +159,8 @@ impl Budget {
             lifetimes,
             confidence,
         };
-        budget.requirements = plan.scenario().requirements.iter().map(|requirement| budget.check(requirement)).collect();
+        let cases = if plan.scenario().requirements.iter().any(of_layout) { all_cases(plan.vehicle()) } else { Vec::new() };
+        budget.requirements = plan.scenario().requirements.iter().map(|requirement| budget.check(requirement, &cases)).collect();
         budget.warnings = super::warnings::warnings(plan, &budget);
         Ok(budget)
     }
@@ -139,7 +171,7 @@ impl Budget {
         &self.rows[row.index()]
     }
 
-    fn check(&self, requirement: &Requirement) -> Checked {
+    fn check(&self, requirement: &Requirement, cases: &[LayoutCase]) -> Checked {
         use config::Figure as F;
         let upper = |p: f64| self.attitude.at(p).and_then(|estimate| estimate.upper);
         let value = match requirement.figure {
@@ -149,13 +181,11 @@ impl Budget {
             F::ProbabilityEnough => Some(self.enough.lower),
             F::UnloadInterval => self.nominal.shortest_interval_s,
             F::WheelFill => self.wheel_fill,
+            F::Torque => figure(cases, &requirement.scope).0,
+            F::Price => figure(cases, &requirement.scope).1,
             F::GuaranteedPureTorque => self.layout.iter().map(|case| case.pure_torque.guaranteed_n_m).reduce(f64::min),
         };
-        let met = value.is_some_and(|value| match requirement.bound {
-            Bound::AtMost(limit) => value <= limit + BOUND_IS_ROUNDING * limit.abs(),
-            Bound::AtLeast(limit) => value >= limit - BOUND_IS_ROUNDING * limit.abs(),
-        });
-        Checked { requirement: requirement.clone(), value, met }
+        Checked::new(requirement, value)
     }
 }
 

@@ -17,7 +17,7 @@ mod warnings;
 mod wheels;
 
 pub use accumulate::Moments;
-pub use budget::{Budget, Checked, Distribution, Progress, QUANTILES};
+pub use budget::{Budget, Checked, Distribution, Progress, QUANTILES, check_layout};
 pub use drivers::{BASE, Driver, drivers};
 pub use probability::{Proportion, proportion};
 pub use quantiles::{QuantileEstimate, lower_limit_rank, quantile, upper_limit_rank, wilks_sample_size};

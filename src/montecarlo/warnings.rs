@@ -48,6 +48,13 @@ pub(super) fn warnings(plan: &Plan, budget: &Budget) -> Vec<String> {
             "the mission ends in {ends:.1}; the geomagnetic model (IGRF-14) is a prediction to 2030 and carried on unchanged beyond"
         ));
     }
+    for found in crate::layout::impingements(plan.vehicle()) {
+        let angle = found.angle_rad.to_degrees();
+        list.push(format!(
+            "the plume of {} meets {}, {angle:.0} deg off its axis and {:.2} m away",
+            found.thruster, found.surface, found.distance_m
+        ));
+    }
     if plan.scenario().mission.phases.iter().any(|phase| phase.unload == UnloadPolicy::Never) {
         list.push("a phase has no `unload`: what its wheels collect is not charged to propellant".to_owned());
     }

@@ -16,13 +16,13 @@ impl Performance {
     /// Nominal.
     #[must_use]
     pub fn nominal(propulsion: &Propulsion) -> Self {
-        Self(propulsion.thrusters.iter().map(|t| (t.thrust_n.nominal(), t.exhaust_speed.nominal())).collect())
+        Self(propulsion.thrusters.iter().map(|t| (t.thrust_n(), t.effective_speed_m_per_s())).collect())
     }
 
     /// In a draw.
     #[must_use]
     pub fn in_draw(propulsion: &Propulsion, draw: &Draw) -> Self {
-        Self(propulsion.thrusters.iter().map(|t| (t.thrust_n.in_draw(draw), t.exhaust_speed.in_draw(draw))).collect())
+        Self(propulsion.thrusters.iter().map(|t| (t.thrust_in_draw_n(draw), t.effective_speed_in_draw_m_per_s(draw))).collect())
     }
 }
 
@@ -52,7 +52,7 @@ impl Pricer {
     pub fn generators(propulsion: &Propulsion, centre_of_mass_m: &Vector3<f64>) -> Vec<Generator> {
         let one = |t: &crate::vehicle::Thruster| {
             let push = t.push.into_inner();
-            Generator::thruster(t.position_m, push, *centre_of_mass_m, t.thrust_n.nominal(), t.exhaust_speed.nominal())
+            Generator::thruster(t.position_m, push, *centre_of_mass_m, t.thrust_n(), t.effective_speed_m_per_s())
         };
         propulsion.thrusters.iter().map(one).collect()
     }

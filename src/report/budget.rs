@@ -118,9 +118,11 @@ fn requirement(checked: &Checked) -> Vec<String> {
     ]
 }
 
-fn requirements(budget: &Budget) -> String {
+pub(super) fn requirements_table(list: &[Checked]) -> String {
     let mut table = Table::new(&["requirement", "figure", "value", "bound", ""]);
-    budget.requirements.iter().for_each(|checked| table.push(requirement(checked)));
+    for checked in list {
+        table.push(requirement(checked));
+    }
     table.to_text()
 }
 
@@ -157,7 +159,7 @@ pub fn budget_text(scenario: &Scenario, budget: &Budget, phases: &[PhaseSummary]
     };
     section("Answer", answer(budget));
     if !budget.requirements.is_empty() {
-        section("Requirements", requirements(budget));
+        section("Requirements", requirements_table(&budget.requirements));
     }
     section("Propellant", ledger(budget));
     section("Drivers", drivers(budget));

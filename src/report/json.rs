@@ -4,10 +4,11 @@ use nalgebra::Vector3;
 use serde::Serialize;
 use serde_json::{Map, Value, json};
 
-use crate::layout::{LayoutCase, OutBecause, TravelEnd, Verdict};
+use crate::authority::NetForce;
+use crate::layout::{Advice, LayoutCase, OutBecause, Study, TravelEnd, Verdict};
 use crate::lifetime::{PhaseSummary, TypicalUnload};
 use crate::mission::{Bound, Scenario};
-use crate::montecarlo::{Budget, Distribution};
+use crate::montecarlo::{Budget, Checked, Distribution};
 use crate::propellant::ROWS;
 use crate::vehicle::Thruster;
 
@@ -79,15 +80,86 @@ fn cases(cases: &[LayoutCase]) -> Value {
             "wrench_rank": case.wrench_rank,
             "pure_torque": verdict(&case.pure_torque),
             "any_force": verdict(&case.any_force),
+            "worst_corner": case.worst_corner.as_ref().map(|corner| json!({
+                "centre_of_mass_m": xyz(&corner.centre_of_mass_m),
+                "guaranteed_N_m": corner.guaranteed_n_m,
+                "dearest_price_kg_per_N_m_s": corner.dearest_price,
+            })),
+            "reasons": case.reasons.iter().map(|reason| json!({
+                "axis": reason.axis,
+                "net_force": if reason.pure { "zero" } else { "any" },
+                "along": xyz(&reason.along),
+                "sentence": reason.sentence,
+            })).collect::<Value>(),
         })
     };
     cases.iter().map(one).collect()
 }
 
+fn advice(list: &[Advice]) -> Value {
+    let one = |advice: &Advice| {
+        json!({
+            "thrusters_out": advice.out,
+            "net_force": if advice.net == NetForce::Zero { "zero" } else { "any" },
+            "turn": advice.turn.as_ref().map(|t| json!({
+                "name": t.thruster, "push": xyz(&t.push), "angle_rad": t.angle_rad, "guaranteed_N_m": t.guaranteed_n_m,
+            })),
+            "cant": advice.cant.as_ref().map(|c| json!({
+                "group": c.group,
+                "ranges_rad": c.ranges_rad.iter().map(|(low, high)| json!([low, high])).collect::<Value>(),
+                "best_rad": c.best_rad,
+                "guaranteed_N_m": c.guaranteed_n_m,
+            })),
+            "add": advice.add.as_ref().map(|a| json!({
+                "beside": a.beside, "position_m": xyz(&a.position_m), "push": xyz(&a.push), "guaranteed_N_m": a.guaranteed_n_m,
+            })),
+        })
+    };
+    list.iter().map(one).collect()
+}
+
 /// `couplet/layout/1`.
 #[must_use]
-pub fn layout_json(list: &[LayoutCase], provenance: &Provenance) -> Value {
-    document("layout", provenance, object(json!({ "cases": cases(list) })))
+pub fn layout_json(study: &Study, checked: &[Checked], provenance: &Provenance) -> Value {
+    let dispersions: Value = study
+        .dispersions
+        .iter()
+        .map(|d| {
+            json!({
+                "axis": d.axis,
+                "torque_rss_N_m": xyz(&d.torque_rss),
+                "torque_worst_N_m": xyz(&d.torque_worst),
+                "force_rss_N": xyz(&d.force_rss),
+                "force_worst_N": xyz(&d.force_worst),
+            })
+        })
+        .collect();
+    let plumes: Value = study
+        .impingements
+        .iter()
+        .map(|i| json!({ "thruster": i.thruster, "surface": i.surface, "angle_rad": i.angle_rad, "distance_m": i.distance_m }))
+        .collect();
+    let wheels: Value = study
+        .wheels
+        .iter()
+        .map(|w| {
+            json!({
+                "wheel_out": w.out,
+                "every_direction_N_m_s": w.every_direction_n_m_s,
+                "weakest_direction": xyz(&w.weakest_direction),
+                "axes_N_m_s": w.axes_n_m_s,
+            })
+        })
+        .collect();
+    let body = json!({
+        "cases": cases(&study.cases),
+        "advice": advice(&study.advice),
+        "dispersions": dispersions,
+        "plume_impingements": plumes,
+        "wheels": wheels,
+        "requirements": requirements(checked),
+    });
+    document("layout", provenance, object(body))
 }
 
 fn phases(list: &[PhaseSummary]) -> Value {
@@ -177,8 +249,8 @@ fn attitude_total(budget: &Budget) -> Value {
     json!({ "nominal": total.nominal, "mean": total.mean, "sd": total.sd, "quantiles": quantiles })
 }
 
-fn requirements(budget: &Budget) -> Value {
-    let one = |checked: &crate::montecarlo::Checked| {
+fn requirements(list: &[Checked]) -> Value {
+    let one = |checked: &Checked| {
         let (bound, limit) = match checked.requirement.bound {
             Bound::AtMost(limit) => ("at_most", limit),
             Bound::AtLeast(limit) => ("at_least", limit),
@@ -193,7 +265,7 @@ fn requirements(budget: &Budget) -> Value {
             "unit": checked.requirement.figure.unit(),
         })
     };
-    budget.requirements.iter().map(one).collect()
+    list.iter().map(one).collect()
 }
 
 /// `couplet/budget/1`.
@@ -238,7 +310,7 @@ pub fn budget_json(
         "valve_cycles": cycles,
         "drivers": drivers,
         "wheel_fill": budget.wheel_fill,
-        "requirements": requirements(budget),
+        "requirements": requirements(&budget.requirements),
         "warnings": budget.warnings,
         "layout": { "cases": cases(&budget.layout) },
         "momentum": { "phases": phases(momentum) },

@@ -4,7 +4,9 @@ use std::fmt::Write;
 
 use super::table::Table;
 use super::words::{number, paragraph, vector};
-use crate::layout::{LayoutCase, OutBecause, TravelEnd, Verdict};
+use crate::authority::NetForce;
+use crate::layout::{LayoutCase, OutBecause, Study, TravelEnd, Verdict};
+use crate::montecarlo::Checked;
 
 /// What is out, in words.
 fn out(case: &LayoutCase) -> String {
@@ -86,7 +88,8 @@ pub(super) fn axes_table(case: &LayoutCase) -> Table {
 
 /// All cases as text: a matrix of the pure torque about each axis, then the worst case.
 #[must_use]
-pub fn layout_text(name: &str, cases: &[LayoutCase]) -> String {
+pub fn layout_text(name: &str, study: &Study, requirements: &[Checked]) -> String {
+    let cases = &study.cases;
     let mut text = paragraph("", "", &format!("Thruster layout of {name}: torque about the centre of mass, body frame, nominal thrust."));
     for case in cases.iter().filter(|case| case.out_because == OutBecause::None) {
         let at = format!("Intact, {} (centre of mass {} m)", end(case.travel_end), vector(&case.centre_of_mass_m, 3));
@@ -94,6 +97,15 @@ pub fn layout_text(name: &str, cases: &[LayoutCase]) -> String {
         text.push_str(&verdict_text(&case.pure_torque, "Pure torque"));
         text.push_str(&verdict_text(&case.any_force, "Torque with net force"));
         text.push_str(&axes_table(case).to_text());
+        if let Some(corner) = &case.worst_corner {
+            let torque = number(corner.guaranteed_n_m, 3);
+            let at = vector(&corner.centre_of_mass_m, 3);
+            let dearest = price(corner.dearest_price);
+            let text_of = format!(
+                "Worst corner of the stated centre-of-mass box: {torque} N m with net force, at {at} m; dearest {dearest} g per N m s. Pure torque does not depend on it."
+            );
+            text.push_str(&paragraph("  ", "  ", &text_of));
+        }
     }
     text.push_str(&super::words::heading("Every case: most pure torque about each axis, N m (— none)"));
     let mut matrix = Table::new(&["case", "tank", "+x", "-x", "+y", "-y", "+z", "-z", "everywhere"]);
@@ -107,7 +119,91 @@ pub fn layout_text(name: &str, cases: &[LayoutCase]) -> String {
     text.push_str(&matrix.to_text());
     let lost = cases.iter().filter(|case| !case.pure_torque.every_direction).count();
     let _ = writeln!(text, "\n  {lost} of {} cases lack pure torque in some direction.", cases.len());
+    text.push_str(&reasons(cases));
+    text.push_str(&advice(study));
+    text.push_str(&dispersions(study));
+    text.push_str(&plumes(study));
+    text.push_str(&wheels(study));
+    if !requirements.is_empty() {
+        text.push_str(&super::words::heading("Requirements on the layout"));
+        text.push_str(&super::budget::requirements_table(requirements));
+    }
     text
+}
+
+/// Reasons with a full tank, and those that arise only with an empty one.
+fn reasons(cases: &[LayoutCase]) -> String {
+    let mut seen: Vec<(&[String], &str)> = Vec::new();
+    let mut text = String::new();
+    for (case, reason) in cases.iter().flat_map(|case| case.reasons.iter().map(move |reason| (case, reason))) {
+        let which = (case.thrusters_out.as_slice(), reason.axis);
+        if seen.contains(&which) {
+            continue;
+        }
+        seen.push(which);
+        if text.is_empty() {
+            text.push_str(&super::words::heading("Why"));
+        }
+        text.push_str(&paragraph("  • ", "    ", &reason.sentence));
+    }
+    text
+}
+
+fn advice(study: &Study) -> String {
+    let mut text = String::new();
+    for advice in &study.advice {
+        let force = if advice.net == NetForce::Zero { "pure torque" } else { "torque with net force" };
+        let once = if advice.out.is_empty() { String::new() } else { format!(" with {} out", advice.out.join(" ")) };
+        text.push_str(&super::words::heading(&format!("Mends that give {force} in every direction{once}")));
+        advice.sentences().iter().for_each(|sentence| text.push_str(&paragraph("  • ", "    ", sentence)));
+    }
+    text
+}
+
+fn dispersions(study: &Study) -> String {
+    if study.dispersions.is_empty() {
+        return String::new();
+    }
+    let mut table = Table::new(&["command", "torque rss", "torque worst", "force rss", "force worst"]);
+    for d in &study.dispersions {
+        let most = |v: &nalgebra::Vector3<f64>| number(v.amax(), 3);
+        table.push(vec![d.axis.to_owned(), most(&d.torque_rss), most(&d.torque_worst), most(&d.force_rss), most(&d.force_worst)]);
+    }
+    let note =
+        "Largest component about or along a body axis of what misalignment and unequal thrust add to 1 N m of pure torque: N m and N.";
+    format!("{}{}{}", super::words::heading("Parasitic torque and force"), table.to_text(), paragraph("  ", "  ", note))
+}
+
+fn plumes(study: &Study) -> String {
+    if study.impingements.is_empty() {
+        return String::new();
+    }
+    let mut text = super::words::heading("Facets inside plumes");
+    for i in &study.impingements {
+        let angle = i.angle_rad.to_degrees();
+        text.push_str(&paragraph(
+            "  • ",
+            "    ",
+            &format!(
+                "{} meets {}: nearest edge {angle:.0} deg off the plume's axis, centre {:.2} m away",
+                i.thruster, i.surface, i.distance_m
+            ),
+        ));
+    }
+    text
+}
+
+fn wheels(study: &Study) -> String {
+    if study.wheels.is_empty() {
+        return String::new();
+    }
+    let mut table = Table::new(&["wheels", "every direction", "weakest along", "x", "y", "z"]);
+    for case in &study.wheels {
+        let out = case.out.as_ref().map_or_else(|| "all".to_owned(), |name| format!("{name} out"));
+        let [x, y, z] = case.axes_n_m_s.map(|h| number(h, 3));
+        table.push(vec![out, number(case.every_direction_n_m_s, 3), vector(&case.weakest_direction, 2), x, y, z]);
+    }
+    format!("{}{}", super::words::heading("Momentum that the wheels hold, N m s"), table.to_text())
 }
 
 /// At most 18 characters.

@@ -13,6 +13,8 @@ pub struct MassProperties {
     pub mass_kg: Uncertain,
     /// Centre of mass in the body frame, m.
     pub centre_of_mass_m: [Uncertain; 3],
+    /// Half widths of the box in which the centre of mass is stated to lie, m.
+    pub centre_of_mass_box_m: Option<Vector3<f64>>,
     /// Elements xx, yy, zz, xy, xz, yz of the inertia matrix about the centre of mass, kg·m².
     pub inertia_kg_m2: [Uncertain; 6],
 }
@@ -60,6 +62,7 @@ impl MassProperties {
         Some(Self {
             mass_kg: parameters.register("spacecraft.dry_mass", "kg", mass?),
             centre_of_mass_m: register_triple("spacecraft.centre_of_mass", "m", written.centre_of_mass.0, parameters),
+            centre_of_mass_box_m: written.centre_of_mass_box.map(|half| Vector3::from(half.0.map(f64::abs))),
             inertia_kg_m2,
         })
     }
@@ -119,6 +122,7 @@ mod tests {
         let dry = MassProperties {
             mass_kg: Uncertain::fixed(3.0),
             centre_of_mass_m: [zero; 3],
+            centre_of_mass_box_m: None,
             inertia_kg_m2: [tiny, tiny, tiny, zero, zero, zero],
         };
         let both = dry.with_propellant(3.0, &Vector3::new(0.0, 0.0, 2.0));

@@ -45,10 +45,38 @@ pub struct Thruster {
     pub position_m: Vector3<f64>,
     /// Direction in which it pushes the spacecraft, body frame.
     pub push: UnitVector3<f64>,
-    /// Thrust, N.
-    pub thrust_n: Uncertain,
+    /// Thrust before the loss to the plume, N.
+    thrust: Uncertain,
+    /// Share of the thrust that is left where the plume meets the spacecraft.
+    left: f64,
     /// Steady exhaust speed.
     pub exhaust_speed: ExhaustSpeed,
+}
+
+impl Thruster {
+    /// Nominal thrust on the spacecraft, N.
+    #[must_use]
+    pub fn thrust_n(&self) -> f64 {
+        self.thrust.nominal() * self.left
+    }
+
+    /// Thrust on the spacecraft in a draw, N.
+    #[must_use]
+    pub fn thrust_in_draw_n(&self, draw: &Draw) -> f64 {
+        self.thrust.in_draw(draw) * self.left
+    }
+
+    /// Nominal impulse on the spacecraft per propellant, m/s: the exhaust speed less what the plume loses.
+    #[must_use]
+    pub fn effective_speed_m_per_s(&self) -> f64 {
+        self.exhaust_speed.nominal() * self.left
+    }
+
+    /// The same in a draw, m/s.
+    #[must_use]
+    pub fn effective_speed_in_draw_m_per_s(&self, draw: &Draw) -> f64 {
+        self.exhaust_speed.in_draw(draw) * self.left
+    }
 }
 
 /// What valves can do, and what a pulse loses.
@@ -86,6 +114,12 @@ pub struct Propulsion {
     pub thrusters: Vec<Thruster>,
     /// Pulses.
     pub pulses: PulseLimits,
+    /// Half-angle of the cone in which a push lies, rad.
+    pub alignment_rad: f64,
+    /// How far a thrust may lie from nominal, as a share.
+    pub thrust_tolerance: f64,
+    /// Half-angle, rad, and range, m, of a plume.
+    pub plume: Option<(f64, f64)>,
     /// Whether an unload may leave a net force.
     pub net_force: NetForceChoice,
     /// Pulses that one thruster is qualified for.
@@ -113,8 +147,29 @@ impl Propulsion {
             thrusters.extend(thruster(index, written, shared_written, shared_thrust, shared_speed, parameters, faults));
         }
         let qualified_pulses = spec.propulsion.qualified_pulses.map(|pulses| pulses.0);
+        let most = std::f64::consts::FRAC_PI_2;
+        let alignment = shared_written.alignment.map_or(0.0, |angle| angle.0);
+        let alignment = faults.within("propulsion.alignment", alignment, 0.0, most, "an angle in rad");
+        let tolerance = shared_written.thrust_tolerance.map_or(0.0, |share| share.0);
+        let tolerance = faults.within("propulsion.thrust_tolerance", tolerance, 0.0, 1.0, "a share of the thrust");
+        let plume = match &shared_written.plume {
+            Some(plume) => {
+                let half_angle = faults.within("propulsion.plume.half_angle", plume.half_angle.0, 0.0, most, "an angle in rad");
+                let range = faults.positive("propulsion.plume.range", plume.range.0, "a length");
+                half_angle.zip(range)
+            }
+            None => None,
+        };
         let net_force = spec.propulsion.net_force;
-        Some(Self { thrusters, pulses: pulses?, net_force, qualified_pulses })
+        Some(Self {
+            thrusters,
+            pulses: pulses?,
+            alignment_rad: alignment?,
+            thrust_tolerance: tolerance?,
+            plume,
+            net_force,
+            qualified_pulses,
+        })
     }
 }
 
@@ -196,12 +251,15 @@ fn thruster(
     if !here && shared.isp.is_none() && shared.exhaust_speed.is_none() {
         faults.push(&at, "expected `isp` or `exhaust_speed`, here or under `propulsion`", "add `isp: 215 s` under `propulsion`");
     }
+    let loss = written.plume_loss.map_or(0.0, |loss| loss.0);
+    let loss = faults.within(&format!("{at}.plume_loss"), loss, 0.0, 0.99, "a share of the thrust");
     Some(Thruster {
         name: written.name.clone(),
         string: written.string.clone().unwrap_or_else(|| written.name.clone()),
         position_m: Vector3::from(written.position.0),
         push: push?,
-        thrust_n: thrust_n?,
+        thrust: thrust_n?,
+        left: 1.0 - loss?,
         exhaust_speed: speed?,
     })
 }
