@@ -229,3 +229,38 @@ fn a_study_has_advice_only_where_it_is_needed() {
     assert_eq!(study.advice[0].out, ["A5"]);
     assert!(study.cases.iter().any(|case| matches!(&case.out_because, OutBecause::String(name) if name == "B")));
 }
+
+/// NASA Tech Briefs NPO-49578 claims layouts of eight thrusters that turn or push either way along any axis with two thrusters
+/// at a time, without parasitic force or torque while the centre of mass is centred (G-07; it shows no positions, these are
+/// ours: four along y on the corners of a square, four canted in the plane of x and z).
+#[test]
+fn eight_thrusters_two_at_a_time() {
+    let half = 0.5_f64.sqrt();
+    let jets = [
+        ([0.5, 0.0, 0.5], [0.0, 1.0, 0.0]),
+        ([-0.5, 0.0, -0.5], [0.0, 1.0, 0.0]),
+        ([0.5, 0.0, -0.5], [0.0, -1.0, 0.0]),
+        ([-0.5, 0.0, 0.5], [0.0, -1.0, 0.0]),
+        ([-0.5, 0.0, 0.5], [half, 0.0, half]),
+        ([0.5, 0.0, -0.5], [-half, 0.0, -half]),
+        ([-0.5, 0.0, -0.5], [half, 0.0, -half]),
+        ([0.5, 0.0, 0.5], [-half, 0.0, half]),
+    ]
+    .map(|(r, d)| (Vector3::from(r), Vector3::from(d)));
+    let generators = jets.map(|(r, d)| Generator::thruster(r, d, Vector3::zeros(), 1.0, 2000.0));
+    let prices = couplet::authority::PriceMap::new(&generators, NetForce::Zero);
+    let authority = Authority::new(&generators, NetForce::Zero);
+    assert!(authority.every_direction() && authority.wrench_rank == 6);
+    for (axis, direction) in couplet::layout::AXES {
+        let direction = Vector3::from(direction);
+        let firing = prices.allocate(&direction).unwrap();
+        assert_eq!(firing.iter().filter(|level| **level > 1e-9).count(), 2, "{axis}");
+        // A push along the axis: two thrusters whose sum points there, without torque.
+        let pairs = (0..8).flat_map(|i| (i + 1..8).map(move |j| (i, j)));
+        let pushes = pairs.filter(|(i, j)| {
+            let (force, torque) = (generators[*i].force + generators[*j].force, generators[*i].torque + generators[*j].torque);
+            force.norm() > 0.1 && force.normalize().dot(&direction) > 1.0 - 1e-9 && torque.norm() < 1e-9
+        });
+        assert!(pushes.count() >= 1, "{axis}");
+    }
+}

@@ -42,7 +42,11 @@ fn answer(budget: &Budget) -> String {
     let life = budget.life_s.iter().find(|(p, _)| (p - 0.95).abs() < 1e-9).and_then(|(_, life)| *life);
     let life = life.map_or_else(
         || " At least 95 % of lifetimes never run dry.".to_owned(),
-        |life| format!(" 95 % of lifetimes last {} years or longer.", number(life / SECONDS_PER_YEAR, 3)),
+        // A rate carried on for centuries says nothing but that the tank is large.
+        |life| match life / SECONDS_PER_YEAR {
+            years if years > 100.0 => " 95 % of lifetimes could go on for more than 100 years at this rate.".to_owned(),
+            years => format!(" 95 % of lifetimes last {} years or longer.", number(years, 3)),
+        },
     );
     // A lower limit of 99.97 % must not read as certainty.
     let fine = |share: f64| format!("{:.3} %", share * 100.0);

@@ -119,6 +119,7 @@ pub fn layout_text(name: &str, study: &Study, requirements: &[Checked]) -> Strin
     text.push_str(&matrix.to_text());
     let lost = cases.iter().filter(|case| !case.pure_torque.every_direction).count();
     let _ = writeln!(text, "\n  {lost} of {} cases lack pure torque in some direction.", cases.len());
+    text.push_str(&worst(cases));
     text.push_str(&reasons(cases));
     text.push_str(&advice(study));
     text.push_str(&dispersions(study));
@@ -131,13 +132,34 @@ pub fn layout_text(name: &str, study: &Study, requirements: &[Checked]) -> Strin
     text
 }
 
+/// The weakest of the cases that keep torque in every direction, under the condition that the intact layout fulfils.
+fn worst(cases: &[LayoutCase]) -> String {
+    let pure = cases.iter().any(|case| case.out_because == OutBecause::None && case.pure_torque.every_direction);
+    let verdict = |case: &LayoutCase| if pure { case.pure_torque.clone() } else { case.any_force.clone() };
+    let whole = cases.iter().filter(|case| verdict(case).every_direction);
+    let weakest = whole.min_by(|a, b| verdict(a).guaranteed_n_m.total_cmp(&verdict(b).guaranteed_n_m));
+    let what = if pure { "pure torque" } else { "torque with net force" };
+    let Some(case) = weakest else { return paragraph("  ", "  ", "No case has torque in every direction.") };
+    let (torque, along) = (verdict(case).guaranteed_n_m, verdict(case).weakest_direction);
+    let sentence = format!(
+        "Of the cases with {what} in every direction the weakest is {}, {}: {} N m, along {}.",
+        out(case),
+        end(case.travel_end),
+        number(torque, 3),
+        vector(&along, 2)
+    );
+    paragraph("  ", "  ", &sentence)
+}
+
 /// Reasons with a full tank, and those that arise only with an empty one.
 fn reasons(cases: &[LayoutCase]) -> String {
     let mut seen: Vec<(&[String], &str)> = Vec::new();
     let mut text = String::new();
     for (case, reason) in cases.iter().flat_map(|case| case.reasons.iter().map(move |reason| (case, reason))) {
         let which = (case.thrusters_out.as_slice(), reason.axis);
-        if seen.contains(&which) {
+        // What the intact layout lacks, it lacks with thrusters out as well.
+        let intact: &[String] = &[];
+        if seen.contains(&which) || seen.contains(&(intact, reason.axis)) {
             continue;
         }
         seen.push(which);
