@@ -264,3 +264,41 @@ fn eight_thrusters_two_at_a_time() {
         assert!(pushes.count() >= 1, "{axis}");
     }
 }
+
+/// By hand: arms along one line, one thruster, and thrusters through the centre of mass.
+#[test]
+fn few_and_degenerate_thrusters_get_a_verdict() {
+    let verdict = |list: &str| {
+        let vehicle = scenario(SMALL, &[&format!("thrusters=[{list}]"), "mission.phases=[{name: only, duration: 1 d}]"]).vehicle;
+        (all_cases(&vehicle), vehicle)
+    };
+    // All arms along x: no torque about x either way, for any firing.
+    let planar = "{name: a, position: 1 0 0 m, push: 0 0 1}, {name: b, position: -1 0 0 m, push: 0 0 1}, {name: c, position: 1 0 0 m, push: 0 0 -1}, \
+                  {name: d, position: -1 0 0 m, push: 0 0 -1}";
+    let (cases, _) = verdict(planar);
+    let intact = &cases[0];
+    assert_eq!((intact.torque_rank, intact.pure_torque.missing.len()), (1, 2));
+    assert!(intact.any_force.missing.iter().all(|m| m.y.abs() < 1e-12));
+    close(intact.pure_torque.axes[2].most_n_m, 2.0, 1e-12);
+    assert!(intact.reasons.iter().any(|reason| reason.axis == "+x"));
+    // One thruster, and none once it is out.
+    let (cases, _) = verdict("{name: a, position: 1 0 0 m, push: 0 0 1}");
+    assert_eq!(cases.len(), 4);
+    let none = case(&cases, &["a"]);
+    assert!(
+        none.torque_rank == 0 && none.pure_torque.guaranteed_n_m.abs() < 1e-15 && none.any_force.axes.iter().all(|a| a.price.is_none())
+    );
+    assert!(none.reasons[0].sentence.contains("none is left with an arm"), "{}", none.reasons[0].sentence);
+    // Through the centre of mass: no arm.
+    let (cases, _) = verdict("{name: a, position: 0 0 1 m, push: 0 0 1}, {name: b, position: 0 0 1 m, push: 0 0 1}");
+    assert_eq!(cases[0].torque_rank, 0);
+}
+
+/// A tenth of the thrust lost to the plume is a tenth of the torque, and the price rises by 1/0.9 for that thruster.
+#[test]
+fn plume_loss_counts_in_torque_and_price() {
+    let cases = intact(&scenario(SMALL, &["thrusters[X1].plume_loss=10 %", "thrusters[X2].plume_loss=10 %"]).vehicle);
+    let axis = &cases[0].pure_torque.axes[0];
+    close(axis.most_n_m, 3.6, 1e-12);
+    close(axis.price.unwrap(), 0.5 / 1500.0 / 0.9, 1e-12);
+}

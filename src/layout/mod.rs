@@ -66,6 +66,8 @@ pub struct Verdict {
     pub weakest_direction: Vector3<f64>,
     /// Direction of the dearest angular impulse and its price, kg/(N·m·s); `None` if some cannot be given.
     pub dearest: Option<(Vector3<f64>, f64)>,
+    /// Unit vectors across all the torque there is: the layout turns the spacecraft neither way about them.
+    pub missing: Vec<Vector3<f64>>,
     /// The six signed axes.
     pub axes: Vec<AxisTorque>,
 }
@@ -271,6 +273,7 @@ fn verdict(capability: &Capability, thrusters: &[Thruster]) -> Verdict {
         guaranteed_n_m: authority.guaranteed(),
         weakest_direction: authority.weakest_direction(),
         dearest: capability.price.dearest(),
+        missing: authority.missing.clone(),
         axes: axes.to_vec(),
     }
 }

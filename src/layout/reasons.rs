@@ -9,7 +9,7 @@ use crate::vehicle::Thruster;
 /// Why there is no torque about one signed axis.
 #[derive(Debug, Clone, PartialEq)]
 pub struct Reason {
-    /// The axis.
+    /// The axis, or `oblique` where all axes are served and a direction between them is not.
     pub axis: &'static str,
     /// Whether it is the pure torque that is missing (else torque with any force).
     pub pure: bool,
@@ -77,7 +77,19 @@ pub(super) fn reasons(case: &Case, because: &OutBecause, generators: &[Generator
         );
         found.push(Reason { axis, pure: true, along, net_impulse: Some(push), sentence });
     }
+    if found.is_empty() {
+        found.extend(oblique(case, &once));
+    }
     found
+}
+
+/// The reason where every signed axis is served and some direction between them is not.
+fn oblique(case: &Case, once: &str) -> Option<Reason> {
+    let any = case.any_force.price.rays.first();
+    let (ray, pure) = any.map(|ray| (ray, false)).or_else(|| case.pure_torque.price.rays.first().map(|ray| (ray, true)))?;
+    let what = if pure { "couple" } else { "firing" };
+    let sentence = format!("no {what} turns about {}{once}, though every axis is served", named(ray));
+    Some(Reason { axis: "oblique", pure, along: *ray, net_impulse: None, sentence })
 }
 
 /// No torque even with a net force: either nothing is on that side, or what is turns about another axis as well.

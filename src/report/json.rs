@@ -65,6 +65,7 @@ fn verdict(verdict: &Verdict) -> Value {
         "weakest_direction": xyz(&verdict.weakest_direction),
         "dearest_direction": verdict.dearest.map(|(direction, _)| xyz(&direction)),
         "dearest_price_kg_per_N_m_s": verdict.dearest.map(|(_, price)| price),
+        "missing_directions": verdict.missing.iter().map(xyz).collect::<Value>(),
         "axes": axes,
     })
 }

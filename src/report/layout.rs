@@ -63,9 +63,12 @@ pub(super) fn verdict_text(verdict: &Verdict, what: &str) -> String {
             vector(&verdict.weakest_direction, 2)
         )
     } else {
-        let missing: Vec<&str> = verdict.axes.iter().filter(|axis| axis.price.is_none()).map(|axis| axis.axis).collect();
-        let axes = if missing.is_empty() { "an oblique direction".to_owned() } else { missing.join(", ") };
-        format!("{what}: NOT in every direction; none along {axes}.")
+        let unserved: Vec<&str> = verdict.axes.iter().filter(|axis| axis.price.is_none()).map(|axis| axis.axis).collect();
+        let axes = if unserved.is_empty() { "some oblique directions".to_owned() } else { unserved.join(", ") };
+        let missing: Vec<String> = verdict.missing.iter().map(|direction| vector(direction, 2)).collect();
+        let neither =
+            if missing.is_empty() || missing.len() == 3 { String::new() } else { format!(" Neither way about {}.", missing.join(", ")) };
+        format!("{what}: NOT in every direction; none along {axes}.{neither}")
     };
     paragraph("  ", "    ", &text)
 }
