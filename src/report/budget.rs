@@ -141,7 +141,7 @@ fn valves(budget: &Budget, scenario: &Scenario) -> String {
 
 const CAUTIONS: [&str; 3] = [
     "Preliminary design figures from models with stated assumptions; they replace neither the analyses nor the margins that your mission's standards ask for, and a qualified review decides.",
-    "Facets do not shade one another; propellant slosh, flexible modes and plume impingement are left out.",
+    "Facets do not shade one another; propellant slosh, flexible modes and the forces of plumes on facets are left out.",
     "Hydrazine and other propellants are toxic, and tanks are pressurised: loading and handling belong to trained crews under the range's safety rules.",
 ];
 

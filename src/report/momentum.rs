@@ -24,17 +24,23 @@ pub fn momentum_table(phases: &[PhaseSummary]) -> Table {
     table
 }
 
+/// Empty for the sum of all sources, whose peaks do not fall together.
+fn peak_text(peak: f64) -> String {
+    if peak.is_nan() {
+        String::new()
+    } else if peak > 0.0 {
+        format!("{peak:.2e}")
+    } else {
+        "0".to_owned()
+    }
+}
+
 /// One phase as text.
 pub(super) fn phase_text(phase: &PhaseSummary) -> String {
     let mut table = Table::new(&["source", "peak torque N m", "secular N m s per day", "size"]);
     let all = ("all", f64::NAN, phase.secular_n_m_s_per_day);
     for (source, peak, secular) in phase.sources.iter().chain([&all]) {
-        table.push(vec![
-            plain(source),
-            if peak.is_nan() { String::new() } else { format!("{peak:.2e}") },
-            vector(secular, 3),
-            format!("{:.3}", secular.norm()),
-        ]);
+        table.push(vec![plain(source), peak_text(*peak), vector(secular, 3), format!("{:.3}", secular.norm())]);
     }
     let wheels = phase
         .wheel_envelope_n_m_s
