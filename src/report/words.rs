@@ -24,7 +24,7 @@ pub(super) fn number(value: f64, digits: usize) -> String {
 
 /// A share in percent.
 pub(super) fn percent(share: f64) -> String {
-    format!("{:.1} %", share * 100.0)
+    format!("{:.2} %", share * 100.0)
 }
 
 /// A vector with this many decimals.
