@@ -7,7 +7,7 @@ use nalgebra::Vector3;
 use super::epoch::Epoch;
 
 /// Coefficients of the 14th generation, 1900 to 2030. Source: IAGA, doi 10.5281/zenodo.14012302.
-static TABLE_TEXT: &str = include_str!("../../data/igrf14.shc");
+static TABLE_TEXT: &str = include_str!("igrf14.shc");
 const MAX_DEGREE: usize = 13;
 /// Mean radius of the Earth by which the coefficients are defined, m.
 const REFERENCE_RADIUS_M: f64 = 6_371_200.0;
