@@ -24,7 +24,8 @@ fn refused(faults: &[Diagnostic], document: Option<&Document>) -> Failure {
 pub(super) fn load(common: &Common) -> Result<Loaded, Failure> {
     let document = Document::load(&common.file, &common.overlays, &common.settings).map_err(|faults| refused(&faults, None))?;
     let spec = read(&document).map_err(|faults| refused(&faults, Some(&document)))?;
-    let mut scenario = Scenario::new(&spec).map_err(|faults| refused(&faults, Some(&document)))?;
+    let folder = common.file.parent().unwrap_or_else(|| std::path::Path::new(""));
+    let mut scenario = Scenario::in_folder(&spec, folder).map_err(|faults| refused(&faults, Some(&document)))?;
     scenario.settings.seed = common.seed.unwrap_or(scenario.settings.seed);
     scenario.settings.lifetimes = common.lifetimes.unwrap_or(scenario.settings.lifetimes);
     let provenance = Provenance {

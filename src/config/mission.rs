@@ -3,7 +3,9 @@
 use schemars::JsonSchema;
 use serde::Deserialize;
 
+use super::attitude::Attitude;
 use super::leaf::{Quantity, SpreadQuantity, SpreadTriple, Triple};
+use super::orbit::Orbit;
 use crate::units::kind;
 
 /// When and where the spacecraft flies, and what it does.
@@ -18,32 +20,6 @@ pub struct Mission {
     pub phases: Vec<Phase>,
 }
 
-/// An orbit about the Earth. Give its size by `altitude`, by `perigee_altitude` and `apogee_altitude`, or by `semi_major_axis` and `eccentricity`.
-#[derive(Debug, Clone, Deserialize, JsonSchema)]
-#[serde(deny_unknown_fields)]
-pub struct Orbit {
-    /// Altitude of a circular orbit above the equatorial radius, such as `600 km`.
-    pub altitude: Option<Quantity<kind::Length>>,
-    /// Altitude of the perigee above the equatorial radius.
-    pub perigee_altitude: Option<Quantity<kind::Length>>,
-    /// Altitude of the apogee above the equatorial radius.
-    pub apogee_altitude: Option<Quantity<kind::Length>>,
-    /// Semi-major axis, such as `26560 km`.
-    pub semi_major_axis: Option<Quantity<kind::Length>>,
-    /// Eccentricity, 0 to below 1. Only with `semi_major_axis`; default 0.
-    pub eccentricity: Option<Quantity<kind::Number>>,
-    /// Inclination to the equator, such as `63.4 deg`; left out where `local_time` makes the orbit Sun-synchronous.
-    pub inclination: Option<Quantity<kind::Angle>>,
-    /// Mean local time of the ascending node, such as `10.5 h`: the orbit is Sun-synchronous and its inclination follows.
-    pub local_time: Option<Quantity<kind::Time>>,
-    /// Right ascension of the ascending node at the start of the mission. Default: 0.
-    pub ascending_node: Option<Quantity<kind::Angle>>,
-    /// Argument of perigee at the start of the mission. Default: 0.
-    pub argument_of_perigee: Option<Quantity<kind::Angle>>,
-    /// Mean anomaly at the start of the mission. Default: 0.
-    pub mean_anomaly: Option<Quantity<kind::Angle>>,
-}
-
 /// A stretch of the mission with one orbit, attitude and unload policy.
 #[derive(Debug, Clone, Deserialize, JsonSchema)]
 #[serde(deny_unknown_fields)]
@@ -54,7 +30,7 @@ pub struct Phase {
     pub duration: Quantity<kind::Time>,
     /// Orbit of this phase. Default: `mission.orbit`.
     pub orbit: Option<Orbit>,
-    /// Attitude. Default: nadir-pointing without bias.
+    /// Attitude. Default: z to the centre of the body, y against the orbit normal, without bias.
     #[serde(default)]
     pub attitude: Attitude,
     /// When the wheels are unloaded. Default: never.
@@ -62,14 +38,6 @@ pub struct Phase {
     /// What else takes propellant in this phase.
     #[serde(default)]
     pub events: Vec<Event>,
-}
-
-/// Nadir-pointing attitude: z to the centre of the Earth, y against the orbit normal, x completing (along the velocity on a circular orbit).
-#[derive(Debug, Clone, Default, Deserialize, JsonSchema)]
-#[serde(deny_unknown_fields)]
-pub struct Attitude {
-    /// Constant rotation of the body from nadir-pointing, small angles about x, y, z, such as `0 1.5 0 ± 0.2 deg`. Default: zero.
-    pub bias: Option<SpreadTriple<kind::Angle>>,
 }
 
 /// When the wheels are unloaded: give `every` or `at_fill`.
@@ -80,6 +48,20 @@ pub struct Unload {
     pub every: Option<Quantity<kind::Time>>,
     /// Share of the wheel envelope at which to unload, such as `70 %`.
     pub at_fill: Option<Quantity<kind::Number>>,
+    /// Where on the orbit. Default: `due`.
+    #[serde(default)]
+    pub timing: Timing,
+}
+
+/// Where on the orbit an unload that is due takes place.
+#[derive(Debug, Clone, Copy, Default, PartialEq, Eq, Deserialize, JsonSchema)]
+#[serde(rename_all = "snake_case")]
+pub enum Timing {
+    /// At once.
+    #[default]
+    Due,
+    /// At the point of the next orbit where it takes least propellant: in a turning attitude the same momentum meets different thrusters.
+    Cheapest,
 }
 
 /// One thing that takes propellant: give `rate_damping` or `slews`.
@@ -116,40 +98,6 @@ pub struct Slews {
     pub count: SpreadQuantity<kind::Number>,
 }
 
-/// Surroundings, and how well they are known.
-#[derive(Debug, Clone, Deserialize, JsonSchema)]
-#[serde(deny_unknown_fields)]
-pub struct Environment {
-    /// Solar activity, which sets the density of the air.
-    pub solar_activity: SolarActivity,
-    /// Factor on the density of the atmosphere model, such as `1 ± 0.15`. Default: 1.
-    pub density_factor: Option<SpreadQuantity<kind::Number>>,
-    /// Drag coefficient of the facets, such as `2.2 ± 0.2`. Default: 2.2.
-    pub drag_coefficient: Option<SpreadQuantity<kind::Number>>,
-}
-
-/// Solar activity: give `level` or `f107`.
-#[derive(Debug, Clone, Deserialize, JsonSchema)]
-#[serde(deny_unknown_fields)]
-pub struct SolarActivity {
-    /// Reference level of ECSS-E-ST-10-04: low, moderate or high.
-    pub level: Option<ActivityLevel>,
-    /// Solar radio flux F10.7 in solar flux units, constant over the mission, such as `90 .. 190`.
-    pub f107: Option<SpreadQuantity<kind::Number>>,
-}
-
-/// Reference level of solar activity.
-#[derive(Debug, Clone, Copy, PartialEq, Eq, Deserialize, JsonSchema)]
-#[serde(rename_all = "snake_case")]
-pub enum ActivityLevel {
-    /// F10.7 65, Ap 0.
-    Low,
-    /// F10.7 140, Ap 15.
-    Moderate,
-    /// F10.7 250, Ap 45.
-    High,
-}
-
 /// How the budget is made.
 #[derive(Debug, Clone, Default, Deserialize, JsonSchema)]
 #[serde(deny_unknown_fields)]
@@ -165,13 +113,15 @@ pub struct Budget {
     /// How finely the mission is simulated. Default: `default`.
     #[serde(default)]
     pub resolution: ResolutionChoice,
+    /// How far steps and strata of the default resolution may put secular and cyclic momentum off, `0.1 %` to `20 %`. Default: `1 %`.
+    pub tolerance: Option<Quantity<kind::Number>>,
 }
 
 /// How finely the mission is simulated.
 #[derive(Debug, Clone, Copy, Default, PartialEq, Eq, Deserialize, JsonSchema)]
 #[serde(rename_all = "snake_case")]
 pub enum ResolutionChoice {
-    /// One unload stands for those of about a month.
+    /// As finely as `tolerance` asks: one unload stands for those of some weeks.
     #[default]
     Default,
     /// Every unload is simulated.

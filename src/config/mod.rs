@@ -6,16 +6,19 @@
 
 #![deny(clippy::expect_used, clippy::indexing_slicing)]
 
+mod attitude;
 mod choose;
 mod decode;
 mod diagnostic;
 mod document;
+mod environment;
 mod leaf;
 mod long_form;
 mod mission;
 mod nearest;
 mod node;
 mod offsets;
+mod orbit;
 mod overlay;
 mod path;
 mod reference;
@@ -30,19 +33,21 @@ mod spec;
 mod syntax;
 mod walk;
 
+pub use attitude::{Attitude, Direction, Mix, Part, Sky, Survey};
 pub use decode::decode;
 pub use diagnostic::{Diagnostic, Mark, Related, Severity, Site};
 pub use document::Document;
+pub use environment::{Accommodation, ActivityLevel, Atmosphere, BodyLight, Cycle, Environment, SolarActivity, Wind};
 pub use leaf::{Quantity, SpreadQuantity, SpreadTriple, Triple};
-pub use mission::{
-    ActivityLevel, Attitude, Axis, Budget, Environment, Event, Figure, Mission, Orbit, Phase, RateDamping, Requirement, ResolutionChoice,
-    Slews, SolarActivity, Unload,
-};
+pub use mission::{Axis, Budget, Event, Figure, Mission, Phase, RateDamping, Requirement, ResolutionChoice, Slews, Timing, Unload};
 pub use nearest::{did_you_mean, known, nearest};
+pub use orbit::{About, LagrangePoint, Orbit, OwnBody, Stationary};
 pub use path::{Path, Segment};
 pub use reference::reference;
 pub use render::{render_all, sort, to_json};
 pub use source::{Place, Source};
-pub use spacecraft::{Material, NetForceChoice, Plume, Propulsion, PulsePerformance, Spacecraft, Surface, Tank, Thruster, Wheel, Wheels};
+pub use spacecraft::{
+    Material, NetForceChoice, Plume, Propulsion, PulsePerformance, Shaded, Spacecraft, Surface, Tank, Thruster, Wheel, Wheels,
+};
 pub use spec::{Spec, read, schema};
 pub use walk::{Leaf, check_structure};

@@ -63,6 +63,20 @@ pub struct Surface {
     pub both_sides: bool,
     /// Body axis about which the facet turns so that its normal follows the Sun, such as `0 1 0`. Default: fixed.
     pub follows_sun_about: Option<Triple<kind::Number>>,
+    /// Another surface that takes the sunlight from it. Default: none; facets hide nothing from one another by themselves.
+    pub shaded: Option<Shaded>,
+}
+
+/// Where another surface takes the sunlight from a facet.
+#[derive(Debug, Clone, Deserialize, JsonSchema)]
+#[serde(deny_unknown_fields)]
+pub struct Shaded {
+    /// Name of the surface that hides the Sun, one of `surfaces`.
+    pub by: String,
+    /// Least angle between the Sun and that surface's normal at which it does, such as `0 deg`. Default: `0 deg`.
+    pub from: Option<Quantity<kind::Angle>>,
+    /// Largest such angle, such as `50 deg`.
+    pub to: Quantity<kind::Angle>,
 }
 
 /// What all thrusters share, unless one says otherwise.

@@ -7,6 +7,8 @@ use crate::uncertain::{ParameterId, Uncertain};
 pub enum Factor {
     /// A parameter as it is.
     Parameter(ParameterId),
+    /// A parameter less its nominal value.
+    Deviation(ParameterId),
     /// A component of the centre of mass in the body frame, m.
     CentreOfMass(usize),
     /// An element of the inertia matrix, in the order xx, yy, zz, xy, xz, yz, kg·m².
@@ -49,6 +51,14 @@ pub struct Coefficient {
     pub factor: Option<Factor>,
     /// What multiplies it: 1 for a parameter, the value of a fixed quantity.
     pub scale: f64,
+}
+
+impl Coefficient {
+    /// The same quantity in a unit `1 / scale` times as large.
+    #[must_use]
+    pub fn times(self, scale: f64) -> Self {
+        Self { factor: self.factor, scale: self.scale * scale }
+    }
 }
 
 impl From<&Uncertain> for Coefficient {

@@ -4,25 +4,30 @@
 //! mass in the body frame, one per [`Feature`]; the total torque is linear in the features. Knows
 //! nothing of thrusters or wheels. One source of torque is one file.
 
+mod body_light;
 mod body_torque;
 mod dipole;
 mod drag;
 mod feature;
 mod gravity_gradient;
+mod molecules;
+mod optics;
 mod radiation;
 mod surroundings;
 
+pub use body_light::BodyLight;
 pub use body_torque::BodyTorque;
 pub use dipole::ResidualDipole;
 pub use drag::Drag;
 pub use feature::{Coefficient, Factor, Feature};
 pub use gravity_gradient::GravityGradient;
+pub use molecules::{PlateCoefficients, plate_coefficients};
 pub use radiation::Radiation;
 pub use surroundings::{Observer, Surroundings};
 
 use nalgebra::Vector3;
 
-use crate::mission::Scenario;
+use crate::mission::{Phase, Scenario};
 
 /// One source of disturbance torque.
 pub trait Source: Send + Sync {
@@ -32,19 +37,25 @@ pub trait Source: Send + Sync {
     /// The features whose torques [`Source::torques`] fills, in that order.
     fn features(&self) -> Vec<Feature>;
 
+    /// How many of the leading features the effect of an uncertain pointing bias is taken for.
+    fn first_order(&self) -> usize {
+        self.features().len()
+    }
+
     /// Torque of each feature, N·m per unit of the feature, body frame.
     ///
     /// `out` has the length of [`Source::features`] and is overwritten.
     fn torques(&self, surroundings: &Surroundings, out: &mut [Vector3<f64>]);
 }
 
-/// All sources of a scenario, in the order in which results list them.
+/// All sources in a phase of a scenario, in the order in which results list them; the same names in every phase.
 #[must_use]
-pub fn sources(scenario: &Scenario) -> Vec<Box<dyn Source>> {
+pub fn sources(scenario: &Scenario, phase: &Phase) -> Vec<Box<dyn Source>> {
     vec![
         Box::new(GravityGradient),
         Box::new(Radiation::new(&scenario.vehicle)),
-        Box::new(Drag::new(scenario)),
+        Box::new(BodyLight::new(scenario, phase)),
+        Box::new(Drag::new(scenario, phase)),
         Box::new(ResidualDipole::new(&scenario.vehicle)),
         Box::new(BodyTorque::new(&scenario.vehicle)),
     ]

@@ -2,10 +2,11 @@
 
 use nalgebra::Vector3;
 
-use super::{Coefficient, Factor, Feature, Source, Surroundings, force_features, with_arms};
-use crate::vehicle::{Surface, Vehicle};
+use super::optics::{Beam, Optics};
+use super::{Feature, Source, Surroundings};
+use crate::vehicle::Vehicle;
 
-/// Radiation pressure on the lit side of each facet; facets hide nothing from one another.
+/// Radiation pressure on the lit side of each facet; facets hide nothing from one another unless one is declared to.
 ///
 /// ```text
 /// F = −P A cosθ [(1 − ρs) ŝ + 2 (ρs cosθ + ρd / 3) n̂]
@@ -16,31 +17,14 @@ use crate::vehicle::{Surface, Vehicle};
 /// Applications, 8.6.4 (from memory).
 #[derive(Debug, Clone)]
 pub struct Radiation {
-    surfaces: Vec<Surface>,
-    /// Specular and diffuse share of each material.
-    optics: Vec<[Coefficient; 2]>,
+    optics: Optics,
 }
 
 impl Radiation {
     /// The facets of a vehicle.
     #[must_use]
     pub fn new(vehicle: &Vehicle) -> Self {
-        let optics = vehicle.materials.iter().map(|m| [Coefficient::from(&m.specular), Coefficient::from(&m.diffuse)]).collect();
-        Self { surfaces: vehicle.surfaces.clone(), optics }
-    }
-}
-
-/// Force and torque about the body origin.
-#[derive(Debug, Clone, Copy, Default)]
-struct Load {
-    force: Vector3<f64>,
-    torque: Vector3<f64>,
-}
-
-impl Load {
-    fn add(&mut self, force: Vector3<f64>, at: &Vector3<f64>) {
-        self.force += force;
-        self.torque += at.cross(&force);
+        Self { optics: Optics::new(vehicle) }
     }
 }
 
@@ -49,38 +33,18 @@ impl Source for Radiation {
         "radiation"
     }
 
-    /// The absorbing part, then the specular and the diffuse part of each material; each about the
-    /// body origin and per component of the centre of mass.
     fn features(&self) -> Vec<Feature> {
-        let shares = self.optics.iter().flatten().map(|share| share.factor);
-        std::iter::once(None).chain(shares).flat_map(|factor| with_arms(&factor.into_iter().collect::<Vec<Factor>>())).collect()
+        self.optics.features(None)
     }
 
     fn torques(&self, surroundings: &Surroundings, out: &mut [Vector3<f64>]) {
-        let (sun, pressure) = (surroundings.sun, surroundings.radiation_pressure_pa);
-        let mut absorbed = Load::default();
-        // Two groups of four features follow the first group for each material; cleared, then summed.
-        out.fill(Vector3::zeros());
-        let (first, rest) = out.split_at_mut(4);
-        let mut reflected = [Load::default(); 2];
-        for (material, (optics, places)) in self.optics.iter().zip(rest.chunks_mut(8)).enumerate() {
-            reflected.fill(Load::default());
-            for surface in self.surfaces.iter().filter(|surface| surface.material == material) {
-                let normal = surface.normal_facing(&sun);
-                let cos = normal.dot(&sun);
-                if cos <= 0.0 && !surface.both_sides {
-                    continue;
-                }
-                let (lit, cos) = if cos < 0.0 { (-normal, -cos) } else { (normal, cos) };
-                let push = -pressure * surface.area_m2 * cos;
-                absorbed.add(push * sun, &surface.centre_m);
-                reflected[0].add(push * (2.0 * cos * lit - sun), &surface.centre_m);
-                reflected[1].add(push * (2.0 / 3.0) * lit, &surface.centre_m);
-            }
-            for ((load, share), place) in reflected.iter().zip(optics).zip(places.chunks_mut(4)) {
-                force_features(load.torque * share.scale, load.force * share.scale, place);
-            }
+        let mut loads = self.optics.loads();
+        let beam = Beam { towards: surroundings.sun, pressure_pa: surroundings.radiation_pressure_pa };
+        if beam.pressure_pa > 0.0 {
+            let normals = self.optics.normals(&beam.towards);
+            let reaches = self.optics.sunlit(&normals, &beam.towards);
+            self.optics.shine(&beam, &normals, Some(&reaches), &mut loads);
         }
-        force_features(absorbed.torque, absorbed.force, first);
+        self.optics.write(&loads, 1.0, out);
     }
 }

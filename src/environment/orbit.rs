@@ -4,14 +4,15 @@ use std::f64::consts::{PI, TAU};
 
 use nalgebra::{Rotation3, Vector3};
 
-use super::body::Body;
+use super::body::{Body, SOLAR_MU_M3_PER_S2, Site};
 use super::epoch::Epoch;
+use super::planets::Planet;
 
 /// Tropical year, days. Source: Meeus, Astronomical Algorithms, 2nd ed., p. 133 (J2000 value, mean equinox).
 const TROPICAL_YEAR_DAYS: f64 = 365.242_19;
 
-/// Mean Keplerian elements in I.
-#[derive(Debug, Clone, Copy, PartialEq)]
+/// Mean Keplerian elements by the equator of the body (of the ecliptic for the Sun); see [`Body::inertial_from_equator`].
+#[derive(Debug, Clone, Copy, Default, PartialEq)]
 pub struct Elements {
     /// Semi-major axis, m.
     pub semi_major_axis_m: f64,
@@ -72,6 +73,7 @@ pub struct Orbit {
     elements: Elements,
     epoch: Epoch,
     body: Body,
+    from_equator: Rotation3<f64>,
     mean_motion: f64,
     node_rate: f64,
     perigee_rate: f64,
@@ -94,6 +96,7 @@ impl Orbit {
             elements,
             epoch,
             body,
+            from_equator: body.inertial_from_equator(),
             mean_motion,
             node_rate: -drift * c,
             perigee_rate: drift * (2.0 - 2.5 * s * s),
@@ -167,7 +170,8 @@ impl Orbit {
     /// From the frame of the node and the plane to I.
     fn plane(&self, elapsed_s: f64) -> Rotation3<f64> {
         let node = self.elements.ascending_node_rad + self.node_rate * elapsed_s;
-        Rotation3::from_axis_angle(&Vector3::z_axis(), node) * Rotation3::from_axis_angle(&Vector3::x_axis(), self.elements.inclination_rad)
+        let tilt = Rotation3::from_axis_angle(&Vector3::x_axis(), self.elements.inclination_rad);
+        self.from_equator * Rotation3::from_axis_angle(&Vector3::z_axis(), node) * tilt
     }
 }
 
@@ -203,7 +207,7 @@ fn j2_drift(semi_major_axis_m: f64, eccentricity: f64, body: &Body) -> f64 {
 }
 
 /// Solves E − e sin E = M. Newton steps kept inside a shrinking bracket, so it ends for every e in [0, 1).
-fn eccentric_anomaly(mean_anomaly: f64, eccentricity: f64) -> f64 {
+pub(super) fn eccentric_anomaly(mean_anomaly: f64, eccentricity: f64) -> f64 {
     let turns = ((mean_anomaly + PI) / TAU).floor() * TAU;
     let mean = mean_anomaly - turns;
     // The root lies within e of M.
@@ -226,15 +230,39 @@ fn eccentric_anomaly(mean_anomaly: f64, eccentricity: f64) -> f64 {
     guess
 }
 
-/// Inclination, rad, at which J2 turns the node once a tropical year; `None` where no inclination does (too high, no J2,
-/// or no orbit at all). Made for the Earth: the year is the Earth's.
+/// Inclination, rad, at which J2 turns the node once in the body's year; `None` where no inclination does (too high, no
+/// J2, or no orbit at all). The year is the tropical one for the Earth and the sidereal one for other bodies.
 ///
 /// Source: Curtis, Orbital Mechanics for Engineering Students, 2nd ed., example 4.7.
 #[must_use]
 pub fn sun_synchronous_inclination(semi_major_axis_m: f64, eccentricity: f64, body: &Body) -> Option<f64> {
-    let rate = TAU / (TROPICAL_YEAR_DAYS * 86_400.0);
+    let rate = TAU / year_s(body)?;
     let cosine = -rate / j2_drift(semi_major_axis_m, eccentricity, body);
     (semi_major_axis_m > 0.0 && (0.0..1.0).contains(&eccentricity) && cosine.abs() <= 1.0).then(|| cosine.acos())
+}
+
+/// Length of the body's year, s; `None` for the Sun.
+fn year_s(body: &Body) -> Option<f64> {
+    let of_radius = |a: f64| TAU / (SOLAR_MU_M3_PER_S2 / a.powi(3)).sqrt();
+    match body.site {
+        Site::Sun => None,
+        Site::Earth | Site::Moon => Some(TROPICAL_YEAR_DAYS * 86_400.0),
+        Site::Planet(Planet::Mercury) => Some(87.969_26 * 86_400.0),
+        Site::Planet(Planet::Venus) => Some(224.700_8 * 86_400.0),
+        Site::Planet(Planet::Mars) => Some(686.979_9 * 86_400.0),
+        Site::Circle(radius_m) => Some(of_radius(radius_m)),
+    }
+}
+
+/// Angle of the ascending node by the body's equator, rad in [0, 2π), of an orbit that crosses it northwards at local
+/// time `hours` at `epoch`: mean local time about the Earth, by the true Sun about other bodies.
+#[must_use]
+pub fn node_at_local_time(body: &Body, epoch: Epoch, hours: f64) -> f64 {
+    if body.is_earth() {
+        return node_of_local_time(epoch, hours);
+    }
+    let sun = body.inertial_from_equator().inverse() * -body.heliocentric_position_m(epoch);
+    (sun.y.atan2(sun.x) + (hours - 12.0) * TAU / 24.0).rem_euclid(TAU)
 }
 
 /// Right ascension of the ascending node, rad in [0, 2π) in I, of an orbit that crosses the equator northwards at mean

@@ -61,3 +61,10 @@ pub fn sun_position_m(epoch: Epoch) -> Vector3<f64> {
     let of_date = Vector3::new(cos_longitude, sin_longitude * cos_obliquity, sin_longitude * sin_obliquity);
     mean_of_date_from_inertial(epoch).inverse() * of_date * sun.distance_m
 }
+
+/// Velocity of the Sun about the Earth's centre, m/s, in I: the difference of [`sun_position_m`] over an hour.
+#[must_use]
+pub fn sun_velocity_m_per_s(epoch: Epoch) -> Vector3<f64> {
+    const HALF_S: f64 = 1800.0;
+    (sun_position_m(epoch.plus_seconds(HALF_S)) - sun_position_m(epoch.plus_seconds(-HALF_S))) / (2.0 * HALF_S)
+}

@@ -4,6 +4,7 @@ use nalgebra::{DMatrix, Vector3};
 
 use super::policy::unload_rate;
 use super::{Outcome, Plan, UnloadRate};
+use crate::config::Timing;
 use crate::mission::{EventKind, Phase};
 use crate::momentum::FeatureValues;
 use crate::propellant::{ROWS, Row, damping_momentum, slew_momentum};
@@ -66,7 +67,7 @@ impl Plan {
         let windows: Vec<_> = vectors(rows, first, at.span.windows.len()).collect();
         let end = self.basis.offsets.get(stratum + 1).map_or(rows.len(), |next| next.0);
         let excursions = vectors(rows, excursions, (end - excursions) / 3);
-        let rate = unload_rate(phase.unload, at, phase.orbit.nodal_period_s(), self.filling.as_ref(), &windows, excursions);
+        let rate = unload_rate(phase.unload, at, phase.cycle_s(), self.filling.as_ref(), &windows, excursions);
         (windows, rate)
     }
 
@@ -143,9 +144,16 @@ impl Flight<'_> {
         self.outcome.unloads += rate.count;
         let shortest = self.outcome.shortest_interval_s.map_or(rate.interval_s, |other| other.min(rate.interval_s));
         self.outcome.shortest_interval_s = Some(shortest);
-        let each = rate.count / windows.len() as f64;
-        for momentum in windows {
-            self.burn(Row::WheelUnloading, stratum, &(momentum * -rate.repeat), each);
+        let impulses: Vec<_> = windows.iter().map(|momentum| momentum * -rate.repeat).collect();
+        if self.plan.timing(stratum) == Timing::Cheapest {
+            if let Some(impulse) = self.plan.cheapest(stratum, &impulses) {
+                self.burn(Row::WheelUnloading, stratum, &impulse, rate.count);
+            }
+            return;
+        }
+        let each = rate.count / impulses.len() as f64;
+        for impulse in impulses {
+            self.burn(Row::WheelUnloading, stratum, &impulse, each);
         }
     }
 

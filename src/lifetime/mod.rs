@@ -8,11 +8,13 @@ mod outcome;
 mod plan;
 mod policy;
 mod summary;
+mod timing;
 
 pub use outcome::Outcome;
 pub use plan::{Plan, PlanError};
 pub use policy::UnloadRate;
 pub use summary::{PhaseSummary, TypicalUnload};
+pub use timing::TimingGain;
 
 /// Lifetimes flown together: one matrix product of this width.
 pub const BLOCK: usize = 64;

@@ -3,7 +3,7 @@
 use crate::authority::{Authority, Price};
 use crate::mission::{Scenario, UnloadPolicy};
 use crate::momentum::{
-    FoldedBasis, MassHistory, PhaseMomentum, RawBasis, Resolution, Stratum, phase_momentum, simulate_all, strata, wheel_envelope,
+    Convergence, FoldedBasis, MassHistory, PhaseMomentum, RawBasis, Resolution, Stratum, phase_momentum, simulate, wheel_envelope,
     wheel_torque,
 };
 use crate::pulses::Pricer;
@@ -34,6 +34,7 @@ pub struct Plan {
     pub(super) scenario: Scenario,
     pub(super) strata: Vec<Stratum>,
     raw: RawBasis,
+    convergence: Vec<Convergence>,
     pub(super) basis: FoldedBasis,
     pub(super) nominal: Draw,
     pub(super) filling: Option<Filling>,
@@ -54,8 +55,7 @@ impl Plan {
     /// # Errors
     /// The layout cannot make the torques that the mission asks of it.
     pub fn new(scenario: Scenario, resolution: Resolution, margin: f64) -> Result<Self, PlanError> {
-        let strata = strata(&scenario.mission, resolution);
-        let raw = simulate_all(&scenario, &strata);
+        let (strata, raw, convergence) = simulate(&scenario, resolution);
         let full = MassHistory::constant(scenario.vehicle.tank.loaded_kg);
         let filling = scenario.vehicle.wheels.as_ref().map(|wheels| {
             let envelope = wheel_envelope(wheels);
@@ -72,6 +72,7 @@ impl Plan {
             margin,
             strata,
             raw,
+            convergence,
             scenario,
         };
         plan.price_layout()?;
@@ -157,6 +158,12 @@ impl Plan {
     #[must_use]
     pub fn sources(&self) -> &[&'static str] {
         &self.raw.sources
+    }
+
+    /// What each phase was simulated with.
+    #[must_use]
+    pub fn convergence(&self) -> &[Convergence] {
+        &self.convergence
     }
 
     /// Nominal torque and momentum by source, phase by phase.

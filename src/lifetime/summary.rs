@@ -3,6 +3,7 @@
 use nalgebra::Vector3;
 
 use super::Plan;
+use crate::momentum::Convergence;
 use crate::pulses::{UnloadCommand, UnloadError, unload};
 
 /// Nominal torque and momentum of one phase. Torques in the body, secular momentum in the inertial frame.
@@ -22,6 +23,8 @@ pub struct PhaseSummary {
     pub unloads: f64,
     /// Shortest time between unloads, s.
     pub unload_interval_s: Option<f64>,
+    /// What the phase was simulated with.
+    pub convergence: Convergence,
 }
 
 /// An unload of the nominal mission.
@@ -52,6 +55,7 @@ impl Plan {
                 cyclic_n_m_s: momentum.cyclic_n_m_s,
                 wheel_envelope_n_m_s: envelope,
                 unloads: rates.iter().map(|rate| rate.count).sum(),
+                convergence: self.convergence()[index],
                 unload_interval_s: rates.iter().map(|rate| rate.interval_s).reduce(f64::min),
             }
         };

@@ -1,68 +1,129 @@
 //! Solar activity over the mission.
 
+use std::f64::consts::PI;
+
 use crate::config::{self, ActivityLevel};
-use crate::environment::Activity;
-use crate::uncertain::{Parameters, Uncertain};
+use crate::environment::{Activity, Epoch};
+use crate::uncertain::{Parameters, Spread, Uncertain};
 use crate::vehicle::Faults;
 
 /// Levels between which density is interpolated when the activity is uncertain.
 const LEVELS: usize = 5;
+const KEY: &str = "environment.solar_activity";
 
-/// Solar activity, constant over a lifetime: one level, or several levels and where between them a draw lies.
+/// Solar activity: what chance decides (a flux, or the amplitude of a cycle), and how the flux follows from it in time.
 #[derive(Debug, Clone)]
 pub struct SolarActivity {
-    f107: Uncertain,
-    levels: Vec<Activity>,
+    chance: Uncertain,
+    /// Values of `chance` at which density is computed, rising by `step`.
+    levels: Vec<f64>,
     step: f64,
+    course: Course,
+}
+
+/// How the radio flux F10.7 follows from what chance decides.
+#[derive(Debug, Clone, Copy, PartialEq)]
+enum Course {
+    /// A reference level with its own Ap.
+    Level(Activity),
+    /// It is the flux.
+    Constant,
+    /// It is the amplitude of a cycle.
+    Cycle { start: Epoch, period_s: f64, low: f64, high: f64 },
 }
 
 impl SolarActivity {
     pub(super) fn new(written: &config::SolarActivity, parameters: &mut Parameters, faults: &mut Faults) -> Option<Self> {
-        const KEY: &str = "environment.solar_activity";
-        match (written.level, written.f107) {
-            (Some(level), None) => {
+        match (written.level, written.f107, &written.cycle) {
+            (Some(level), None, None) => {
                 let activity = match level {
                     ActivityLevel::Low => Activity::LOW,
                     ActivityLevel::Moderate => Activity::MODERATE,
                     ActivityLevel::High => Activity::HIGH,
                 };
-                Some(Self { f107: Uncertain::fixed(activity.f107), levels: vec![activity], step: 0.0 })
+                let fixed = Spread::Fixed(activity.f107);
+                Some(Self::spread(parameters.register(KEY, "sfu", fixed), fixed, Course::Level(activity)))
             }
-            (None, Some(f107)) => {
+            (None, Some(f107), None) => {
                 let key = format!("{KEY}.f107");
-                let spread = faults.spread(&key, f107.0, 50.0, 400.0, "a radio flux F10.7 in solar flux units")?;
-                let (low, high) = spread.support();
-                let count = if spread.is_fixed() { 1 } else { LEVELS };
-                let step = if count == 1 { 0.0 } else { (high - low) / (count - 1) as f64 };
-                let levels = (0..count).map(|k| Activity::from_f107(low + step * k as f64)).collect();
-                Some(Self { f107: parameters.register(key, "sfu", spread), levels, step })
+                let spread = flux(&key, f107.0, faults)?;
+                Some(Self::spread(parameters.register(key, "sfu", spread), spread, Course::Constant))
+            }
+            (None, None, Some(cycle)) => {
+                let course = course(cycle, faults);
+                let key = format!("{KEY}.cycle.amplitude");
+                let amplitude = cycle.amplitude.map_or(Spread::Fixed(1.0), |amplitude| amplitude.0);
+                let amplitude = faults.spread(&key, amplitude, 0.0, 3.0, "a factor on the rise of a cycle")?;
+                Some(Self::spread(parameters.register(key, "", amplitude), amplitude, course?))
             }
             _ => {
-                faults.push(KEY, "expected one of `level` and `f107`", "keep one: `level: moderate`, or `f107: 90 .. 190`");
+                let help = "keep one: `level: moderate`, `f107: 90 .. 190`, or `cycle: {start: …, period: …, low: …, high: …}`";
+                faults.push(KEY, "expected one of `level`, `f107` and `cycle`", help);
                 None
             }
         }
     }
 
-    /// The levels at which density is computed, rising.
-    #[must_use]
-    pub fn levels(&self) -> &[Activity] {
-        &self.levels
+    fn spread(chance: Uncertain, spread: Spread, course: Course) -> Self {
+        let (low, high) = spread.support();
+        let count = if spread.is_fixed() { 1 } else { LEVELS };
+        let step = if count == 1 { 0.0 } else { (high - low) / (count - 1) as f64 };
+        Self { chance, levels: (0..count).map(|k| low + step * k as f64).collect(), step, course }
     }
 
-    /// The radio flux F10.7.
+    /// How many levels density is computed at.
     #[must_use]
-    pub const fn f107(&self) -> &Uncertain {
-        &self.f107
+    pub fn count(&self) -> usize {
+        self.levels.len()
     }
 
-    /// Weight of a level at a radio flux: hat functions, which add up to one.
+    /// Activity of each level at an instant.
     #[must_use]
-    pub fn weight(&self, level: usize, f107: f64) -> f64 {
+    pub fn levels_at(&self, epoch: Epoch) -> Vec<Activity> {
+        let at = |value: &f64| match self.course {
+            Course::Level(activity) => activity,
+            Course::Constant => Activity::from_f107(*value),
+            Course::Cycle { start, period_s, low, high } => {
+                let phase = PI * (epoch.tt_seconds() - start.tt_seconds()) / period_s;
+                Activity::from_f107(low + value * (high - low) * phase.sin().powi(2))
+            }
+        };
+        self.levels.iter().map(at).collect()
+    }
+
+    /// What chance decides: the flux, or the amplitude of the cycle.
+    #[must_use]
+    pub const fn chance(&self) -> &Uncertain {
+        &self.chance
+    }
+
+    /// Weight of a level at a value of what chance decides: hat functions, which add up to one.
+    #[must_use]
+    pub fn weight(&self, level: usize, value: f64) -> f64 {
         let Some(own) = self.levels.get(level) else { return 0.0 };
         if self.levels.len() == 1 {
             return 1.0;
         }
-        (1.0 - (f107 - own.f107).abs() / self.step).clamp(0.0, 1.0)
+        (1.0 - (value - own).abs() / self.step).clamp(0.0, 1.0)
     }
+}
+
+/// A radio flux that the atmosphere model takes.
+fn flux(key: &str, spread: Spread, faults: &mut Faults) -> Option<Spread> {
+    faults.spread(key, spread, 50.0, 400.0, "a radio flux F10.7 in solar flux units")
+}
+
+fn course(cycle: &config::Cycle, faults: &mut Faults) -> Option<Course> {
+    let at = |key: &str| format!("{KEY}.cycle.{key}");
+    let start =
+        Epoch::parse(&cycle.start).map_err(|error| faults.push(&at("start"), error.to_string(), "write a date such as `2030-06-01`")).ok();
+    let period = faults.positive(&at("period"), cycle.period.0, "a period");
+    let low = flux(&at("low"), Spread::Fixed(cycle.low.0), faults);
+    let high = flux(&at("high"), Spread::Fixed(cycle.high.0), faults);
+    if cycle.low.0 > cycle.high.0 {
+        faults.push_also(&at("low"), "the minimum lies above the maximum", "swap them", &at("high"), "the maximum");
+        return None;
+    }
+    (low?, high?);
+    Some(Course::Cycle { start: start?, period_s: period?, low: cycle.low.0, high: cycle.high.0 })
 }

@@ -5,18 +5,28 @@
 mod activity;
 mod attitude;
 mod event;
+mod files;
 mod orbit;
 mod phase;
+mod pointing;
+mod read_attitude;
 mod settings;
+mod surroundings;
+mod survey;
 
 pub use activity::SolarActivity;
-pub use attitude::NadirAttitude;
+pub use attitude::{Attitude, Law, Moment};
 pub use event::{Event, EventKind};
 pub use phase::{Phase, UnloadPolicy};
+pub use pointing::{Direction, Pointing, Sky};
 pub use settings::{Bound, Requirement, Settings};
+pub use surroundings::{Accommodation, BodyLightShares};
+pub use survey::Survey;
+
+use std::path::Path;
 
 use crate::config::Spec;
-use crate::environment::Epoch;
+use crate::environment::{Air, Body, Epoch, Exponential};
 use crate::uncertain::{Parameters, Spread, Uncertain};
 use crate::vehicle::{Faults, Vehicle};
 
@@ -33,6 +43,14 @@ pub struct Mission {
     pub density_factor: Uncertain,
     /// Drag coefficient of facets whose material has none of its own.
     pub drag_coefficient: Uncertain,
+    /// How molecules leave the facets; `None` for a drag coefficient.
+    pub accommodation: Option<Accommodation>,
+    /// Wind to the east and to the north over the turning air, m/s.
+    pub wind_m_per_s: [Uncertain; 2],
+    /// Atmosphere of a body other than the Earth.
+    pub atmosphere: Option<Exponential>,
+    /// Albedo and infrared of the body, where the configuration gives them.
+    pub body_light: BodyLightShares,
 }
 
 /// Drag coefficient of a plate in free-molecular flow where nothing better is known (common practice).
@@ -42,7 +60,7 @@ impl Mission {
     /// Validates what the user wrote; registers what is uncertain.
     ///
     /// Returns `None` after pushing at least one fault.
-    pub fn new(spec: &Spec, vehicle_has_wheels: bool, parameters: &mut Parameters, faults: &mut Faults) -> Option<Self> {
+    pub fn new(spec: &Spec, folder: &Path, parameters: &mut Parameters, faults: &mut Faults) -> Option<Self> {
         let before = faults.count();
         let start = Epoch::parse(&spec.mission.start)
             .map_err(|error| faults.push("mission.start", error.to_string(), "write a date such as `2029-04-01` or `2029-04-01T12:00:00Z`"))
@@ -52,8 +70,14 @@ impl Mission {
         let factor = faults.positive_spread("environment.density_factor", factor, "a factor");
         let drag = spec.environment.drag_coefficient.map_or(Spread::Fixed(USUAL_DRAG_COEFFICIENT), |drag| drag.0);
         let drag = faults.positive_spread("environment.drag_coefficient", drag, "a drag coefficient");
+        let density_factor = factor.map(|factor| parameters.register("environment.density_factor", "", factor));
+        let drag_coefficient = drag.map(|drag| parameters.register("environment.drag_coefficient", "", drag));
+        let accommodation = surroundings::accommodation(&spec.environment, parameters, faults);
+        let wind_m_per_s = surroundings::wind(&spec.environment, parameters);
+        let atmosphere = surroundings::atmosphere(&spec.environment, faults);
+        let body_light = surroundings::body_light(&spec.environment, parameters, faults);
         let start = start?;
-        let phases = phase::read(spec, start, vehicle_has_wheels, parameters, faults);
+        let phases = phase::read(spec, start, &files::Files { folder }, parameters, faults);
         if faults.count() > before {
             return None;
         }
@@ -61,9 +85,29 @@ impl Mission {
             start,
             phases,
             activity: activity?,
-            density_factor: parameters.register("environment.density_factor", "", factor?),
-            drag_coefficient: parameters.register("environment.drag_coefficient", "", drag?),
+            density_factor: density_factor?,
+            drag_coefficient: drag_coefficient?,
+            accommodation,
+            wind_m_per_s,
+            atmosphere,
+            body_light,
         })
+    }
+
+    /// The air about a body.
+    #[must_use]
+    pub fn air_about(&self, body: &Body) -> Air {
+        match self.atmosphere {
+            _ if body.is_earth() => Air::Earth,
+            Some(atmosphere) if !body.is_sun() => Air::Exponential(atmosphere),
+            _ => Air::None,
+        }
+    }
+
+    /// How many levels of solar activity the air about a body is computed at: one where it does not depend on it.
+    #[must_use]
+    pub fn levels_about(&self, body: &Body) -> usize {
+        if body.is_earth() { self.activity.count() } else { 1 }
     }
 
     /// Length of the mission, s.
@@ -94,9 +138,17 @@ impl Scenario {
     /// # Errors
     /// Every fault found.
     pub fn new(spec: &Spec) -> Result<Self, Vec<crate::config::Diagnostic>> {
+        Self::in_folder(spec, Path::new("."))
+    }
+
+    /// As [`Scenario::new`], with the files that the configuration names looked for in `folder`.
+    ///
+    /// # Errors
+    /// Every fault found.
+    pub fn in_folder(spec: &Spec, folder: &Path) -> Result<Self, Vec<crate::config::Diagnostic>> {
         let (mut parameters, mut faults) = (Parameters::default(), Faults::new());
         let vehicle = Vehicle::new(spec, &mut parameters, &mut faults);
-        let mission = Mission::new(spec, spec.wheels.is_some(), &mut parameters, &mut faults);
+        let mission = Mission::new(spec, folder, &mut parameters, &mut faults);
         let settings = settings::settings(&spec.budget, &mut faults);
         let requirements = settings::requirements(spec, &mut faults);
         match (vehicle, mission, settings) {

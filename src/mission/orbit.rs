@@ -1,15 +1,111 @@
-//! Orbits as written turned into mean elements.
+//! Where the spacecraft goes, as written, turned into a trajectory.
 
-use crate::config;
-use crate::environment::{Body, Elements, Epoch, Orbit, node_of_local_time, sun_synchronous_inclination};
+use nalgebra::Vector3;
+
+use super::files::Files;
+use crate::config::{self, About, LagrangePoint, Quantity};
+use crate::environment::{
+    Body, Companion, ECLIPTIC_NORTH, Elements, Epoch, HILL_SHARE, Orbit, Site, SunDistance, Trajectory, Warmth, node_at_local_time,
+    right_ascension_of_longitude, sun_synchronous_inclination,
+};
+use crate::units::kind;
 use crate::vehicle::Faults;
 
-/// Validates an orbit; `at` is its key, its angles count at `start`.
-pub(super) fn read(written: &config::Orbit, at: &str, start: Epoch, faults: &mut Faults) -> Option<Orbit> {
-    let body = Body::EARTH;
+/// Validates where the spacecraft goes; `at` is its key, its angles count at `start`.
+pub(super) fn read(written: &config::Orbit, at: &str, start: Epoch, files: &Files<'_>, faults: &mut Faults) -> Option<Trajectory> {
+    let body = body(&written.about, &format!("{at}.about"), faults)?;
+    let ways = [
+        ("stationary", written.stationary.is_some()),
+        ("lagrange", written.lagrange.is_some()),
+        ("sun_distance", written.sun_distance.is_some()),
+        ("ephemeris", written.ephemeris.is_some()),
+    ];
+    let given: Vec<&str> = ways.iter().filter(|(_, given)| *given).map(|(key, _)| *key).collect();
+    let sized = written.altitude.is_some() || written.perigee_altitude.is_some() || written.semi_major_axis.is_some();
+    if given.len() + usize::from(sized) > 1 {
+        faults.push(at, format!("`{}` goes without another way of saying where the spacecraft goes", given.join("` and `")), "keep one");
+        return None;
+    }
+    if let Some(stationary) = &written.stationary {
+        return self::stationary(stationary, body, at, start, faults);
+    }
+    if let Some(point) = written.lagrange {
+        return Some(Trajectory::Companion(lagrange(point)));
+    }
+    if let Some(distance) = written.sun_distance {
+        let distance_m = faults.positive(&format!("{at}.sun_distance"), distance.0, "a distance")?;
+        return Some(Trajectory::Companion(Companion { ahead_rad: 0.0, distance: SunDistance::Fixed(distance_m) }));
+    }
+    if let Some(file) = &written.ephemeris {
+        return files.ephemeris(file, &body, &format!("{at}.ephemeris"), faults);
+    }
+    keplerian(written, body, at, start, faults)
+}
+
+/// The body that is orbited.
+fn body(about: &About, at: &str, faults: &mut Faults) -> Option<Body> {
+    let own = match about {
+        About::Earth => return Some(Body::EARTH),
+        About::Moon => return Some(Body::MOON),
+        About::Mars => return Some(Body::MARS),
+        About::Venus => return Some(Body::VENUS),
+        About::Mercury => return Some(Body::MERCURY),
+        About::Sun => return Some(Body::SUN),
+        About::Body(own) => own,
+    };
+    let at = |key: &str| format!("{at}.body.{key}");
+    let mu = faults.positive(&at("gravitational_parameter"), own.gravitational_parameter.0, "a gravitational parameter");
+    let radius = faults.positive(&at("radius"), own.radius.0, "a radius");
+    let distance = faults.positive(&at("sun_distance"), own.sun_distance.0, "a distance");
+    let j2 = faults.within(&at("j2"), own.j2.map_or(0.0, |j2| j2.0), -0.5, 0.5, "a zonal harmonic");
+    let albedo = faults.within(&at("albedo"), own.albedo.map_or(0.1, |albedo| albedo.0), 0.0, 1.0, "a share of light");
+    let rate = match own.rotation_period {
+        None => Some(0.0),
+        Some(period) => faults.positive(&at("rotation_period"), period.0, "a period").map(|period_s| 2.0 * std::f64::consts::PI / period_s),
+    };
+    Some(Body {
+        name: "the body",
+        mu_m3_per_s2: mu?,
+        equatorial_radius_m: radius?,
+        j2: j2?,
+        rotation_rate_rad_per_s: rate?,
+        pole: ECLIPTIC_NORTH,
+        site: Site::Circle(distance?),
+        albedo: albedo?,
+        warmth: Warmth::DaySide,
+    })
+}
+
+fn lagrange(point: LagrangePoint) -> Companion {
+    let sixty = std::f64::consts::FRAC_PI_3;
+    let (ahead_rad, share) = match point {
+        LagrangePoint::L1 => (0.0, 1.0 - HILL_SHARE),
+        LagrangePoint::L2 => (0.0, 1.0 + HILL_SHARE),
+        LagrangePoint::L3 => (std::f64::consts::PI, 1.0),
+        LagrangePoint::L4 => (sixty, 1.0),
+        LagrangePoint::L5 => (-sixty, 1.0),
+    };
+    Companion { ahead_rad, distance: SunDistance::OfEarth(share) }
+}
+
+fn stationary(written: &config::Stationary, body: Body, at: &str, start: Epoch, faults: &mut Faults) -> Option<Trajectory> {
+    let Some(semi_major_axis_m) = body.synchronous_radius_m().filter(|_| body.is_earth()) else {
+        faults.push(
+            &format!("{at}.stationary"),
+            format!("longitudes are known for the Earth only, not for {}", body.name),
+            "give `semi_major_axis` and `inclination`",
+        );
+        return None;
+    };
+    let mean_anomaly_rad = right_ascension_of_longitude(start, written.longitude.0);
+    let elements = Elements { semi_major_axis_m, mean_anomaly_rad, ..Elements::default() };
+    Orbit::new(elements, start, body).ok().map(Trajectory::Orbit)
+}
+
+fn keplerian(written: &config::Orbit, body: Body, at: &str, start: Epoch, faults: &mut Faults) -> Option<Trajectory> {
     let (semi_major_axis_m, eccentricity) = size(written, at, &body, faults)?;
-    let (inclination_rad, ascending_node_rad) = plane(written, at, start, (semi_major_axis_m, eccentricity), faults)?;
-    let angle = |angle: &Option<config::Quantity<crate::units::kind::Angle>>| angle.map_or(0.0, |angle| angle.0);
+    let (inclination_rad, ascending_node_rad) = plane(written, at, start, (semi_major_axis_m, eccentricity), &body, faults)?;
+    let angle = |angle: &Option<Quantity<kind::Angle>>| angle.map_or(0.0, |angle| angle.0);
     let elements = Elements {
         semi_major_axis_m,
         eccentricity,
@@ -19,6 +115,7 @@ pub(super) fn read(written: &config::Orbit, at: &str, start: Epoch, faults: &mut
         mean_anomaly_rad: angle(&written.mean_anomaly),
     };
     Orbit::new(elements, start, body)
+        .map(Trajectory::Orbit)
         .map_err(|error| {
             faults.push(at, error.to_string(), "raise the perigee above the surface; altitudes count from the equatorial radius");
         })
@@ -61,18 +158,26 @@ fn size(written: &config::Orbit, at: &str, body: &Body, faults: &mut Faults) -> 
             faults.push(
                 at,
                 "expected the size of the orbit in one way",
-                "give `altitude`, or `perigee_altitude` and `apogee_altitude`, or `semi_major_axis` with `eccentricity`",
+                "give `altitude`, or `perigee_altitude` and `apogee_altitude`, or `semi_major_axis` with `eccentricity`, or one of \
+                 `stationary`, `lagrange`, `sun_distance`, `ephemeris`",
             );
             None
         }
     }
 }
 
-/// Inclination and right ascension of the ascending node, rad.
-fn plane(written: &config::Orbit, at: &str, start: Epoch, (axis, eccentricity): (f64, f64), faults: &mut Faults) -> Option<(f64, f64)> {
+/// Inclination and angle of the ascending node by the body's equator, rad.
+fn plane(
+    written: &config::Orbit,
+    at: &str,
+    start: Epoch,
+    (axis, eccentricity): (f64, f64),
+    body: &Body,
+    faults: &mut Faults,
+) -> Option<(f64, f64)> {
     match (written.inclination, written.local_time, written.ascending_node) {
         (None, Some(local_time), None) => {
-            let Some(inclination) = sun_synchronous_inclination(axis, eccentricity, &Body::EARTH) else {
+            let Some(inclination) = sun_synchronous_inclination(axis, eccentricity, body) else {
                 faults.push(
                     &format!("{at}.local_time"),
                     "no inclination makes an orbit of this size Sun-synchronous",
@@ -80,7 +185,7 @@ fn plane(written: &config::Orbit, at: &str, start: Epoch, (axis, eccentricity): 
                 );
                 return None;
             };
-            Some((inclination, node_of_local_time(start, local_time.0 / 3600.0)))
+            Some((inclination, node_at_local_time(body, start, local_time.0 / 3600.0)))
         }
         (Some(inclination), None, node) => {
             let most = std::f64::consts::PI;
@@ -99,4 +204,30 @@ fn plane(written: &config::Orbit, at: &str, start: Epoch, (axis, eccentricity): 
             None
         }
     }
+}
+
+/// Lowest altitude over the equatorial radius, m: of the ellipse, or of samples of any other path.
+pub(super) fn lowest_altitude_m(trajectory: &Trajectory, start: Epoch, duration_s: f64) -> f64 {
+    if let Trajectory::Orbit(orbit) = trajectory {
+        let elements = orbit.elements();
+        return elements.semi_major_axis_m * (1.0 - elements.eccentricity) - orbit.body().equatorial_radius_m;
+    }
+    let radius_m = trajectory.body().equatorial_radius_m;
+    let altitude = |k: u32| {
+        let position: Vector3<f64> = trajectory.state(start.plus_seconds(duration_s * f64::from(k) / 2000.0)).position_m;
+        position.norm() - radius_m
+    };
+    (0..=2000).map(altitude).fold(f64::INFINITY, f64::min)
+}
+
+/// Whether a path can be flown for this long: clear of the body, and known all the time.
+pub(super) fn covers(trajectory: &Trajectory, from: Epoch, duration_s: f64, lowest_m: f64, at: &str, faults: &mut Faults) -> bool {
+    let body = trajectory.body();
+    if lowest_m <= 0.0 {
+        let message = format!("the path goes through {}: its lowest point is {:.1} km below the surface", body.name, -lowest_m / 1e3);
+        faults.push(at, message, "check the positions and the body named by `about`");
+        return false;
+    }
+    let _ = (from, duration_s);
+    true
 }

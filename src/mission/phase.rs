@@ -1,12 +1,17 @@
 //! Phases in order of time.
 
-use super::attitude::NadirAttitude;
+use super::attitude::{Attitude, Moment};
 use super::event::{self, Event};
-use super::orbit;
-use crate::config::{self, Spec};
-use crate::environment::{Epoch, Orbit};
-use crate::uncertain::{Parameters, Uncertain};
+use super::files::Files;
+use super::{orbit, read_attitude};
+use crate::config::{self, BodyLight, Spec, Timing};
+use crate::environment::{Epoch, Trajectory};
+use crate::uncertain::Parameters;
 use crate::vehicle::Faults;
+
+const DAY_S: f64 = 86_400.0;
+/// Where light from the body counts by itself: below 2,000 km its infrared is about a tenth of sunlight.
+const BODY_LIGHT_BELOW_M: f64 = 2.0e6;
 
 /// When the wheels are unloaded.
 #[derive(Debug, Clone, Copy, PartialEq)]
@@ -28,56 +33,87 @@ pub struct Phase {
     pub start_s: f64,
     /// Length, s.
     pub duration_s: f64,
-    /// Orbit.
-    pub orbit: Orbit,
+    /// Where the spacecraft goes.
+    pub trajectory: Trajectory,
     /// Attitude.
-    pub attitude: NadirAttitude,
+    pub attitude: Attitude,
     /// Unload policy.
     pub unload: UnloadPolicy,
+    /// Where on the orbit an unload takes place.
+    pub timing: Timing,
+    /// Whether light and heat of the body count.
+    pub body_light: bool,
     /// What else takes propellant.
     pub events: Vec<Event>,
 }
 
+impl Phase {
+    /// Time after which the spacecraft is in the same place of its orbit, s; a day where nothing comes back.
+    #[must_use]
+    pub fn cycle_s(&self) -> f64 {
+        self.trajectory.revolution_s().unwrap_or(DAY_S)
+    }
+
+    /// An instant of the phase, `time_s` after the start of the mission.
+    #[must_use]
+    pub fn moment(&self, mission_start: Epoch, time_s: f64) -> Moment<'_> {
+        let start = mission_start.plus_seconds(self.start_s);
+        Moment { trajectory: &self.trajectory, start, time_s: time_s - self.start_s }
+    }
+}
+
 /// Reads all phases that are right; the others leave faults.
-pub(super) fn read(spec: &Spec, start: Epoch, has_wheels: bool, parameters: &mut Parameters, faults: &mut Faults) -> Vec<Phase> {
+pub(super) fn read(spec: &Spec, start: Epoch, files: &Files<'_>, parameters: &mut Parameters, faults: &mut Faults) -> Vec<Phase> {
     if spec.mission.phases.is_empty() {
         faults.push("mission.phases", "expected at least one phase, got an empty list", "describe a phase with `name` and `duration`");
     }
     faults.unique("mission.phases", spec.mission.phases.iter().map(|phase| phase.name.as_str()));
-    let shared = orbit::read(&spec.mission.orbit, "mission.orbit", start, faults);
+    let shared = orbit::read(&spec.mission.orbit, "mission.orbit", start, files, faults);
     let mut start_s = 0.0;
     let mut phases = Vec::new();
     for (index, written) in spec.mission.phases.iter().enumerate() {
         let at = format!("mission.phases[{index}]");
-        let own = written.orbit.as_ref().map(|own| orbit::read(own, &format!("{at}.orbit"), start, faults));
+        let own = written.orbit.as_ref().map(|own| orbit::read(own, &format!("{at}.orbit"), start, files, faults));
+        let orbit_at = if own.is_some() { format!("{at}.orbit") } else { "mission.orbit".to_owned() };
         let duration = faults.positive(&format!("{at}.duration"), written.duration.0, "a duration");
-        let unload = policy(written.unload.as_ref(), &at, has_wheels, faults);
-        let attitude = attitude(&written.attitude, &written.name, parameters);
+        let unload = policy(written.unload.as_ref(), &at, spec.wheels.is_some(), faults);
+        let attitude = read_attitude::read(&written.attitude, &format!("{at}.attitude"), &written.name, parameters, faults);
         let events = events(written, &at, parameters, faults);
-        let orbit = own.unwrap_or_else(|| shared.clone());
-        if let (Some(duration_s), Some(unload), Some(orbit)) = (duration, unload, orbit) {
-            phases.push(Phase { name: written.name.clone(), start_s, duration_s, orbit, attitude, unload, events });
-            start_s += duration_s;
+        let trajectory = own.unwrap_or_else(|| shared.clone());
+        let timing = written.unload.as_ref().map_or(Timing::Due, |unload| unload.timing);
+        let (Some(duration_s), Some(unload), Some(attitude), Some(trajectory)) = (duration, unload, attitude, trajectory) else { continue };
+        let from = start.plus_seconds(start_s);
+        let altitude_m = orbit::lowest_altitude_m(&trajectory, from, duration_s);
+        if !orbit::covers(&trajectory, from, duration_s, altitude_m, &orbit_at, faults) {
+            continue;
         }
+        read_attitude::check_defined(&attitude, &trajectory, from, duration_s, &format!("{at}.attitude"), faults);
+        check_timing(timing, &trajectory, &attitude, &at, faults);
+        let body_light = match spec.environment.body_light {
+            BodyLight::On => !trajectory.body().is_sun(),
+            BodyLight::Off => false,
+            BodyLight::Auto => altitude_m < BODY_LIGHT_BELOW_M && !trajectory.body().is_sun(),
+        };
+        phases.push(Phase { name: written.name.clone(), start_s, duration_s, trajectory, attitude, unload, timing, body_light, events });
+        start_s += duration_s;
     }
     phases
+}
+
+/// Waiting for the cheapest point of an orbit needs an orbit in which the attitude comes back.
+fn check_timing(timing: Timing, trajectory: &Trajectory, attitude: &Attitude, at: &str, faults: &mut Faults) {
+    if timing == Timing::Cheapest && (trajectory.revolution_s().is_none() || attitude.law.dwell_s().is_some()) {
+        faults.push(
+            &format!("{at}.unload.timing"),
+            "there is no orbit whose points could be compared (about the Sun, at a Lagrange point, in a survey or a mix)",
+            "leave `timing` out there",
+        );
+    }
 }
 
 fn events(written: &config::Phase, at: &str, parameters: &mut Parameters, faults: &mut Faults) -> Vec<Event> {
     let listed = written.events.iter().enumerate();
     listed.filter_map(|(k, event)| event::read(event, &format!("{at}.events[{k}]"), parameters, faults)).collect()
-}
-
-fn attitude(written: &config::Attitude, phase: &str, parameters: &mut Parameters) -> NadirAttitude {
-    let Some(bias) = &written.bias else {
-        return NadirAttitude { bias_rad: [Uncertain::fixed(0.0); 3] };
-    };
-    let mut axes = ["x", "y", "z"].into_iter();
-    let bias_rad = bias.0.map(|spread| {
-        let axis = axes.next().unwrap_or_default();
-        parameters.register(format!("mission.phases[{phase}].attitude.bias.{axis}"), "rad", spread)
-    });
-    NadirAttitude { bias_rad }
 }
 
 fn policy(written: Option<&config::Unload>, at: &str, has_wheels: bool, faults: &mut Faults) -> Option<UnloadPolicy> {

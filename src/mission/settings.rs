@@ -18,6 +18,8 @@ pub struct Settings {
     pub confidence: f64,
     /// How finely the mission is simulated.
     pub resolution: ResolutionChoice,
+    /// How far the default resolution may put secular and cyclic momentum off, as a share.
+    pub tolerance: f64,
 }
 
 /// A bound on a figure.
@@ -89,9 +91,11 @@ pub(super) fn settings(written: &config::Budget, faults: &mut Faults) -> Option<
         faults.within("budget.lifetimes", written.lifetimes.map_or(10_000.0, |n| n.0), 1.0, MOST_LIFETIMES, "a number of lifetimes");
     let margin = faults.within("budget.margin", written.margin.map_or(0.0, |margin| margin.0), 0.0, 100.0, "a margin");
     let confidence = faults.within("budget.confidence", written.confidence.map_or(0.95, |c| c.0), 0.5, 0.999_999, "a confidence");
+    let tolerance = faults.within("budget.tolerance", written.tolerance.map_or(0.01, |share| share.0), 1e-3, 0.2, "a tolerance");
     #[expect(clippy::cast_possible_truncation, clippy::cast_sign_loss, reason = "checked to lie from 1 to 1e8")]
     let lifetimes = lifetimes?.round() as u64;
-    Some(Settings { lifetimes, seed: written.seed.unwrap_or(1), margin: margin?, confidence: confidence?, resolution: written.resolution })
+    let (seed, resolution) = (written.seed.unwrap_or(1), written.resolution);
+    Some(Settings { lifetimes, seed, margin: margin?, confidence: confidence?, resolution, tolerance: tolerance? })
 }
 
 pub(super) fn requirements(spec: &Spec, faults: &mut Faults) -> Vec<Requirement> {

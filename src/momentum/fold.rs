@@ -86,7 +86,7 @@ impl<'a> FeatureValues<'a> {
         let factor = |factor: &PlanFactor| match factor {
             PlanFactor::Value(id) => draw.value(*id),
             PlanFactor::Deviation(id) => draw.value(*id) - self.nominal.value(*id),
-            PlanFactor::Activity(level) => activity.weight(*level, activity.f107().in_draw(draw)),
+            PlanFactor::Activity(level) => activity.weight(*level, activity.chance().in_draw(draw)),
         };
         feature.iter().map(factor).product()
     }
@@ -102,6 +102,7 @@ fn expand(feature: &Feature, scenario: &Scenario, phase: &Phase, mass: &MassStat
     for factor in feature.factors() {
         let options: Vec<(f64, Option<PlanFactor>)> = match *factor {
             Factor::Parameter(id) => vec![(1.0, Some(PlanFactor::Value(id)))],
+            Factor::Deviation(id) => vec![(1.0, Some(PlanFactor::Deviation(id)))],
             Factor::Activity(level) => vec![(1.0, Some(PlanFactor::Activity(level)))],
             Factor::CentreOfMass(axis) => {
                 // Propellant holds the whole centre back: a shift of the dry one counts by its share of the mass.

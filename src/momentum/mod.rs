@@ -4,15 +4,17 @@
 //! of the torque, seen in the body when the wheels are unloaded, and its excursion within an orbit.
 //! Knows nothing of thrusters or propellant.
 
+mod converge;
 mod fold;
 mod nominal;
 mod simulate;
 mod strata;
 
+pub use converge::{Convergence, simulate};
 pub use fold::{FeatureValues, FoldedBasis, MassHistory, PlanFactor};
 pub use nominal::{PhaseMomentum, phase_momentum};
-pub use simulate::{RawBasis, SpanBasis, simulate_all};
-pub use strata::{Resolution, Span, Stratum, strata};
+pub use simulate::{RawBasis, SourceFeature, SpanBasis};
+pub use strata::{Grid, Resolution, Span, Stratum, strata};
 
 use crate::authority::{Authority, Generator, NetForce};
 use crate::vehicle::Wheels;

@@ -22,14 +22,14 @@ pub struct PhaseMomentum {
 }
 
 /// Nominal value of a feature with the mass properties of a stratum; a deviation from nominal is zero.
-fn nominal_value(feature: &Feature, scenario: &Scenario, nominal: &Draw, mass: &MassState) -> f64 {
+pub(super) fn nominal_value(feature: &Feature, scenario: &Scenario, nominal: &Draw, mass: &MassState) -> f64 {
     let activity = &scenario.mission.activity;
     let value = |factor: &Factor| match *factor {
         Factor::Parameter(id) => nominal.value(id),
         Factor::CentreOfMass(axis) => mass.centre_of_mass_m[axis],
         Factor::Inertia(element) => mass.inertia_kg_m2[INERTIA_ELEMENTS[element]],
-        Factor::Bias(_) => 0.0,
-        Factor::Activity(level) => activity.weight(level, activity.f107().nominal()),
+        Factor::Bias(_) | Factor::Deviation(_) => 0.0,
+        Factor::Activity(level) => activity.weight(level, activity.chance().nominal()),
     };
     feature.factors().iter().map(value).product()
 }

@@ -1,14 +1,24 @@
 //! Which spans of the mission are simulated, and what each stands for.
 
-use crate::mission::{Mission, Phase, UnloadPolicy};
+use crate::config::Timing;
+use crate::mission::{Phase, UnloadPolicy};
 
 /// How finely the mission is simulated.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
 pub enum Resolution {
-    /// One span stands for about four weeks, at nine phases of the orbit.
+    /// As finely as the tolerance asks: one span stands for some weeks, at nine phases of the orbit.
     Default,
     /// Every unload has its own span.
     Full,
+}
+
+/// How a phase is divided.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub struct Grid {
+    /// Steps of one cycle (an orbit; a day or a dwell where there is none).
+    pub steps: usize,
+    /// How many times as many strata as at least are taken.
+    pub strata: usize,
 }
 
 /// A stretch of a phase that one simulated span stands for.
@@ -38,9 +48,9 @@ pub struct Span {
     pub window_steps: usize,
     /// First step of each window.
     pub windows: Vec<usize>,
-    /// Steps in one orbit, rounded.
-    pub orbit_steps: usize,
-    /// Steps of the first orbit after which the excursion is taken.
+    /// Steps over which excursions are taken: one orbit; in a survey one window.
+    pub cycle_steps: usize,
+    /// Steps of the first cycle after which the excursion is taken.
     pub checkpoints: Vec<usize>,
 }
 
@@ -55,7 +65,7 @@ impl Span {
     #[must_use]
     pub fn steps(&self) -> usize {
         let last_window = self.windows.iter().max().copied().unwrap_or(0) + self.window_steps;
-        last_window.max(self.orbit_steps)
+        last_window.max(self.cycle_steps)
     }
 
     /// Length of all that is simulated, s.
@@ -67,82 +77,120 @@ impl Span {
 
 const DAY_S: f64 = 86_400.0;
 
-/// Length of time that one span stands for at default resolution: a 13th of a year, so that the
+/// Longest stretch of time that one span stands for at default resolution: a 13th of a year, so that the
 /// seasons are sampled thirteen times.
 const STRATUM_S: f64 = 365.25 / 13.0 * DAY_S;
 
 /// Fewest spans a phase is given, if it has that many unloads.
 const FEWEST: f64 = 4.0;
 
-/// A multiple of the windows, so that they are evenly spaced.
-const STEPS_PER_ORBIT: f64 = 99.0;
-
 /// Odd on purpose: the price of a momentum that turns in the body goes up and down four times an orbit, with overtones at
 /// 8, 12, 16 …; eight windows would all meet the overtone at the same place (seen: 4 % off), nine average it out.
-const WINDOWS: usize = 9;
+pub(super) const WINDOWS: usize = 9;
 const CHECKPOINTS: usize = 24;
 const CHECKPOINTS_FULL: usize = 8;
 
-/// Divides the mission into strata, in order of time.
-#[must_use]
-pub fn strata(mission: &Mission, resolution: Resolution) -> Vec<Stratum> {
-    let phases = mission.phases.iter().enumerate();
-    phases.flat_map(|(index, phase)| of_phase(index, phase, resolution)).collect()
-}
+/// Steps after which a stratum of a survey has had enough windows.
+const ENOUGH_STEPS: usize = 4000;
+/// Dwells in a window of a survey whose wheels are not unloaded at a fixed interval.
+const DWELLS: f64 = 8.0;
 
-fn of_phase(index: usize, phase: &Phase, resolution: Resolution) -> Vec<Stratum> {
-    let orbit_s = phase.orbit.nodal_period_s();
+/// Divides a phase into strata, in order of time.
+#[must_use]
+pub fn strata(index: usize, phase: &Phase, resolution: Resolution, grid: &Grid) -> Vec<Stratum> {
     let interval_s = match phase.unload {
         UnloadPolicy::Every(interval) => Some(interval.min(phase.duration_s)),
         UnloadPolicy::AtFill(_) | UnloadPolicy::Never => None,
     };
-    let window_s = window_length(interval_s, orbit_s, resolution);
+    let window_s = window_length(phase, interval_s, resolution);
     let most = (phase.duration_s / interval_s.unwrap_or(window_s)).max(1.0);
     let wanted = match resolution {
-        Resolution::Default => (phase.duration_s / STRATUM_S).ceil().max(FEWEST).min(most),
+        Resolution::Default => {
+            let least = (phase.duration_s / STRATUM_S).ceil().max(FEWEST);
+            (least * grid.strata as f64).min(most)
+        }
         Resolution::Full => most,
     };
     // At least one; a last unload that the phase cuts short counts by its share.
     let count = wanted.ceil().max(1.0);
     let duration_s = phase.duration_s / count;
+    let shape = Shape { phase, window_s, resolution, steps: grid.steps };
     (0..to_count(count))
         .map(|k| {
             let start_s = phase.start_s + duration_s * k as f64;
-            let span = span(start_s, duration_s, window_s, orbit_s, resolution);
-            Stratum { phase: index, start_s, duration_s, interval_s, span }
+            Stratum { phase: index, start_s, duration_s, interval_s, span: shape.span(start_s, duration_s) }
         })
         .collect()
 }
 
-/// Length of a window: the interval between unloads if that is short, else whole orbits of about a day.
-fn window_length(interval_s: Option<f64>, orbit_s: f64, resolution: Resolution) -> f64 {
+/// A short span in the middle of a stretch, to find how many steps a cycle needs.
+pub(super) fn probe(phase: &Phase, start_s: f64, duration_s: f64, steps: usize) -> Span {
+    let window_s = cycle_s(phase) * if phase.attitude.law.dwell_s().is_some() { 4.0 } else { 2.0 };
+    let shape = Shape { phase, window_s, resolution: Resolution::Default, steps };
+    shape.span(start_s, duration_s)
+}
+
+/// Time that the steps of a grid divide, s.
+fn cycle_s(phase: &Phase) -> f64 {
+    let cycle_s = phase.cycle_s();
+    match (phase.trajectory.revolution_s(), phase.attitude.law.dwell_s()) {
+        (None, Some(dwell_s)) => dwell_s.min(cycle_s),
+        _ => cycle_s,
+    }
+}
+
+/// Length of a window: the interval between unloads if that is short, else whole orbits of about a day. In a survey the
+/// interval however long, since what gathers is no steady growth.
+fn window_length(phase: &Phase, interval_s: Option<f64>, resolution: Resolution) -> f64 {
+    let orbit_s = phase.cycle_s();
     let about_a_day = (DAY_S / orbit_s).round().max(1.0) * orbit_s;
-    match (interval_s, resolution) {
-        (Some(interval), Resolution::Full) => interval,
-        (Some(interval), Resolution::Default) if interval <= 1.5 * about_a_day => interval,
+    match (interval_s, resolution, phase.attitude.law.dwell_s()) {
+        (Some(interval), Resolution::Full, _) | (Some(interval), _, Some(_)) => interval,
+        (Some(interval), Resolution::Default, None) if interval <= 1.5 * about_a_day => interval,
+        (None, _, Some(dwell_s)) => about_a_day.max(DWELLS * dwell_s).min(phase.duration_s),
         _ => about_a_day,
     }
 }
 
-fn span(start_s: f64, duration_s: f64, window_s: f64, orbit_s: f64, resolution: Resolution) -> Span {
-    let window_steps = to_count(window_s / orbit_s * STEPS_PER_ORBIT).max(1);
-    let step_s = window_s / window_steps as f64;
-    let orbit_steps = to_count(orbit_s / step_s).max(1);
-    let (windows, checkpoints) = match resolution {
-        Resolution::Default => (WINDOWS, CHECKPOINTS),
-        Resolution::Full => (1, CHECKPOINTS_FULL),
-    };
-    let part = |k: usize, of: usize| k * orbit_steps / of;
-    let mut windows: Vec<usize> = (0..windows).map(|k| part(k, windows)).collect();
-    windows.dedup();
-    let mut checkpoints: Vec<usize> = (1..=checkpoints).map(|k| part(k, checkpoints)).collect();
-    checkpoints.dedup();
-    let mut span = Span { start_s, step_s, window_steps, windows, orbit_steps, checkpoints };
-    if resolution == Resolution::Default {
-        // The middle of what is simulated stands in the middle of the stratum.
-        span.start_s = start_s + (duration_s - span.length_s()) / 2.0;
+/// What the spans of a phase have in common.
+struct Shape<'a> {
+    phase: &'a Phase,
+    window_s: f64,
+    resolution: Resolution,
+    steps: usize,
+}
+
+impl Shape<'_> {
+    fn span(&self, start_s: f64, duration_s: f64) -> Span {
+        let cycle_s = cycle_s(self.phase);
+        let window_steps = to_count(self.window_s / cycle_s * self.steps as f64).max(1);
+        let step_s = self.window_s / window_steps as f64;
+        let surveys = self.phase.attitude.law.dwell_s().is_some();
+        let cycle_steps = if surveys { window_steps } else { to_count(cycle_s / step_s).max(1) };
+        let compares = self.phase.timing == Timing::Cheapest;
+        let (windows, checkpoints) = match self.resolution {
+            Resolution::Default => (WINDOWS, CHECKPOINTS),
+            Resolution::Full if compares => (WINDOWS, CHECKPOINTS_FULL),
+            Resolution::Full => (1, CHECKPOINTS_FULL),
+        };
+        let part = |k: usize, of: usize| k * cycle_steps / of;
+        let mut windows: Vec<usize> = if surveys && self.resolution == Resolution::Default {
+            let fit = to_count((duration_s / self.window_s).floor());
+            let count = fit.min(WINDOWS).min(ENOUGH_STEPS / window_steps).max(1);
+            (0..count).map(|k| k * window_steps).collect()
+        } else {
+            (0..windows).map(|k| part(k, windows)).collect()
+        };
+        windows.dedup();
+        let mut checkpoints: Vec<usize> = (1..=checkpoints).map(|k| part(k, checkpoints)).filter(|step| *step > 0).collect();
+        checkpoints.dedup();
+        let mut span = Span { start_s, step_s, window_steps, windows, cycle_steps, checkpoints };
+        if self.resolution == Resolution::Default {
+            // The middle of what is simulated stands in the middle of the stratum.
+            span.start_s = start_s + (duration_s - span.length_s()) / 2.0;
+        }
+        span
     }
-    span
 }
 
 /// A count from a rounded number that is known to be finite and not negative.

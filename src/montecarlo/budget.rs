@@ -8,7 +8,7 @@ use super::{
 };
 use crate::config;
 use crate::layout::{LayoutCase, all_cases, figure, intact};
-use crate::lifetime::{Outcome, Plan};
+use crate::lifetime::{Outcome, Plan, TimingGain};
 use crate::mission::{Bound, Requirement};
 use crate::propellant::{ROWS, Row};
 
@@ -107,6 +107,8 @@ pub struct Budget {
     pub drivers: Vec<Driver>,
     /// Largest share of the wheel envelope filled, nominal.
     pub wheel_fill: Option<f64>,
+    /// What waiting for the cheapest point of the orbit saves, where a phase does.
+    pub timing: Option<TimingGain>,
     /// Intact layout at both ends of the travel.
     pub layout: Vec<LayoutCase>,
     /// Requirements.
@@ -153,6 +155,7 @@ impl Budget {
             enough,
             drivers: found,
             wheel_fill: super::wheels::nominal_fill(plan),
+            timing: plan.timing_gain(),
             layout: intact(plan.vehicle()),
             requirements: Vec::new(),
             warnings: Vec::new(),

@@ -42,8 +42,19 @@ pub(super) fn warnings(plan: &Plan, budget: &Budget) -> Vec<String> {
             budget.loaded_kg, budget.needed.nominal
         ));
     }
+    for (phase, used) in plan.scenario().mission.phases.iter().zip(plan.convergence()).filter(|(_, used)| !used.is_met()) {
+        list.push(format!(
+            "the momentum of phase {} is known to {:.1} % only, not to the tolerance of {:.1} %: `budget.resolution: full` simulates every unload",
+            phase.name,
+            (used.step_error + used.strata_error.unwrap_or(0.0)) * 100.0,
+            used.tolerance * 100.0
+        ));
+    }
+    let dipole = &plan.vehicle().residual_dipole_a_m2;
+    let in_a_field = plan.scenario().mission.phases.iter().any(|phase| phase.trajectory.body().is_earth())
+        && dipole.iter().any(|m| m.parameter().is_some() || m.nominal().abs() > 0.0);
     let ends = plan.scenario().mission.start.decimal_year() + plan.scenario().mission.duration_s() / SECONDS_PER_YEAR;
-    if ends > 2030.0 {
+    if ends > 2030.0 && in_a_field {
         list.push(format!(
             "the mission ends in {ends:.1}; the geomagnetic model (IGRF-14) is a prediction to 2030 and carried on unchanged beyond"
         ));

@@ -6,7 +6,7 @@ use super::table::Table;
 use super::unload::unload_text;
 use super::words::{heading, number, paragraph, percent, plain, vector};
 use crate::layout::TravelEnd;
-use crate::lifetime::{PhaseSummary, TypicalUnload};
+use crate::lifetime::{PhaseSummary, TimingGain, TypicalUnload};
 use crate::mission::{Bound, Scenario};
 use crate::montecarlo::{Budget, Checked, Distribution};
 use crate::propellant::ROWS;
@@ -84,7 +84,20 @@ fn ledger(budget: &Budget) -> String {
         "Total: unloading, rate damping and slews. Needed on board adds leakage and residual, not margin. Limits are one-sided, each with {:.0} % confidence, free of any assumption on the distribution.",
         budget.confidence * 100.0
     );
-    format!("{}{}\n{}", table.to_text(), paragraph("  ", "  ", &note), bounds.to_text())
+    let timing = budget.timing.map_or_else(String::new, |gain| paragraph("  ", "  ", &timing_text(&gain)));
+    format!("{}{}\n{}{timing}", table.to_text(), paragraph("  ", "  ", &note), bounds.to_text())
+}
+
+/// What waiting for the cheapest point of the orbit saves.
+fn timing_text(gain: &TimingGain) -> String {
+    let saved = gain.as_due_kg - gain.cheapest_kg;
+    format!(
+        "Unloads wait for the cheapest point of the orbit: {} kg nominally in place of {} kg as due, {} kg ({:.1} %) less.",
+        number(gain.cheapest_kg, 4),
+        number(gain.as_due_kg, 4),
+        number(saved, 3),
+        saved / gain.as_due_kg * 100.0
+    )
 }
 
 fn drivers(budget: &Budget) -> String {
@@ -141,7 +154,7 @@ fn valves(budget: &Budget, scenario: &Scenario) -> String {
 
 const CAUTIONS: [&str; 3] = [
     "Preliminary design figures from models with stated assumptions; they replace neither the analyses nor the margins that your mission's standards ask for, and a qualified review decides.",
-    "Facets do not shade one another; propellant slosh, flexible modes and the forces of plumes on facets are left out.",
+    "Facets do not shade one another unless declared to; propellant slosh, flexible modes and the forces of plumes on facets are left out.",
     "Hydrazine and other propellants are toxic, and tanks are pressurised: loading and handling belong to trained crews under the range's safety rules.",
 ];
 

@@ -8,6 +8,7 @@ use crate::authority::NetForce;
 use crate::layout::{Advice, LayoutCase, OutBecause, Study, TravelEnd, Verdict};
 use crate::lifetime::{PhaseSummary, TypicalUnload};
 use crate::mission::{Bound, Scenario};
+use crate::momentum::Convergence;
 use crate::montecarlo::{Budget, Checked, Distribution};
 use crate::propellant::ROWS;
 use crate::vehicle::Thruster;
@@ -176,9 +177,23 @@ fn phases(list: &[PhaseSummary]) -> Value {
             "wheel_envelope_N_m_s": phase.wheel_envelope_n_m_s,
             "unloads": phase.unloads,
             "unload_interval_s": phase.unload_interval_s,
+            "simulated": simulated(&phase.convergence),
         })
     };
     list.iter().map(one).collect()
+}
+
+/// What a phase was simulated with.
+fn simulated(used: &Convergence) -> Value {
+    json!({
+        "step_s": used.step_s,
+        "steps_per_cycle": used.steps,
+        "step_error": used.step_error,
+        "strata": used.strata,
+        "strata_error": used.strata_error,
+        "tolerance": used.tolerance,
+        "met": used.is_met(),
+    })
 }
 
 /// `couplet/momentum/1`.
@@ -311,6 +326,7 @@ pub fn budget_json(
         "valve_cycles": cycles,
         "drivers": drivers,
         "wheel_fill": budget.wheel_fill,
+        "unload_timing": budget.timing.map(|gain| json!({ "as_due_kg": gain.as_due_kg, "cheapest_kg": gain.cheapest_kg })),
         "requirements": requirements(&budget.requirements),
         "warnings": budget.warnings,
         "layout": { "cases": cases(&budget.layout) },

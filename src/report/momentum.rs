@@ -3,6 +3,7 @@
 use super::table::Table;
 use super::words::{heading, number, paragraph, plain, vector};
 use crate::lifetime::PhaseSummary;
+use crate::momentum::Convergence;
 
 /// One row for each phase and source.
 #[must_use]
@@ -51,7 +52,21 @@ pub(super) fn phase_text(phase: &PhaseSummary) -> String {
     );
     let cyclic =
         format!("Within an orbit the momentum swings by up to {} N m s in the body. {wheels} {interval}", number(phase.cyclic_n_m_s, 3));
-    format!("{}{}", table.to_text(), paragraph("  ", "  ", &cyclic))
+    format!("{}{}", table.to_text(), paragraph("  ", "  ", &format!("{cyclic} {}", convergence_text(&phase.convergence))))
+}
+
+/// What a phase was simulated with, and how sure of it one can be.
+fn convergence_text(used: &Convergence) -> String {
+    let step = format!("steps of {} s ({:.2} %)", number(used.step_s, 3), used.step_error * 100.0);
+    let strata = match used.strata_error {
+        Some(error) => format!("{} spans ({:.2} %)", used.strata, error * 100.0),
+        None => format!("{} spans", used.strata),
+    };
+    let verdict = if used.is_met() { "within" } else { "which misses" };
+    format!(
+        "Simulated in {step} and {strata}; in brackets the error that refinement showed, {verdict} the tolerance of {:.1} %.",
+        used.tolerance * 100.0
+    )
 }
 
 /// All phases as text.

@@ -100,6 +100,12 @@ pub mod kind {
         Pressure [-1, 1, -2, 0, 0, 0], "a pressure", "Pa", "22 bar";
         /// Density, kg/m³.
         Density [-3, 1, 0, 0, 0, 0], "a density", "kg/m3", "1008 kg/m3";
+        /// Gravitational parameter, m³/s².
+        GravitationalParameter [3, 0, -2, 0, 0, 0], "a gravitational parameter", "m3/s2", "398600.44 km3/s2";
+        /// Irradiance, W/m².
+        Irradiance [0, 1, -3, 0, 0, 0], "an irradiance", "W/m2", "238 W/m2";
+        /// Temperature, K.
+        Temperature [0, 0, 0, 0, 1, 0], "a temperature", "K", "300 K";
         /// Price: propellant per angular impulse, kg/(N·m·s).
         Price [-2, 0, 1, 0, 0, 0], "a price of angular impulse", "kg/(N m s)", "1.2 g/(N m s)";
     }

@@ -60,6 +60,7 @@ pub(super) const UNITS: &[Unit] = &[
     unit("in", INCH, LENGTH, false),
     unit("ft", FOOT, LENGTH, false),
     unit("AU", 149_597_870_700.0, LENGTH, false),
+    unit("au", 149_597_870_700.0, LENGTH, false),
     unit("min", 60.0, TIME, false),
     unit("h", 3600.0, TIME, false),
     unit("d", 86_400.0, TIME, false),

@@ -13,7 +13,7 @@ mod wheels;
 pub use faults::Faults;
 pub use mass::{INERTIA_ELEMENTS, MassProperties, MassState, symmetric};
 pub use propulsion::{ExhaustSpeed, Propulsion, PulseLimits, Thruster};
-pub use surface::{Hinge, Material, Surface};
+pub use surface::{Hinge, Material, Shade, Surface};
 pub use tank::Tank;
 pub use wheels::{Wheel, Wheels};
 

@@ -3,7 +3,7 @@
 use nalgebra::{Unit, UnitVector3, Vector3};
 
 use super::Faults;
-use crate::config::{Spec, did_you_mean};
+use crate::config::{self, Spec, did_you_mean};
 use crate::uncertain::{Parameters, Spread, Uncertain};
 
 /// How a kind of surface meets light and air.
@@ -19,6 +19,15 @@ pub struct Material {
 
 /// Axis about which a facet turns to follow the Sun.
 pub type Hinge = UnitVector3<f64>;
+
+/// Where another surface takes the sunlight from a facet.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Shade {
+    /// Index of that surface.
+    pub by: usize,
+    /// Least and largest angle between its normal and the Sun at which it does, rad.
+    pub sun_angle_rad: [f64; 2],
+}
 
 /// One flat facet.
 #[derive(Debug, Clone)]
@@ -37,6 +46,8 @@ pub struct Surface {
     pub both_sides: bool,
     /// How it follows the Sun, if it does.
     pub hinge: Option<Hinge>,
+    /// What takes the sunlight from it, if anything does.
+    pub shade: Option<Shade>,
 }
 
 impl Surface {
@@ -119,5 +130,27 @@ fn facet(spec: &Spec, index: usize, faults: &mut Faults) -> Option<Surface> {
         material,
         both_sides: written.both_sides,
         hinge,
+        shade: match &written.shaded {
+            None => None,
+            Some(shaded) => Some(shade(spec, index, shaded, &format!("{at}.shaded"), faults)?),
+        },
     })
+}
+
+fn shade(spec: &Spec, own: usize, written: &config::Shaded, at: &str, faults: &mut Faults) -> Option<Shade> {
+    let names = spec.surfaces.iter().map(|surface| surface.name.as_str());
+    let by = names.clone().position(|name| name == written.by).filter(|by| *by != own);
+    let Some(by) = by else {
+        let others = names.enumerate().filter(|(k, _)| *k != own).map(|(_, name)| name);
+        let help = did_you_mean(&written.by, others).unwrap_or_else(|| "name another of `surfaces`".to_owned());
+        faults.push(&format!("{at}.by"), format!("`{}` is no other surface", written.by), help);
+        return None;
+    };
+    let (from, to) = (written.from.map_or(0.0, |from| from.0), written.to.0);
+    if !(0.0 <= from && from <= to && to <= std::f64::consts::PI) {
+        let message = "expected angles with 0 ≤ `from` ≤ `to` ≤ 180 deg".to_owned();
+        faults.push(at, message, "give the angles from the shading surface's normal between which it hides the Sun");
+        return None;
+    }
+    Some(Shade { by, sun_angle_rad: [from, to] })
 }
