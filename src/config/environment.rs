@@ -7,11 +7,11 @@ use super::leaf::{Quantity, SpreadQuantity};
 use crate::units::kind;
 
 /// Surroundings, and how well they are known.
-#[derive(Debug, Clone, Deserialize, JsonSchema)]
+#[derive(Debug, Clone, Default, Deserialize, JsonSchema)]
 #[serde(deny_unknown_fields)]
 pub struct Environment {
-    /// Solar activity, which sets the density of the Earth's air.
-    pub solar_activity: SolarActivity,
+    /// Solar activity, which sets the density of the Earth's air. Must be given for orbits under 1,500 km; higher up and elsewhere it does not matter.
+    pub solar_activity: Option<SolarActivity>,
     /// Factor on the density of the atmosphere, such as `1 ± 0.15`. Default: 1.
     pub density_factor: Option<SpreadQuantity<kind::Number>>,
     /// Drag coefficient of the facets, such as `2.2 ± 0.2`. Default: 2.2.

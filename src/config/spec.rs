@@ -33,6 +33,7 @@ pub struct Spec {
     /// When and where the spacecraft flies, and what it does.
     pub mission: Mission,
     /// Surroundings, and how well they are known.
+    #[serde(default)]
     pub environment: Environment,
     /// How the budget is made.
     #[serde(default)]

@@ -33,7 +33,12 @@ enum Course {
 }
 
 impl SolarActivity {
-    pub(super) fn new(written: &config::SolarActivity, parameters: &mut Parameters, faults: &mut Faults) -> Option<Self> {
+    pub(super) fn new(written: Option<&config::SolarActivity>, parameters: &mut Parameters, faults: &mut Faults) -> Option<Self> {
+        // Not given where nothing depends on it.
+        let Some(written) = written else {
+            let nominal = Spread::Fixed(Activity::MODERATE.f107);
+            return Some(Self::spread(Uncertain::fixed(nominal.nominal()), nominal, Course::Level(Activity::MODERATE)));
+        };
         match (written.level, written.f107, &written.cycle) {
             (Some(level), None, None) => {
                 let activity = match level {

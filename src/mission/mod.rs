@@ -53,6 +53,9 @@ pub struct Mission {
     pub body_light: BodyLightShares,
 }
 
+/// Height under which the Earth's air counts, m: the ceiling of the atmosphere model.
+const AIR_BELOW_M: f64 = 1.5e6;
+
 /// Drag coefficient of a plate in free-molecular flow where nothing better is known (common practice).
 const USUAL_DRAG_COEFFICIENT: f64 = 2.2;
 
@@ -65,7 +68,7 @@ impl Mission {
         let start = Epoch::parse(&spec.mission.start)
             .map_err(|error| faults.push("mission.start", error.to_string(), "write a date such as `2029-04-01` or `2029-04-01T12:00:00Z`"))
             .ok();
-        let activity = SolarActivity::new(&spec.environment.solar_activity, parameters, faults);
+        let activity = SolarActivity::new(spec.environment.solar_activity.as_ref(), parameters, faults);
         let factor = spec.environment.density_factor.map_or(Spread::Fixed(1.0), |factor| factor.0);
         let factor = faults.positive_spread("environment.density_factor", factor, "a factor");
         let drag = spec.environment.drag_coefficient.map_or(Spread::Fixed(USUAL_DRAG_COEFFICIENT), |drag| drag.0);
@@ -78,6 +81,11 @@ impl Mission {
         let body_light = surroundings::body_light(&spec.environment, parameters, faults);
         let start = start?;
         let phases = phase::read(spec, start, &files::Files { folder }, parameters, faults);
+        let in_air = |phase: &Phase| phase.trajectory.body().is_earth() && phase.lowest_altitude_m < AIR_BELOW_M;
+        if let Some(phase) = phases.iter().find(|phase| in_air(phase) && spec.environment.solar_activity.is_none()) {
+            let message = format!("is missing: phase {} passes through the Earth's air, whose density follows it", phase.name);
+            faults.push("environment.solar_activity", message, "add `environment: {solar_activity: {level: moderate}}`, or a cycle");
+        }
         if faults.count() > before {
             return None;
         }

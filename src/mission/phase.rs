@@ -41,6 +41,8 @@ pub struct Phase {
     pub unload: UnloadPolicy,
     /// Where on the orbit an unload takes place.
     pub timing: Timing,
+    /// Lowest altitude over the equatorial radius of the body, m.
+    pub lowest_altitude_m: f64,
     /// Whether light and heat of the body count.
     pub body_light: bool,
     /// What else takes propellant.
@@ -94,7 +96,8 @@ pub(super) fn read(spec: &Spec, start: Epoch, files: &Files<'_>, parameters: &mu
             BodyLight::Off => false,
             BodyLight::Auto => altitude_m < BODY_LIGHT_BELOW_M && !trajectory.body().is_sun(),
         };
-        phases.push(Phase { name: written.name.clone(), start_s, duration_s, trajectory, attitude, unload, timing, body_light, events });
+        let (name, lowest_altitude_m) = (written.name.clone(), altitude_m);
+        phases.push(Phase { name, start_s, duration_s, trajectory, attitude, unload, timing, lowest_altitude_m, body_light, events });
         start_s += duration_s;
     }
     phases
