@@ -47,7 +47,9 @@ fn kind(root: &Value, node: &Value) -> String {
     }
     if let Some(options) = own.get("oneOf").and_then(Value::as_array) {
         let words: Vec<&str> = options.iter().filter_map(|option| option.get("const").and_then(Value::as_str)).collect();
-        return words.iter().map(|word| format!("`{word}`")).collect::<Vec<_>>().join(", ");
+        let words = words.iter().map(|word| format!("`{word}`"));
+        let maps = variants(root, own).into_iter().map(|(name, _)| format!("`{name}: {{…}}`"));
+        return words.chain(maps).collect::<Vec<_>>().join(", ");
     }
     match own.get("type") {
         Some(Value::String(name)) if name == "object" => "map".to_owned(),
@@ -59,6 +61,22 @@ fn kind(root: &Value, node: &Value) -> String {
         _ => String::new(),
     }
 }
+
+/// Choices of a key that are maps: their names and what stands in them.
+fn variants<'a>(root: &'a Value, node: &'a Value) -> Vec<(&'a str, &'a Value)> {
+    let options = target(root, node).get("oneOf").and_then(Value::as_array).into_iter().flatten();
+    let maps = options.filter_map(|option| option.get("properties").and_then(Value::as_object));
+    maps.flatten().map(|(name, inner)| (name.as_str(), target(root, inner))).collect()
+}
+
+/// Parts whose keys have a table elsewhere already.
+const TOLD_ELSEWHERE: [&str; 5] = [
+    "mission.phases[].orbit",
+    "mission.phases[].attitude.towards",
+    "mission.phases[].attitude.mix.of[].to",
+    "mission.phases[].attitude.mix.of[].towards",
+    "mission.phases[].attitude.mix.of[].survey",
+];
 
 /// The map that a key opens, if it opens one: itself, or the items of its list.
 fn opens<'a>(root: &'a Value, node: &'a Value) -> Option<(&'a Value, &'static str)> {
@@ -82,12 +100,15 @@ fn section(root: &Value, node: &Value, path: &str, text: &mut String) {
         let _ = writeln!(text, "| `{key}` | {must} | {} | {} |", kind(root, value), description(value));
     }
     for (key, value) in properties {
+        let inner = if path.is_empty() { key.clone() } else { format!("{path}.{key}") };
+        if TOLD_ELSEWHERE.contains(&inner.as_str()) {
+            continue;
+        }
         if let Some((map, items)) = opens(root, value) {
-            let inner = if path.is_empty() { format!("{key}{items}") } else { format!("{path}.{key}{items}") };
-            // A phase may have an orbit of its own: the same keys need no second table.
-            if inner != "mission.phases[].orbit" {
-                section(root, map, &inner, text);
-            }
+            section(root, map, &format!("{inner}{items}"), text);
+        }
+        for (name, map) in variants(root, value) {
+            section(root, map, &format!("{inner}.{name}"), text);
         }
     }
 }
