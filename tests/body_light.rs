@@ -45,7 +45,8 @@ fn reflected_light_against_a_fine_sum() {
                 let to = position - normal * R;
                 let distance = to.norm();
                 let out = normal.dot(&to) / distance;
-                sum -= to / distance * (S / SPEED_OF_LIGHT_M_PER_S / std::f64::consts::PI * normal.dot(sun).max(0.0) * out * area / (distance * distance));
+                sum -= to / distance
+                    * (S / SPEED_OF_LIGHT_M_PER_S / std::f64::consts::PI * normal.dot(sun).max(0.0) * out * area / (distance * distance));
             }
         }
         sum

@@ -138,7 +138,7 @@ impl<'a> Observer<'a> {
     /// Mean visible share of the solar disc over a step.
     fn sunlit_share(&self, middle: Epoch, step_s: f64, sky: &Sky) -> f64 {
         let body = self.phase.trajectory.body();
-        let by_earth = if body.site == Site::Moon { self.beside_the_earth(sky) } else { 1.0 };
+        let by_earth = if body.site == Site::Moon { beside_the_earth(sky) } else { 1.0 };
         if body.is_sun() {
             return by_earth;
         }
@@ -168,10 +168,10 @@ impl<'a> Observer<'a> {
         let offset = |k: usize| step_s * ((k as f64 + 0.5) / SHADOW_SAMPLES as f64 - 0.5);
         by_earth * (0..SHADOW_SAMPLES).map(|k| visible(offset(k))).sum::<f64>() / SHADOW_SAMPLES as f64
     }
+}
 
-    /// Visible share of the solar disc beside the Earth, for a spacecraft near the Moon.
-    fn beside_the_earth(&self, sky: &Sky) -> f64 {
-        let earth_m = sky.earth_m();
-        sunlit_fraction(&(sky.state.position_m - earth_m), &(sky.sun_m - earth_m), Body::EARTH.equatorial_radius_m)
-    }
+/// Visible share of the solar disc beside the Earth, for a spacecraft near the Moon.
+fn beside_the_earth(sky: &Sky) -> f64 {
+    let earth_m = sky.earth_m();
+    sunlit_fraction(&(sky.state.position_m - earth_m), &(sky.sun_m - earth_m), Body::EARTH.equatorial_radius_m)
 }

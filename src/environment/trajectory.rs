@@ -14,7 +14,7 @@ use super::sun::{sun_position_m, sun_velocity_m_per_s};
 #[derive(Debug, Clone)]
 pub enum Trajectory {
     /// An orbit with secular drift.
-    Orbit(Orbit),
+    Orbit(Box<Orbit>),
     /// About the Sun, keeping step with the Earth.
     Companion(Companion),
 }

@@ -48,14 +48,18 @@ impl Plan {
         draws.iter().enumerate().map(|(k, draw)| self.timeline(draw, columns.clone().nth(k).unwrap_or_default())).collect()
     }
 
+    /// Momentum of all rows of the basis in a draw, N·m·s.
+    pub(super) fn rows_in(&self, draw: &Draw) -> Vec<f64> {
+        let values = FeatureValues::new(&self.scenario, &self.nominal);
+        let each = self.basis.features.iter().map(|feature| values.of(feature, draw));
+        let weights = nalgebra::DVector::from_iterator(self.basis.features.len(), each);
+        (&self.basis.matrix * weights).as_slice().to_vec()
+    }
+
     /// Momentum of every window of a stratum in the nominal case, and how often it is unloaded.
     #[must_use]
     pub fn nominal_unloads(&self, stratum: usize) -> (Vec<Vector3<f64>>, Option<UnloadRate>) {
-        let values = FeatureValues::new(&self.scenario, &self.nominal);
-        let weights =
-            nalgebra::DVector::from_iterator(self.basis.features.len(), self.basis.features.iter().map(|f| values.of(f, &self.nominal)));
-        let momentum = &self.basis.matrix * weights;
-        let (windows, rate) = self.unloads(stratum, momentum.as_slice());
+        let (windows, rate) = self.unloads(stratum, &self.nominal_rows);
         (windows.iter().map(|h| h * rate.map_or(1.0, |rate| rate.repeat)).collect(), rate)
     }
 

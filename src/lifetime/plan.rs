@@ -37,6 +37,8 @@ pub struct Plan {
     convergence: Vec<Convergence>,
     pub(super) basis: FoldedBasis,
     pub(super) nominal: Draw,
+    /// Momentum of all rows of the basis in the nominal case, N·m·s.
+    pub(super) nominal_rows: Vec<f64>,
     pub(super) filling: Option<Filling>,
     wheel_torque: Option<Authority>,
     /// Layouts about the centres of mass that matter, and which of them each stratum takes.
@@ -65,6 +67,7 @@ impl Plan {
         let mut plan = Self {
             basis: FoldedBasis::new(&scenario, &strata, &raw, &full),
             nominal: scenario.parameters.nominal(),
+            nominal_rows: Vec::new(),
             filling,
             wheel_torque: scenario.vehicle.wheels.as_ref().map(wheel_torque),
             pricers: Vec::new(),
@@ -78,6 +81,7 @@ impl Plan {
         plan.price_layout()?;
         let history = plan.mass_history();
         plan.basis = FoldedBasis::new(&plan.scenario, &plan.strata, &plan.raw, &history);
+        plan.nominal_rows = plan.rows_in(&plan.nominal);
         plan.price_layout()?;
         Ok(plan)
     }

@@ -129,6 +129,5 @@ fn course(cycle: &config::Cycle, faults: &mut Faults) -> Option<Course> {
         faults.push_also(&at("low"), "the minimum lies above the maximum", "swap them", &at("high"), "the maximum");
         return None;
     }
-    (low?, high?);
-    Some(Course::Cycle { start: start?, period_s: period?, low: cycle.low.0, high: cycle.high.0 })
+    Some(Course::Cycle { start: start?, period_s: period?, low: low?.nominal(), high: high?.nominal() })
 }

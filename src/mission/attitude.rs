@@ -103,6 +103,26 @@ impl Law {
         }
     }
 
+    /// The next time after `time_s` at which the attitude jumps: the end of a dwell or of a part of a mix.
+    #[must_use]
+    pub fn next_jump_s(&self, time_s: f64) -> Option<f64> {
+        match self {
+            Self::Pointing(_) | Self::Spin(..) => None,
+            Self::Survey(survey) => Some((survey.dwell_at(time_s).0 + 1.0) * survey.dwell_s),
+            Self::Mix(period_s, parts) => {
+                let turn = (time_s / period_s).floor() * period_s;
+                let mut end = turn;
+                for (share, law) in parts {
+                    end += share * period_s;
+                    if time_s < end {
+                        return Some(law.next_jump_s(time_s).map_or(end, |own| own.min(end)));
+                    }
+                }
+                Some(turn + period_s)
+            }
+        }
+    }
+
     /// The pointings whose two directions are given by the user, for checking that they fix an attitude.
     pub(super) fn pointings(&self) -> Vec<&Pointing> {
         match self {

@@ -99,7 +99,7 @@ fn stationary(written: &config::Stationary, body: Body, at: &str, start: Epoch, 
     };
     let mean_anomaly_rad = right_ascension_of_longitude(start, written.longitude.0);
     let elements = Elements { semi_major_axis_m, mean_anomaly_rad, ..Elements::default() };
-    Orbit::new(elements, start, body).ok().map(Trajectory::Orbit)
+    Orbit::new(elements, start, body).ok().map(|orbit| Trajectory::Orbit(Box::new(orbit)))
 }
 
 fn keplerian(written: &config::Orbit, body: Body, at: &str, start: Epoch, faults: &mut Faults) -> Option<Trajectory> {
@@ -115,7 +115,7 @@ fn keplerian(written: &config::Orbit, body: Body, at: &str, start: Epoch, faults
         mean_anomaly_rad: angle(&written.mean_anomaly),
     };
     Orbit::new(elements, start, body)
-        .map(Trajectory::Orbit)
+        .map(|orbit| Trajectory::Orbit(Box::new(orbit)))
         .map_err(|error| {
             faults.push(at, error.to_string(), "raise the perigee above the surface; altitudes count from the equatorial radius");
         })

@@ -126,13 +126,15 @@ fn second(
         D::Nadir | D::Zenith | D::Velocity | D::AntiVelocity => D::OrbitNormal,
         _ => D::EclipticNorth,
     });
+    let against = matches!(to, D::Nadir | D::Zenith) && written.survey.is_none();
+    let by_default = match axis.y.abs() < 0.9 {
+        true if against => -Vector3::y(),
+        true => Vector3::y(),
+        false => Vector3::x(),
+    };
     let second_axis = match written.second_axis {
         Some(second) => faults.direction(&format!("{at}.second_axis"), second.0)?,
-        None => {
-            let against = matches!(to, D::Nadir | D::Zenith) && written.survey.is_none();
-            let y = if against { -Vector3::y() } else { Vector3::y() };
-            if axis.y.abs() < 0.9 { y } else { Vector3::x() }
-        }
+        None => by_default,
     };
     // One degree: a second axis nearer to the first says nothing about the turn.
     if axis.cross(&second_axis).norm() < 0.017 {

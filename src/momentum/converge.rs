@@ -5,7 +5,7 @@ use nalgebra::Vector3;
 use super::RawBasis;
 use super::nominal::nominal_value;
 use super::simulate::{Simulator, SpanBasis};
-use super::strata::{Grid, Resolution, Stratum, probe, strata};
+use super::strata::{Grid, Resolution, Stratum, probe, strata, window_s};
 use crate::mission::Scenario;
 use crate::vehicle::MassState;
 
@@ -17,22 +17,20 @@ const MOST_STEPS: usize = 36 * 32;
 const MOST_STRATA: usize = 8;
 /// Share of the tolerance for the steps; the rest is for the strata.
 const FOR_STEPS: f64 = 1.0 / 3.0;
-/// Secular momentum smaller than this share of the cyclic is compared with that share of it: the rounding of a sum that
-/// should vanish must not ask for ever finer steps.
-const SMALL: f64 = 0.1;
 
-/// What a phase was simulated with, and the error that refinement showed, as shares.
+/// What a phase was simulated with, and the error that refinement showed: shares of what the wheels hold before an unload,
+/// the secular momentum of a window and the cyclic on top of it.
 #[derive(Debug, Clone, Copy, PartialEq)]
 pub struct Convergence {
     /// Steps of a cycle.
     pub steps: usize,
     /// Length of a step, s.
     pub step_s: f64,
-    /// Estimated error of secular or cyclic momentum from the steps; `None` if every unload was simulated.
+    /// Estimated error of secular and cyclic momentum from the steps.
     pub step_error: f64,
     /// Strata of the phase.
     pub strata: usize,
-    /// Estimated error of the mean momentum of an unload from the number of strata; `None` where every unload is simulated
+    /// Estimated error of the mean momentum of a window and of the cyclic from the number of strata; `None` where every unload is simulated
     /// or there are too few to tell.
     pub strata_error: Option<f64>,
     /// Tolerance asked for.
@@ -80,11 +78,13 @@ fn steps(simulator: &Simulator<'_>, measure: &Measure) -> (usize, f64) {
         let spans: Vec<_> = (0..3).map(|k| probe(phase, phase.start_s + third * f64::from(k), third, steps)).collect();
         simulator.run(&spans).iter().map(|span| measure.probe(span)).collect()
     };
+    // How many windows of the probe make one of the phase.
+    let windows = window_s(phase, Resolution::Default) / probe(phase, phase.start_s, third, FEWEST_STEPS).window_s();
     let mut steps = FEWEST_STEPS;
     let mut coarse = at(steps);
     loop {
         let fine = at(2 * steps);
-        let change = coarse.iter().zip(&fine).map(|(a, b)| b.change_from(a)).fold(0.0, f64::max);
+        let change = coarse.iter().zip(&fine).map(|(a, b)| b.change_from(a, windows)).fold(0.0, f64::max);
         // Midpoint rule: the error of the coarse one is 4/3 of the change, that of the fine one a third.
         if change * 4.0 / 3.0 <= tolerance {
             return (steps, change * 4.0 / 3.0);
@@ -112,10 +112,12 @@ fn divide(simulator: &Simulator<'_>, measure: &Measure, resolution: Resolution, 
         let error = measure.strata_error(&bases);
         let enough = error.is_none_or(|error| error <= measure.tolerance * (1.0 - FOR_STEPS));
         let finer = Grid { strata: 2 * grid.strata, ..grid };
-        if enough
-            || finer.strata > MOST_STRATA
-            || super::strata::strata(simulator.index(), simulator.phase(), resolution, &finer).len() == strata.len()
-        {
+        let count = |grid: &Grid| super::strata::strata(simulator.index(), simulator.phase(), resolution, grid).len();
+        if count(&finer) == strata.len() {
+            // Every unload has its span: nothing is sampled.
+            return (strata, bases, None, grid);
+        }
+        if enough || finer.strata > MOST_STRATA {
             return (strata, bases, error, grid);
         }
         grid = finer;
@@ -135,11 +137,11 @@ struct Probe {
 }
 
 impl Probe {
-    /// Change from a coarser one, as a share of this.
-    fn change_from(&self, coarse: &Self) -> f64 {
-        let share = |change: f64, of: f64| if of > 0.0 { change / of } else { 0.0 };
-        let secular = share((self.secular - coarse.secular).norm(), self.secular.norm().max(SMALL * self.cyclic));
-        secular.max(share((self.cyclic - coarse.cyclic).abs(), self.cyclic.max(SMALL * self.secular.norm())))
+    /// Change from a coarser one, as a share of what the wheels hold after `windows` windows.
+    fn change_from(&self, coarse: &Self, windows: f64) -> f64 {
+        let held = self.secular.norm() * windows + self.cyclic;
+        let change = (self.secular - coarse.secular).norm() * windows + (self.cyclic - coarse.cyclic).abs();
+        if held > 0.0 { change / held } else { 0.0 }
     }
 }
 
@@ -159,8 +161,8 @@ impl Measure {
         Probe { secular: self.total(&span.secular_inertial), cyclic }
     }
 
-    /// Half the difference between the mean momentum of a window over the odd and over the even strata, as a share: what
-    /// half as many strata would be off by. `None` with fewer than four.
+    /// What half as many strata would be off by, as a share: half the difference between the mean momentum of a window over
+    /// the odd and over the even strata, and the difference between the largest excursions. `None` with fewer than four.
     fn strata_error(&self, spans: &[SpanBasis]) -> Option<f64> {
         if spans.len() < 4 {
             return None;
@@ -168,10 +170,14 @@ impl Measure {
         let mean =
             |span: &SpanBasis| span.windows.iter().map(|parts| self.total(parts).norm()).sum::<f64>() / span.windows.len().max(1) as f64;
         let each: Vec<f64> = spans.iter().map(mean).collect();
-        // Weights 1 ½ … ½ 1 would favour the ends; trapezia of neighbours cancel a trend between odd and even ones.
-        let differences = each.windows(3).map(|three| (three[0] + three[2]) / 2.0 - three[1]).enumerate();
+        // Trapezia of neighbours cancel a trend between odd and even ones.
+        let differences = each.windows(3).map(|three| f64::midpoint(three[0], three[2]) - three[1]).enumerate();
         let alternating: f64 = differences.map(|(k, difference)| if k % 2 == 0 { difference } else { -difference }).sum();
-        let sum: f64 = each.iter().sum();
-        (sum > 0.0).then(|| (alternating / 2.0).abs() / (each.len() - 2) as f64 / (sum / each.len() as f64))
+        let secular = each.iter().sum::<f64>() / each.len() as f64;
+        let largest = |first: usize| spans.iter().skip(first).step_by(2).map(|span| self.probe(span).cyclic).fold(0.0, f64::max);
+        let (odd, even) = (largest(0), largest(1));
+        let held = secular + odd.max(even);
+        let error = (alternating / 2.0).abs() / (each.len() - 2) as f64 + (odd - even).abs();
+        (held > 0.0).then(|| error / held)
     }
 }

@@ -4,7 +4,8 @@ use std::collections::BTreeMap;
 
 use nalgebra::{DMatrix, Vector3};
 
-use super::{RawBasis, Stratum};
+use super::nominal::nominal_value;
+use super::{RawBasis, SpanBasis, Stratum};
 use crate::disturbance::{Factor, Feature};
 use crate::mission::{Phase, Scenario, UnloadPolicy};
 use crate::uncertain::{Draw, ParameterId};
@@ -138,37 +139,73 @@ impl FoldedBasis {
         let masses: Vec<MassState> =
             strata.iter().map(|stratum| scenario.vehicle.mass_state(history.at(stratum.start_s + stratum.duration_s / 2.0))).collect();
         let (offsets, rows) = layout(scenario, strata, raw);
-        let expanded: Vec<Vec<Vec<Term>>> = strata
-            .iter()
-            .zip(&masses)
-            .map(|(stratum, mass)| {
-                let phase = &scenario.mission.phases[stratum.phase];
-                raw.features[stratum.phase].iter().map(|f| expand(&f.feature, scenario, phase, mass)).collect()
-            })
-            .collect();
+        // The factors are those of the phase; only the numbers before them differ from stratum to stratum.
+        let terms_of = |stratum: &Stratum, mass: &MassState| -> Vec<Vec<Term>> {
+            let phase = &scenario.mission.phases[stratum.phase];
+            raw.features[stratum.phase].iter().map(|f| expand(&f.feature, scenario, phase, mass)).collect()
+        };
+        let firsts: Vec<Option<usize>> =
+            (0..scenario.mission.phases.len()).map(|phase| strata.iter().position(|stratum| stratum.phase == phase)).collect();
+        let models: Vec<Vec<Vec<Term>>> =
+            firsts.iter().map(|first| first.map_or_else(Vec::new, |k| terms_of(&strata[k], &masses[k]))).collect();
         let mut index: BTreeMap<&[PlanFactor], usize> = BTreeMap::new();
         index.insert(&[], 0);
-        for (_, factors) in expanded.iter().flatten().flatten() {
+        for (_, factors) in models.iter().flatten().flatten() {
             index.insert(factors, 0);
         }
         for (place, column) in index.values_mut().enumerate() {
             *column = place;
         }
+        let columns: Vec<Vec<Vec<usize>>> = models
+            .iter()
+            .map(|model| model.iter().map(|terms| terms.iter().map(|(_, factors)| index[factors.as_slice()]).collect()).collect())
+            .collect();
+        let nominal = NominalValues { scenario, raw, draw: scenario.parameters.nominal() };
         let mut matrix = DMatrix::zeros(rows, index.len());
-        for (((span, stratum), offset), terms) in raw.spans.iter().zip(strata).zip(&offsets).zip(&expanded) {
+        for (k, (span, stratum)) in raw.spans.iter().zip(strata).enumerate() {
+            let (terms, columns) = (terms_of(stratum, &masses[k]), &columns[stratum.phase]);
             let listed = |vectors: &[Vec<Vector3<f64>>], first: usize, matrix: &mut DMatrix<f64>| {
                 for (k, vectors) in vectors.iter().enumerate() {
-                    add(vectors, terms, &index, first + 3 * k, matrix);
+                    add(vectors, &terms, columns, first + 3 * k, matrix);
                 }
             };
-            listed(&span.windows, offset.0, &mut matrix);
+            listed(&span.windows, offsets[k].0, &mut matrix);
             if keeps_excursions(scenario, stratum) {
-                listed(&span.excursions, offset.1, &mut matrix);
+                listed(&largest(span, &nominal.values(stratum, &masses[k])), offsets[k].1, &mut matrix);
             }
         }
         let features = index.keys().map(|key| key.to_vec()).collect();
         Self { features, matrix, offsets, masses }
     }
+}
+
+/// Excursions of a stratum that a draw is asked for: those that are largest in the nominal case. What fills the wheels in a
+/// draw lies among them or beside one of them, and all 24 would make most of the matrix.
+const EXCURSIONS: usize = 8;
+
+/// Nominal values of features.
+struct NominalValues<'a> {
+    scenario: &'a Scenario,
+    raw: &'a RawBasis,
+    draw: Draw,
+}
+
+impl NominalValues<'_> {
+    fn values(&self, stratum: &Stratum, mass: &MassState) -> Vec<f64> {
+        let features = self.raw.features[stratum.phase].iter();
+        features.map(|f| nominal_value(&f.feature, self.scenario, &self.draw, mass)).collect()
+    }
+}
+
+/// The excursions that are largest in the nominal case, in order of time.
+fn largest(span: &SpanBasis, values: &[f64]) -> Vec<Vec<Vector3<f64>>> {
+    let size = |parts: &[Vector3<f64>]| parts.iter().zip(values).map(|(part, value)| part * *value).sum::<Vector3<f64>>().norm();
+    let sizes: Vec<f64> = span.excursions.iter().map(|parts| size(parts)).collect();
+    let mut order: Vec<usize> = (0..sizes.len()).collect();
+    order.sort_by(|a, b| sizes[*b].total_cmp(&sizes[*a]).then(a.cmp(b)));
+    order.truncate(EXCURSIONS);
+    order.sort_unstable();
+    order.into_iter().map(|k| span.excursions[k].clone()).collect()
 }
 
 /// Whether the momentum within an orbit decides when to unload.
@@ -184,15 +221,14 @@ fn layout(scenario: &Scenario, strata: &[Stratum], raw: &RawBasis) -> (Vec<(usiz
         let windows = rows;
         rows += 3 * span.windows.len();
         offsets.push((windows, rows));
-        rows += if keeps_excursions(scenario, stratum) { 3 * span.excursions.len() } else { 0 };
+        rows += if keeps_excursions(scenario, stratum) { 3 * span.excursions.len().min(EXCURSIONS) } else { 0 };
     }
     (offsets, rows)
 }
 
-fn add(vectors: &[Vector3<f64>], terms: &[Vec<Term>], index: &BTreeMap<&[PlanFactor], usize>, row: usize, matrix: &mut DMatrix<f64>) {
-    for (vector, terms) in vectors.iter().zip(terms) {
-        for (scale, factors) in terms {
-            let Some(column) = index.get(factors.as_slice()) else { continue };
+fn add(vectors: &[Vector3<f64>], terms: &[Vec<Term>], columns: &[Vec<usize>], row: usize, matrix: &mut DMatrix<f64>) {
+    for ((vector, terms), columns) in vectors.iter().zip(terms).zip(columns) {
+        for ((scale, _), column) in terms.iter().zip(columns) {
             let mut place = matrix.fixed_view_mut::<3, 1>(row, *column);
             place += vector * *scale;
         }

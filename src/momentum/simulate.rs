@@ -112,24 +112,59 @@ impl<'a> Simulator<'a> {
         };
         marks.note(0, &momentum, None, attitude_at);
         for step in 0..span.steps() {
-            let time_s = span.start_s + span.step_s * (step as f64 + 0.5);
-            let moment = phase.moment(mission.start, time_s);
-            let sky = moment.sky();
-            let surroundings = observer.step(at(time_s), span.step_s, &sky);
-            let inertial_from_body = phase.attitude.inertial_from_body(&moment, &sky);
-            let spin = phase.attitude.law.spin_at(moment.time_s).filter(|(_, rate)| (rate * span.step_s).abs() > FOLLOWED_RAD);
-            let turns = spin.map_or(1, |_| SPIN_PHASES);
-            for turn in 0..turns {
-                let angle = TAU * f64::from(turn) / f64::from(turns);
-                let turned = spin.map_or(inertial_from_body, |(axis, _)| inertial_from_body * Rotation3::from_axis_angle(&axis, angle));
-                evaluator.fill(&surroundings, &turned.inverse(), &mut torque);
-                for (sum, part) in momentum.iter_mut().zip(&torque) {
-                    *sum += turned * part * (span.step_s / f64::from(turns));
-                }
+            let (from_s, to_s) = (span.start_s + span.step_s * step as f64, span.start_s + span.step_s * (step + 1) as f64);
+            for (from_s, to_s) in self.pieces(from_s, to_s) {
+                self.add(&evaluator, &observer, from_s, to_s, &mut torque, &mut momentum);
             }
-            marks.note(step + 1, &momentum, Some(&torque), attitude_at);
+            marks.note(step + 1, &momentum, span.keeps_torque.then_some(torque.as_slice()), attitude_at);
         }
         marks.finish(span)
+    }
+
+    /// A step cut where the attitude jumps; times after the start of the mission, s.
+    fn pieces(&self, from_s: f64, to_s: f64) -> Vec<(f64, f64)> {
+        // A jump this near to an end of the step is that end.
+        let rounding = 1e-6 * (to_s - from_s);
+        let mut pieces = Vec::with_capacity(1);
+        let mut from = from_s;
+        while let Some(jump) = self.phase.attitude.law.next_jump_s(from - self.phase.start_s + rounding) {
+            let at = self.phase.start_s + jump;
+            if at >= to_s - rounding || at <= from {
+                break;
+            }
+            pieces.push((from, at));
+            from = at;
+        }
+        pieces.push((from, to_s));
+        pieces
+    }
+
+    /// Adds the angular impulse of every feature over a piece of a step to `momentum`; leaves its torque in `torque`.
+    fn add(
+        &self,
+        evaluator: &Evaluator<'_>,
+        observer: &Observer<'_>,
+        from_s: f64,
+        to_s: f64,
+        torque: &mut [Vector3<f64>],
+        momentum: &mut [Vector3<f64>],
+    ) {
+        let (time_s, step_s) = (f64::midpoint(from_s, to_s), to_s - from_s);
+        let (start, attitude) = (self.scenario.mission.start, &self.phase.attitude);
+        let moment = self.phase.moment(start, time_s);
+        let sky = moment.sky();
+        let surroundings = observer.step(start.plus_seconds(time_s), step_s, &sky);
+        let inertial_from_body = attitude.inertial_from_body(&moment, &sky);
+        let spin = attitude.law.spin_at(moment.time_s).filter(|(_, rate)| (rate * step_s).abs() > FOLLOWED_RAD);
+        let turns = spin.map_or(1, |_| SPIN_PHASES);
+        for turn in 0..turns {
+            let angle = TAU * f64::from(turn) / f64::from(turns);
+            let turned = spin.map_or(inertial_from_body, |(axis, _)| inertial_from_body * Rotation3::from_axis_angle(&axis, angle));
+            evaluator.fill(&surroundings, &turned.inverse(), torque);
+            for (sum, part) in momentum.iter_mut().zip(torque.iter()) {
+                *sum += turned * part * (step_s / f64::from(turns));
+            }
+        }
     }
 }
 

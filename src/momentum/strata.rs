@@ -52,6 +52,8 @@ pub struct Span {
     pub cycle_steps: usize,
     /// Steps of the first cycle after which the excursion is taken.
     pub checkpoints: Vec<usize>,
+    /// Whether the torque is kept at the checkpoints.
+    pub keeps_torque: bool,
 }
 
 impl Span {
@@ -88,37 +90,43 @@ const FEWEST: f64 = 4.0;
 /// 8, 12, 16 …; eight windows would all meet the overtone at the same place (seen: 4 % off), nine average it out.
 pub(super) const WINDOWS: usize = 9;
 const CHECKPOINTS: usize = 24;
-const CHECKPOINTS_FULL: usize = 8;
+/// Checkpoints where every span needs them and every unload has its span: memory.
+const CHECKPOINTS_FULL: usize = 12;
+/// With a span for every unload, spans of a phase that have checkpoints at least, evenly spread.
+const SPANS_WITH_CHECKPOINTS: usize = 200;
 
-/// Steps after which a stratum of a survey has had enough windows.
+/// A survey has several windows in the time that one stratum lasts elsewhere, as long as these are no more steps.
 const ENOUGH_STEPS: usize = 4000;
+/// … and no more than this.
+const MOST_WINDOWS: f64 = 4.0;
 /// Dwells in a window of a survey whose wheels are not unloaded at a fixed interval.
 const DWELLS: f64 = 8.0;
 
 /// Divides a phase into strata, in order of time.
 #[must_use]
 pub fn strata(index: usize, phase: &Phase, resolution: Resolution, grid: &Grid) -> Vec<Stratum> {
-    let interval_s = match phase.unload {
-        UnloadPolicy::Every(interval) => Some(interval.min(phase.duration_s)),
-        UnloadPolicy::AtFill(_) | UnloadPolicy::Never => None,
-    };
-    let window_s = window_length(phase, interval_s, resolution);
+    let interval_s = fixed_interval_s(phase);
+    let window_s = window_s(phase, resolution);
     let most = (phase.duration_s / interval_s.unwrap_or(window_s)).max(1.0);
     let wanted = match resolution {
         Resolution::Default => {
-            let least = (phase.duration_s / STRATUM_S).ceil().max(FEWEST);
+            let least = (phase.duration_s / STRATUM_S).ceil().max(FEWEST) * surveyed(phase, window_s, grid.steps);
             (least * grid.strata as f64).min(most)
         }
         Resolution::Full => most,
     };
-    // At least one; a last unload that the phase cuts short counts by its share.
-    let count = wanted.ceil().max(1.0);
-    let duration_s = phase.duration_s / count;
+    let count = to_count(wanted.ceil().max(1.0));
+    let whole_s = match resolution {
+        Resolution::Default => phase.duration_s / count as f64,
+        // Unloads fall where they fall; the last one that the phase cuts short counts by its share.
+        Resolution::Full => interval_s.unwrap_or(window_s),
+    };
     let shape = Shape { phase, window_s, resolution, steps: grid.steps };
-    (0..to_count(count))
+    (0..count)
         .map(|k| {
-            let start_s = phase.start_s + duration_s * k as f64;
-            Stratum { phase: index, start_s, duration_s, interval_s, span: shape.span(start_s, duration_s) }
+            let after_s = whole_s * k as f64;
+            let (start_s, duration_s) = (phase.start_s + after_s, whole_s.min(phase.duration_s - after_s));
+            Stratum { phase: index, start_s, duration_s, interval_s, span: shape.span(start_s, duration_s, &shape.kept(k, count)) }
         })
         .collect()
 }
@@ -127,7 +135,15 @@ pub fn strata(index: usize, phase: &Phase, resolution: Resolution, grid: &Grid) 
 pub(super) fn probe(phase: &Phase, start_s: f64, duration_s: f64, steps: usize) -> Span {
     let window_s = cycle_s(phase) * if phase.attitude.law.dwell_s().is_some() { 4.0 } else { 2.0 };
     let shape = Shape { phase, window_s, resolution: Resolution::Default, steps };
-    shape.span(start_s, duration_s)
+    shape.span(start_s, duration_s, &Kept { place: 0, checkpoints: CHECKPOINTS, torque: true })
+}
+
+/// How many times as many strata a survey has: its windows do not lie about one another's, one is simulated in each.
+fn surveyed(phase: &Phase, window_s: f64, steps: usize) -> f64 {
+    if phase.attitude.law.dwell_s().is_none() {
+        return 1.0;
+    }
+    (ENOUGH_STEPS as f64 * cycle_s(phase) / (window_s * steps as f64)).floor().clamp(1.0, MOST_WINDOWS)
 }
 
 /// Time that the steps of a grid divide, s.
@@ -139,9 +155,18 @@ fn cycle_s(phase: &Phase) -> f64 {
     }
 }
 
-/// Length of a window: the interval between unloads if that is short, else whole orbits of about a day. In a survey the
+/// Time between unloads if it is fixed, s.
+fn fixed_interval_s(phase: &Phase) -> Option<f64> {
+    match phase.unload {
+        UnloadPolicy::Every(interval) => Some(interval.min(phase.duration_s)),
+        UnloadPolicy::AtFill(_) | UnloadPolicy::Never => None,
+    }
+}
+
+/// Length of a window, s: the interval between unloads if that is short, else whole orbits of about a day. In a survey the
 /// interval however long, since what gathers is no steady growth.
-fn window_length(phase: &Phase, interval_s: Option<f64>, resolution: Resolution) -> f64 {
+pub(super) fn window_s(phase: &Phase, resolution: Resolution) -> f64 {
+    let interval_s = fixed_interval_s(phase);
     let orbit_s = phase.cycle_s();
     let about_a_day = (DAY_S / orbit_s).round().max(1.0) * orbit_s;
     match (interval_s, resolution, phase.attitude.law.dwell_s()) {
@@ -150,6 +175,14 @@ fn window_length(phase: &Phase, interval_s: Option<f64>, resolution: Resolution)
         (None, _, Some(dwell_s)) => about_a_day.max(DWELLS * dwell_s).min(phase.duration_s),
         _ => about_a_day,
     }
+}
+
+/// What is kept of one span.
+struct Kept {
+    /// Ninth of the orbit in which a single window begins.
+    place: usize,
+    checkpoints: usize,
+    torque: bool,
 }
 
 /// What the spans of a phase have in common.
@@ -161,33 +194,47 @@ struct Shape<'a> {
 }
 
 impl Shape<'_> {
-    fn span(&self, start_s: f64, duration_s: f64) -> Span {
+    /// What is kept of the span of index `k` of `count`.
+    fn kept(&self, k: usize, count: usize) -> Kept {
+        let every = (count / SPANS_WITH_CHECKPOINTS).max(1);
+        let chosen = k.is_multiple_of(every);
+        let (checkpoints, torque) = match (self.resolution, self.phase.unload) {
+            (Resolution::Full, UnloadPolicy::AtFill(_)) => (CHECKPOINTS_FULL, chosen),
+            (Resolution::Full, _) if !chosen => (0, false),
+            _ => (CHECKPOINTS, true),
+        };
+        // Four ninths of an orbit on from one to the next: neighbours lie far apart.
+        Kept { place: 4 * k % WINDOWS, checkpoints, torque }
+    }
+
+    fn span(&self, start_s: f64, duration_s: f64, kept: &Kept) -> Span {
         let cycle_s = cycle_s(self.phase);
         let window_steps = to_count(self.window_s / cycle_s * self.steps as f64).max(1);
         let step_s = self.window_s / window_steps as f64;
         let surveys = self.phase.attitude.law.dwell_s().is_some();
         let cycle_steps = if surveys { window_steps } else { to_count(cycle_s / step_s).max(1) };
         let compares = self.phase.timing == Timing::Cheapest;
-        let (windows, checkpoints) = match self.resolution {
-            Resolution::Default => (WINDOWS, CHECKPOINTS),
-            Resolution::Full if compares => (WINDOWS, CHECKPOINTS_FULL),
-            Resolution::Full => (1, CHECKPOINTS_FULL),
-        };
+        let one = surveys || (self.resolution == Resolution::Full && !compares);
+        let windows = if one { 1 } else { WINDOWS };
         let part = |k: usize, of: usize| k * cycle_steps / of;
-        let mut windows: Vec<usize> = if surveys && self.resolution == Resolution::Default {
-            let fit = to_count((duration_s / self.window_s).floor());
-            let count = fit.min(WINDOWS).min(ENOUGH_STEPS / window_steps).max(1);
-            (0..count).map(|k| k * window_steps).collect()
+        let mut windows: Vec<usize> = if one && !surveys && !matches!(self.phase.unload, UnloadPolicy::Every(_)) {
+            // Where on the orbit the wheels are full nobody knows: one of nine places after the other.
+            vec![part(kept.place, WINDOWS)]
         } else {
             (0..windows).map(|k| part(k, windows)).collect()
         };
         windows.dedup();
-        let mut checkpoints: Vec<usize> = (1..=checkpoints).map(|k| part(k, checkpoints)).filter(|step| *step > 0).collect();
+        let mut checkpoints: Vec<usize> = (1..=kept.checkpoints).map(|k| part(k, kept.checkpoints)).filter(|step| *step > 0).collect();
         checkpoints.dedup();
-        let mut span = Span { start_s, step_s, window_steps, windows, cycle_steps, checkpoints };
+        let mut span = Span { start_s, step_s, window_steps, windows, cycle_steps, checkpoints, keeps_torque: kept.torque };
         if self.resolution == Resolution::Default {
             // The middle of what is simulated stands in the middle of the stratum.
             span.start_s = start_s + (duration_s - span.length_s()) / 2.0;
+            if surveys {
+                // Unloads meet the dwells and turns of a survey or a mix where they fall: a whole number of windows after the start.
+                let windows = ((span.start_s - self.phase.start_s) / self.window_s).round().max(0.0);
+                span.start_s = self.phase.start_s + windows * self.window_s;
+            }
         }
         span
     }

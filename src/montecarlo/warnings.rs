@@ -42,6 +42,23 @@ pub(super) fn warnings(plan: &Plan, budget: &Budget) -> Vec<String> {
             budget.loaded_kg, budget.needed.nominal
         ));
     }
+    list.extend(of_models(plan));
+    for found in crate::layout::impingements(plan.vehicle()) {
+        let angle = found.angle_rad.to_degrees();
+        list.push(format!(
+            "the plume of {} meets {}, {angle:.0} deg off its axis and {:.2} m away",
+            found.thruster, found.surface, found.distance_m
+        ));
+    }
+    if plan.scenario().mission.phases.iter().any(|phase| phase.unload == UnloadPolicy::Never) {
+        list.push("a phase has no `unload`: what its wheels collect is not charged to propellant".to_owned());
+    }
+    list
+}
+
+/// Warnings about what the models can know.
+fn of_models(plan: &Plan) -> Vec<String> {
+    let mut list = Vec::new();
     for (phase, used) in plan.scenario().mission.phases.iter().zip(plan.convergence()).filter(|(_, used)| !used.is_met()) {
         list.push(format!(
             "the momentum of phase {} is known to {:.1} % only, not to the tolerance of {:.1} %: `budget.resolution: full` simulates every unload",
@@ -58,16 +75,6 @@ pub(super) fn warnings(plan: &Plan, budget: &Budget) -> Vec<String> {
         list.push(format!(
             "the mission ends in {ends:.1}; the geomagnetic model (IGRF-14) is a prediction to 2030 and carried on unchanged beyond"
         ));
-    }
-    for found in crate::layout::impingements(plan.vehicle()) {
-        let angle = found.angle_rad.to_degrees();
-        list.push(format!(
-            "the plume of {} meets {}, {angle:.0} deg off its axis and {:.2} m away",
-            found.thruster, found.surface, found.distance_m
-        ));
-    }
-    if plan.scenario().mission.phases.iter().any(|phase| phase.unload == UnloadPolicy::Never) {
-        list.push("a phase has no `unload`: what its wheels collect is not charged to propellant".to_owned());
     }
     list
 }
