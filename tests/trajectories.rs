@@ -156,7 +156,7 @@ fn density_between_levels_of_activity() {
     let (mut mean, mut worst, mut count) = (0.0, 0.0_f64, 0.0);
     for place in 0..60 {
         let k = f64::from(place);
-        let (latitude, longitude) = ((k * 0.618).fract() * 3.0 - 1.5, (k * 0.755).fract() * 6.28);
+        let (latitude, longitude) = ((k * 0.618).fract() * 3.0 - 1.5, (k * 0.755).fract() * std::f64::consts::TAU);
         let (r, epoch) = (6.978e6, s.mission.start.plus_seconds(k * 5.3e5));
         let position = Vector3::new(latitude.cos() * longitude.cos(), latitude.cos() * longitude.sin(), latitude.sin()) * r;
         let levels: Vec<f64> = activity.levels_at(epoch).iter().map(|level| density_kg_per_m3(epoch, &position, level)).collect();
