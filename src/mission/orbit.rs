@@ -228,6 +228,14 @@ pub(super) fn covers(trajectory: &Trajectory, from: Epoch, duration_s: f64, lowe
         faults.push(at, message, "check the positions and the body named by `about`");
         return false;
     }
-    let _ = (from, duration_s);
+    let Trajectory::Table(table) = trajectory else { return true };
+    let (ephemeris, to) = (&table.0, from.plus_seconds(duration_s));
+    // A second: what the digits of a mission's length leave open.
+    if from.tt_seconds() < ephemeris.start().tt_seconds() - 1.0 || to.tt_seconds() > ephemeris.stop().tt_seconds() + 1.0 {
+        let (start, stop) = (ephemeris.start(), ephemeris.stop());
+        let message = format!("the file covers {start} to {stop}, but the phase lasts from {from} to {to}");
+        faults.push(at, message, "give a longer file, or fit `mission.start` and the phase to it");
+        return false;
+    }
     true
 }
