@@ -65,7 +65,7 @@ fn errors(orbit: &Orbit, to: u32, step: u32) -> (f64, f64) {
     worst
 }
 
-/// Degree 7 between points: the error of Hermite's formula is f⁽⁸⁾/8! × Π(t − t_k)² ≤ a n⁸ h⁸ × 0.32/40320 in the middle interval of
+/// Degree 7 between points: the error of Hermite's formula is f⁽⁸⁾/8! × Π(t − tₖ)² ≤ a n⁸ h⁸ × 0.32/40320 in the middle interval of
 /// four points and some thirty times that in the first and last. At 60 s in a low orbit that is under a micrometre; digits of the
 /// file are 1 µm. At 600 s in the geostationary one and on an ellipse a millimetre and a metre suffice for torques.
 #[test]
@@ -124,6 +124,11 @@ fn segments_that_follow_one_another() {
     assert!((both.stop().tt_seconds() - both.start().tt_seconds() - 7200.0).abs() < 1e-9);
 }
 
+/// The lines of a text whose index is wanted.
+fn lines_of(text: &str, wanted: impl Fn(usize) -> bool) -> String {
+    text.lines().enumerate().filter(|(k, _)| wanted(*k)).flat_map(|(_, line)| [line, "\n"]).collect()
+}
+
 fn first_fault(text: &str) -> String {
     let faults = Ephemeris::parse(text).unwrap_err();
     assert!(faults.iter().all(|fault| !fault.help.is_empty() && fault.line >= 1));
@@ -152,11 +157,11 @@ fn faults_are_told_with_their_line() {
     begins(swap(&line(15), &format!("{} 1", line(15))), "line 15: expected an epoch and 6 numbers");
     begins(swap(&line(23), "2029-01-02T00:00:00 1 2 3 4 5 6"), "line 23: 2029-01-02T00:00:00Z lies outside the segment's span");
     begins(swap(&format!("STOP_TIME = {}", clock(600)), &format!("STOP_TIME = {}", clock(900))), "line 4: the data, ");
-    begins(first_fault(&good.lines().take(13).map(|line| format!("{line}\n")).collect::<String>()), "line 4: the segment has 1 lines");
-    begins(first_fault(&good.lines().take(8).map(|line| format!("{line}\n")).collect::<String>()), "line 8: the file ends within a header");
+    begins(first_fault(&lines_of(&good, |k| k < 13)), "line 4: the segment has 1 lines");
+    begins(first_fault(&lines_of(&good, |k| k < 8)), "line 8: the file ends within a header");
     // An hour at a minute's step of which ten minutes are missing.
     let whole = file(&orbit, 3600, 60);
-    let holed: String = whole.lines().enumerate().filter(|(k, _)| !(30..40).contains(k)).map(|(_, line)| format!("{line}\n")).collect();
+    let holed = lines_of(&whole, |k| !(30..40).contains(&k));
     begins(first_fault(&holed), "line 31: a gap of 660 s within a segment: 2029-01-01T00:17:00Z to 2029-01-01T00:28:00Z");
     let joined = |from: u32| {
         let second = meta(&clock(from), &clock(from + 600)) + &data(&orbit, from, from + 600, 60);
