@@ -2,7 +2,7 @@
 
 use super::Outcome;
 use super::args::{BudgetArgs, Format};
-use super::output::{Failure, Target};
+use super::output::{Failure, Target, warn};
 use super::scenario::{Progress, load, on_threads, plan};
 use crate::montecarlo::Budget;
 use crate::report::{budget_json, budget_text, ledger_table};
@@ -10,7 +10,7 @@ use crate::report::{budget_json, budget_text, ledger_table};
 pub(super) fn run(args: &BudgetArgs) -> Outcome {
     let common = &args.common;
     let loaded = load(common)?;
-    let target = Target::open(&common.output)?;
+    let target = Target::of(common)?;
     let progress = Progress::new(common.quiet);
     let (plan, budget) = on_threads(common, || {
         progress.show("basis", 0, 1);
@@ -29,6 +29,10 @@ pub(super) fn run(args: &BudgetArgs) -> Outcome {
         Format::Json => pretty(&budget_json(scenario, &budget, &momentum, typical.as_ref(), &loaded.provenance)),
         Format::Csv => ledger_table(&budget).to_csv(),
     };
+    // The page for a person has them; a program's reader would not see them.
+    if !common.quiet && (common.format != Format::Text || common.output.out.is_some()) {
+        warn(&budget.warnings);
+    }
     target.finish(&text)?;
     Ok(budget.requirements.iter().all(|checked| checked.met))
 }

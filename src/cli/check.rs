@@ -8,7 +8,7 @@ use super::scenario::load;
 
 pub(super) fn run(common: &Common) -> Outcome {
     let loaded = load(common)?;
-    let target = Target::open(&common.output)?;
+    let target = Target::of(common)?;
     let scenario = &loaded.scenario;
     let text = match common.format {
         Format::Json => pretty(&serde_json::json!({ "schema": "couplet/check/1", "provenance": loaded.provenance, "faults": [] })),
@@ -26,7 +26,7 @@ pub(super) fn run(common: &Common) -> Outcome {
 }
 
 pub(super) fn schema(output: &Output) -> Outcome {
-    let target = Target::open(output)?;
+    let target = Target::open(output, &[])?;
     target.finish(&pretty(&crate::config::schema()))?;
     Ok(true)
 }

@@ -11,6 +11,7 @@ mod output;
 mod scenario;
 mod unload;
 
+use std::io::Write as _;
 use std::process::ExitCode;
 
 use args::{Cli, Command};
@@ -28,9 +29,13 @@ pub fn main() -> ExitCode {
         Ok(cli) => cli,
         Err(error) => {
             // Help and version are answers; clap sends them to standard output and the rest to standard error.
-            let status = if error.use_stderr() { 2 } else { 0 };
-            let _ = error.print();
-            return ExitCode::from(status);
+            return if error.use_stderr() {
+                // Nobody is left to tell if standard error is closed.
+                let _ = error.print();
+                ExitCode::from(2)
+            } else {
+                answer(&error)
+            };
         }
     };
     let outcome = match &cli.command {
@@ -43,9 +48,21 @@ pub fn main() -> ExitCode {
     };
     match outcome {
         Ok(met) => ExitCode::from(u8::from(!met)),
-        Err(failure) => {
-            output::complain(failure.message());
-            ExitCode::from(failure.status())
-        }
+        Err(failure) => failed(&failure),
     }
+}
+
+/// Prints help or version.
+fn answer(help: &clap::Error) -> ExitCode {
+    // Standard output keeps an unfinished line to itself until it is flushed.
+    let printed = help.print().and_then(|()| std::io::stdout().flush());
+    match output::written(printed, "the help") {
+        Ok(()) => ExitCode::SUCCESS,
+        Err(failure) => failed(&failure),
+    }
+}
+
+fn failed(failure: &Failure) -> ExitCode {
+    output::complain(failure.message());
+    ExitCode::from(failure.status())
 }

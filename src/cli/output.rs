@@ -1,11 +1,13 @@
 //! Writing results and complaints.
 
+use std::fmt::Display;
+use std::fs::{File, OpenOptions, Permissions};
 use std::io::{ErrorKind, IsTerminal, Write};
-use std::path::Path;
+use std::path::{Path, PathBuf};
 
 use tempfile::NamedTempFile;
 
-use super::args::Output;
+use super::args::{Common, Output};
 
 /// Why the command could not do its work.
 #[derive(Debug)]
@@ -35,53 +37,152 @@ impl Failure {
 #[derive(Debug)]
 pub(super) enum Target {
     Standard,
-    File { draft: NamedTempFile, path: std::path::PathBuf },
+    /// A device, a pipe or an open stream.
+    Stream {
+        file: File,
+        path: PathBuf,
+    },
+    File {
+        draft: NamedTempFile,
+        path: PathBuf,
+    },
 }
 
 impl Target {
-    /// Opens the target.
+    /// Opens the target of a call that reads the configuration and its overlays.
+    pub(super) fn of(common: &Common) -> Result<Self, Failure> {
+        let inputs: Vec<&Path> = std::iter::once(&common.file).chain(&common.overlays).map(PathBuf::as_path).collect();
+        Self::open(&common.output, &inputs)
+    }
+
+    /// Opens the target, which must be none of the `inputs`.
     ///
     /// A file is written beside its final place and renamed at the end, so that it appears whole or
-    /// not at all.
-    pub(super) fn open(output: &Output) -> Result<Self, Failure> {
+    /// not at all. A symbolic link is followed. What is no regular file is written straight to:
+    /// renaming would put a file in the place of a device or a pipe.
+    pub(super) fn open(output: &Output, inputs: &[&Path]) -> Result<Self, Failure> {
         let Some(path) = &output.out else { return Ok(Self::Standard) };
-        let refused = |reason: String| {
-            Failure::Machine(format!(
-                "error: cannot write {}: {reason}\n  = help: name a file in a folder that you may write to",
-                path.display()
-            ))
-        };
-        if path.is_dir() {
-            return Err(refused("it is a folder".to_owned()));
+        refuse_inputs(path, inputs)?;
+        if path == Path::new("/dev/stdout") {
+            return Ok(Self::Standard);
         }
-        let folder = path.parent().filter(|folder| !folder.as_os_str().is_empty()).unwrap_or_else(|| Path::new("."));
+        check_folder(path)?;
+        match std::fs::metadata(path) {
+            Err(error) if error.kind() == ErrorKind::NotFound && !path.is_symlink() => Self::draft(path.clone(), None),
+            Err(error) if error.kind() == ErrorKind::NotFound => Err(unwritable(path, "it is a symbolic link to nothing", NAME_ANOTHER)),
+            Err(error) => Err(unwritable(path, &error, NAME_ANOTHER)),
+            Ok(found) if found.is_dir() => Err(unwritable(path, "it is a folder", NAME_ANOTHER)),
+            Ok(found) if !found.is_file() || is_stream(path) => Self::stream(path),
+            Ok(found) => {
+                // Renaming would pass over the write protection of the file that is there.
+                let writable = OpenOptions::new().write(true).open(path);
+                let real = writable.and_then(|_| path.canonicalize()).map_err(|error| unwritable(path, &error, NAME_ANOTHER))?;
+                Self::draft(real, Some(found.permissions()))
+            }
+        }
+    }
+
+    fn stream(path: &Path) -> Result<Self, Failure> {
+        // Appending spares what a redirected stream already holds; devices and pipes do not care.
+        let file = OpenOptions::new().append(true).open(path).map_err(|error| unwritable(path, &error, NAME_ANOTHER))?;
+        Ok(Self::Stream { file, path: path.to_path_buf() })
+    }
+
+    fn draft(path: PathBuf, permissions: Option<Permissions>) -> Result<Self, Failure> {
+        let refused = |error| unwritable(&path, format!("no file can be made in its folder: {error}"), NAME_ANOTHER);
         let mut builder = tempfile::Builder::new();
         #[cfg(unix)]
         {
             use std::os::unix::fs::PermissionsExt;
             // The default is private; a result is an ordinary file (the umask still applies).
-            builder.permissions(std::fs::Permissions::from_mode(0o666));
+            builder.permissions(Permissions::from_mode(0o666));
         }
-        let draft = builder.prefix(".couplet-").tempfile_in(folder).map_err(|error| refused(error.to_string()))?;
-        Ok(Self::File { draft, path: path.clone() })
+        let draft = builder.prefix(".couplet-").tempfile_in(folder(&path)).map_err(refused)?;
+        if let Some(permissions) = permissions {
+            draft.as_file().set_permissions(permissions).map_err(refused)?;
+        }
+        Ok(Self::File { draft, path })
     }
 
     /// Writes the whole result.
     pub(super) fn finish(self, text: &str) -> Result<(), Failure> {
         match self {
-            Self::Standard => match std::io::stdout().lock().write_all(text.as_bytes()) {
-                // Whoever read the result has seen enough.
-                Err(error) if error.kind() == ErrorKind::BrokenPipe => Ok(()),
-                Err(error) => Err(Failure::Machine(format!("error: cannot write the result: {error}"))),
-                Ok(()) => Ok(()),
-            },
+            Self::Standard => written(write_to(&mut std::io::stdout().lock(), text), "the result"),
+            Self::Stream { mut file, path } => written(write_to(&mut file, text), path.display()),
             Self::File { mut draft, path } => {
-                let failed = |error: &dyn std::fmt::Display| Failure::Machine(format!("error: cannot write {}: {error}", path.display()));
-                draft.write_all(text.as_bytes()).and_then(|()| draft.as_file().sync_all()).map_err(|error| failed(&error))?;
-                draft.persist(&path).map_err(|error| failed(&error.error))?;
-                Ok(())
+                let synced = write_to(&mut draft, text).and_then(|()| draft.as_file().sync_all());
+                let kept = synced.and_then(|()| draft.persist(&path).map_err(|error| error.error));
+                kept.map(drop).map_err(|error| Failure::Machine(format!("error: cannot write {}: {error}", path.display())))
             }
         }
+    }
+}
+
+const NAME_ANOTHER: &str = "name a file in a folder that you may write to";
+
+fn unwritable(path: &Path, reason: impl Display, help: impl Display) -> Failure {
+    Failure::Machine(format!("error: cannot write {}: {reason}\n  = help: {help}", path.display()))
+}
+
+fn folder(path: &Path) -> &Path {
+    path.parent().filter(|folder| !folder.as_os_str().is_empty()).unwrap_or_else(|| Path::new("."))
+}
+
+/// Whether the path stands for an open stream of the process, even one that leads to a regular file.
+fn is_stream(path: &Path) -> bool {
+    ["/dev/stderr", "/dev/fd", "/proc"].iter().any(|streams| path.starts_with(streams))
+}
+
+/// Refuses a target that is one of the files the result is computed from.
+fn refuse_inputs(path: &Path, inputs: &[&Path]) -> Result<(), Failure> {
+    // Without a canonical path the target is not there yet, or is no file that could be lost.
+    let Ok(target) = path.canonicalize() else { return Ok(()) };
+    let clash = |input: &&&Path| target.is_file() && input.canonicalize().is_ok_and(|input| input == target);
+    match inputs.iter().find(clash) {
+        None => Ok(()),
+        Some(input) => Err(Failure::Input(format!(
+            "error: `--out {}` would overwrite {}, which this call reads\n  = help: name another file, such as result.json",
+            path.display(),
+            input.display()
+        ))),
+    }
+}
+
+/// Names the folder of the target if it is missing or is none.
+fn check_folder(path: &Path) -> Result<(), Failure> {
+    let folder = folder(path);
+    if folder.is_file() {
+        return Err(unwritable(path, format!("{} is a file, not a folder", folder.display()), NAME_ANOTHER));
+    }
+    if folder.try_exists().is_ok_and(|exists| !exists) {
+        let help = format!("create it with `mkdir -p {}`, or name another file", folder.display());
+        return Err(unwritable(path, format!("the folder {} does not exist", folder.display()), help));
+    }
+    if path.to_string_lossy().ends_with(std::path::is_separator) && !path.exists() {
+        return Err(unwritable(path, "it names a folder", NAME_ANOTHER));
+    }
+    Ok(())
+}
+
+fn write_to(to: &mut impl Write, text: &str) -> std::io::Result<()> {
+    to.write_all(text.as_bytes()).and_then(|()| to.flush())
+}
+
+/// What came of writing to a stream.
+pub(super) fn written(outcome: std::io::Result<()>, what: impl Display) -> Result<(), Failure> {
+    match outcome {
+        // Whoever read the result has seen enough.
+        Err(error) if error.kind() == ErrorKind::BrokenPipe => Ok(()),
+        Err(error) => Err(Failure::Machine(format!("error: cannot write {what}: {error}"))),
+        Ok(()) => Ok(()),
+    }
+}
+
+/// Tells each warning in a line of its own on standard error.
+pub(super) fn warn(warnings: &[String]) {
+    for warning in warnings {
+        // A name in it may hold a line break.
+        complain(&format!("warning: {}", warning.replace(char::is_control, " ")));
     }
 }
 

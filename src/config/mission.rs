@@ -12,7 +12,7 @@ use crate::units::kind;
 #[derive(Debug, Clone, Deserialize, JsonSchema)]
 #[serde(deny_unknown_fields)]
 pub struct Mission {
-    /// Start of the first phase, ISO 8601, such as `2029-04-01`.
+    /// Start of the first phase, ISO 8601, such as `2029-04-01`, in the years 1900 to 2200.
     pub start: String,
     /// The orbit, unless a phase has its own.
     pub orbit: Orbit,

@@ -1,6 +1,7 @@
 //! Instants, held as terrestrial time and read and written as UTC.
 
 use std::fmt;
+use std::ops::RangeInclusive;
 
 use jiff::civil::{Date, DateTime};
 use jiff::tz::TimeZone;
@@ -11,6 +12,10 @@ const J2000_UNIX_S: f64 = 946_728_000.0;
 const DAY_S: f64 = 86_400.0;
 /// TT − TAI. Source: IAU 1991 Resolution A4 (exact).
 const TT_MINUS_TAI_S: f64 = 32.184;
+/// Characters of `YYYY-MM-DD`.
+const DATE_LENGTH: usize = 10;
+/// Years, UTC, for which the models of the sky are any good. A year outside is most likely a slip.
+const YEARS: RangeInclusive<i16> = 1900..=2200;
 
 /// Unix second from which TAI − UTC takes each value. Source: IERS Bulletin C; the last leap second announced up to
 /// 2026-12 is that of 2017-01-01, so later instants use 37 s. Before 1972 the first value is used.
@@ -56,6 +61,9 @@ pub enum EpochError {
     /// A time of day stands without `Z` or an offset.
     #[error("`{0}` has a time of day without a zone; write `Z` after it for UTC")]
     NoZone(String),
+    /// A year for which the models do not hold.
+    #[error("`{0}` is outside the years {first} to {last}, for which the models hold", first = YEARS.start(), last = YEARS.end())]
+    OutOfRange(String),
     /// Not a date of the calendar in ISO 8601 form.
     #[error("`{text}` is not a date such as `2028-03-01` or `2028-03-01T12:00:00Z`: {cause}")]
     NotADate {
@@ -67,23 +75,35 @@ pub enum EpochError {
 }
 
 impl Epoch {
-    /// Reads `2028-03-01` (00:00 UTC) or `2028-03-01T12:00:00Z` (or any offset). A leap second `:60` reads as `:59`.
+    /// Reads `2028-03-01` (00:00 UTC) or `2028-03-01T12:00:00Z` (or any offset), in the years 1900 to 2200 UTC. A leap
+    /// second `:60` reads as `:59`.
     ///
     /// # Errors
-    /// [`EpochError::NoZone`] for a time of day without zone, [`EpochError::NotADate`] for anything else unreadable.
+    /// [`EpochError::NoZone`] for a time of day without zone, [`EpochError::OutOfRange`] for another year,
+    /// [`EpochError::NotADate`] for anything else unreadable; a zone in brackets is.
     pub fn parse(text: &str) -> Result<Self, EpochError> {
         let text = text.trim();
-        let not_a_date = |cause: jiff::Error| EpochError::NotADate { text: text.to_owned(), cause: cause.to_string() };
-        match text.parse::<Timestamp>() {
-            Ok(timestamp) => Ok(Self::from_timestamp(timestamp)),
-            Err(_) if is_plain_date(text) => {
-                let date: Date = text.parse().map_err(not_a_date)?;
-                let midnight = TimeZone::UTC.to_timestamp(date.at(0, 0, 0, 0)).map_err(not_a_date)?;
-                Ok(Self::from_timestamp(midnight))
-            }
-            Err(_) if text.parse::<DateTime>().is_ok() => Err(EpochError::NoZone(text.to_owned())),
-            Err(cause) => Err(not_a_date(cause)),
+        let not_a_date = |cause: &dyn fmt::Display| EpochError::NotADate { text: text.to_owned(), cause: cause.to_string() };
+        // The calendar's own reader takes both of these, and leaves the zone of a date without a word.
+        if text.contains('[') {
+            return Err(not_a_date(&"a zone in brackets is not read; write `Z` for UTC or an offset such as `+01:00`"));
         }
+        if !starts_with_date(text) {
+            return Err(not_a_date(&"the date must be written `YYYY-MM-DD`"));
+        }
+        let in_range = |date: Date| if YEARS.contains(&date.year()) { Ok(()) } else { Err(EpochError::OutOfRange(text.to_owned())) };
+        let timestamp = if text.len() == DATE_LENGTH {
+            let date: Date = text.parse().map_err(|cause: jiff::Error| not_a_date(&cause))?;
+            in_range(date)?;
+            TimeZone::UTC.to_timestamp(date.at(0, 0, 0, 0)).map_err(|cause| not_a_date(&cause))?
+        } else {
+            text.parse::<Timestamp>().map_err(|cause| match text.parse::<DateTime>() {
+                Ok(_) => EpochError::NoZone(text.to_owned()),
+                Err(_) => not_a_date(&cause),
+            })?
+        };
+        in_range(TimeZone::UTC.to_datetime(timestamp).date())?;
+        Ok(Self::from_timestamp(timestamp))
     }
 
     /// The instant `seconds` of TT after J2000.0 TT (2000-01-01T12:00:00 TT).
@@ -188,8 +208,11 @@ impl fmt::Display for Epoch {
     }
 }
 
-fn is_plain_date(text: &str) -> bool {
-    !text.contains(['T', 't', ' ', ':'])
+/// Whether the text starts with a date of the shape `YYYY-MM-DD` that ends there or at the mark of a time of day.
+fn starts_with_date(text: &str) -> bool {
+    let shape = |(place, byte): (usize, u8)| if matches!(place, 4 | 7) { byte == b'-' } else { byte.is_ascii_digit() };
+    let after = text.as_bytes().get(DATE_LENGTH);
+    text.len() >= DATE_LENGTH && text.bytes().take(DATE_LENGTH).enumerate().all(shape) && after.is_none_or(|byte| b"Tt ".contains(byte))
 }
 
 fn leap_seconds_at_utc(unix_s: f64) -> f64 {
