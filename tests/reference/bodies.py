@@ -100,7 +100,8 @@ def gap(position, sun, side):
     Positive in sunlight (+1), or while any of the Sun is seen (−1)."""
     to_sun, to_earth = sun - position, -position
     u, w = to_sun / np.linalg.norm(to_sun), to_earth / np.linalg.norm(to_earth)
-    apart = 2.0 * np.arcsin(min(1.0, 0.5 * np.linalg.norm(u - w))) if u @ w > 0 else np.pi - 2.0 * np.arcsin(0.5 * np.linalg.norm(u + w))
+    half = 0.5 * np.linalg.norm(u - w) if u @ w > 0 else 0.5 * np.linalg.norm(u + w)
+    apart = 2.0 * np.arcsin(half) if u @ w > 0 else np.pi - 2.0 * np.arcsin(half)
     disc = np.arcsin(SOLAR_RADIUS_M / np.linalg.norm(to_sun))
     return apart - np.arcsin(EARTH_RADIUS_M / np.linalg.norm(position)) - side * disc
 
