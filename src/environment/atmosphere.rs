@@ -41,6 +41,7 @@ impl Activity {
 /// Total mass density, kg/m³, with anomalous oxygen (which counts for drag), at an Earth-fixed position in metres.
 ///
 /// Zero above 1500 km and for a position or epoch that is not a number; below the ground that of the ground.
+/// Not a number if the model gives none, as for an activity that is not a number.
 /// The model is good to about 15 % for known activity.
 ///
 /// Source: Picone et al., J. Geophys. Res. 107(A12), 1468 (2002), subroutine `gtd7d`.
@@ -67,7 +68,8 @@ pub fn density_kg_per_m3(epoch: Epoch, earth_fixed_position_m: &Vector3<f64>, ac
             magnetic: MagneticActivity::Daily { ap: activity.ap },
         })
         .total_mass;
-    if density.is_finite() { density.max(0.0) } else { 0.0 }
+    // `max` would take a fault of the model, which is not a number, for no air.
+    if density < 0.0 { 0.0 } else { density }
 }
 
 /// Velocity of air that turns with the body, ω × r, m/s, in I. Winds (up to some hundred m/s) are left out.
