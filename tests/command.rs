@@ -211,8 +211,12 @@ fn text_fits_80_columns() {
 #[test]
 fn every_configuration_is_in_order_and_has_a_budget() {
     for file in files(&root().join("configs")) {
-        let file = file.to_str().unwrap();
-        assert_eq!(run(&["check", file]).status.code(), Some(0), "{file}");
+        let file = file.strip_prefix(root()).unwrap().to_str().unwrap();
+        let check = run(&["check", file]);
+        assert_eq!(check.status.code(), Some(0), "{file}");
+        let sentence = text(&check.stdout);
+        assert!(sentence.starts_with(&format!("{file}: in order (")), "{sentence}");
+        assert!(sentence.lines().all(|line| line.chars().count() <= 80), "{sentence}");
         let budget = run(&["budget", file, "--lifetimes", "100", "--quiet"]);
         assert!(matches!(budget.status.code(), Some(0 | 1)), "{file}: {}", text(&budget.stderr));
     }

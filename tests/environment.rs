@@ -276,6 +276,9 @@ fn density_ends_at_its_ceiling_and_takes_any_number() {
     for nothing in [Vector3::new(42_164e3, 0.0, 0.0), Vector3::new(RADIUS + 1.51e6, 0.0, 0.0), Vector3::new(f64::NAN, 0.0, 0.0)] {
         assert!(density(nothing) <= 0.0);
     }
+    // A fault of the model must not pass for no air.
+    let fault = Activity { f107: f64::NAN, ..Activity::MODERATE };
+    assert!(density_kg_per_m3(epoch, &Vector3::new(6.8e6, 0.0, 0.0), &fault).is_nan());
     assert!(density(Vector3::zeros()).is_finite());
     assert!(density_kg_per_m3(Epoch::from_tt_seconds(f64::INFINITY), &Vector3::new(6.8e6, 0.0, 0.0), &Activity::LOW) <= 0.0);
 }

@@ -89,6 +89,7 @@ pub fn density_kg_per_m3(epoch: Epoch, earth_fixed_position_m: &Vector3<f64>, ac
 /// The Earth's air, with anomalous oxygen (which counts for drag), at an Earth-fixed position in metres.
 ///
 /// No air above 1500 km and for a position or epoch that is not a number; below the ground that of the ground.
+/// Not a number if the model gives none, as for an activity that is not a number.
 /// The model is good to about 15 % for known activity.
 ///
 /// Source: Picone et al., J. Geophys. Res. 107(A12), 1468 (2002), subroutine `gtd7d`.
@@ -122,7 +123,8 @@ pub fn earth_gas(epoch: Epoch, earth_fixed_position_m: &Vector3<f64>, activity: 
         + found.atomic_nitrogen
         + found.anomalous_oxygen;
     Gas {
-        density_kg_per_m3: found.total_mass.max(0.0),
+        // `max` would turn what is not a number into no air.
+        density_kg_per_m3: if found.total_mass < 0.0 { 0.0 } else { found.total_mass },
         temperature_k: found.temperature,
         molecular_mass_kg: if molecules > 0.0 { found.total_mass / molecules } else { 0.0 },
     }

@@ -66,7 +66,8 @@ pub struct Geodetic {
 }
 
 impl Geodetic {
-    /// From an Earth-fixed position in metres. Exact to a micrometre above 10 km from the centre, poles included.
+    /// From an Earth-fixed position in metres. Accurate to a micrometre above about 100 km from the
+    /// centre, poles included.
     ///
     /// Source: Bowring (1976), Survey Review 23, 323, the reduced latitude iterated.
     #[must_use]

@@ -21,7 +21,7 @@ pub struct SunOfDate {
     pub mean_obliquity_rad: f64,
 }
 
-/// The low-precision Sun: within 0.01° from 1900 to 2100.
+/// The low-precision Sun: within 0.01° from 1900 to 2050, and within 0.011° to 2100.
 ///
 /// Source: J. Meeus, Astronomical Algorithms, 2nd ed. (1998), chapter 25; obliquity eq. 22.2.
 #[must_use]

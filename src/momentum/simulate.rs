@@ -313,11 +313,12 @@ impl Marks {
             basis.windows.push(gained.iter().map(|part| end.body_from_inertial * part).collect());
         }
         let checkpoints: Vec<(usize, Mark)> = self.checkpoints.into_iter().filter_map(|(step, mark)| Some((step, mark?))).collect();
-        if let Some((_, orbit)) = checkpoints.iter().find(|(step, _)| *step == span.cycle_steps) {
-            for (step, mark) in &checkpoints {
-                let share = *step as f64 / span.cycle_steps as f64;
-                let parts = mark.momentum.iter().zip(&orbit.momentum);
-                basis.excursions.push(parts.map(|(h, whole)| mark.body_from_inertial * (h - whole * share)).collect());
+        if let (Some((begins, start)), Some((_, end))) = (checkpoints.first(), checkpoints.last()) {
+            let whole = gain(start, end);
+            for (step, mark) in checkpoints.iter().skip(1) {
+                let share = (step - begins) as f64 / span.cycle_steps as f64;
+                let parts = gain(start, mark);
+                basis.excursions.push(parts.iter().zip(&whole).map(|(h, whole)| mark.body_from_inertial * (h - whole * share)).collect());
             }
         }
         basis

@@ -50,7 +50,7 @@ pub struct Span {
     pub windows: Vec<usize>,
     /// Steps over which excursions are taken: one orbit; in a survey one window.
     pub cycle_steps: usize,
-    /// Steps of the first cycle after which the excursion is taken.
+    /// Steps after which the excursion is taken; the first is where it begins, with the first window.
     pub checkpoints: Vec<usize>,
     /// Whether the torque is kept at the checkpoints.
     pub keeps_torque: bool,
@@ -67,7 +67,7 @@ impl Span {
     #[must_use]
     pub fn steps(&self) -> usize {
         let last_window = self.windows.iter().max().copied().unwrap_or(0) + self.window_steps;
-        last_window.max(self.cycle_steps)
+        last_window.max(self.checkpoints.last().copied().unwrap_or(0))
     }
 
     /// Length of all that is simulated, s.
@@ -224,7 +224,9 @@ impl Shape<'_> {
             (0..windows).map(|k| part(k, windows)).collect()
         };
         windows.dedup();
-        let mut checkpoints: Vec<usize> = (1..=kept.checkpoints).map(|k| part(k, kept.checkpoints)).filter(|step| *step > 0).collect();
+        let begins = windows.first().copied().unwrap_or(0);
+        let parts = if kept.checkpoints == 0 { 0..0 } else { 0..kept.checkpoints + 1 };
+        let mut checkpoints: Vec<usize> = parts.map(|k| begins + part(k, kept.checkpoints)).collect();
         checkpoints.dedup();
         let mut span = Span { start_s, step_s, window_steps, windows, cycle_steps, checkpoints, keeps_torque: kept.torque };
         if self.resolution == Resolution::Default {

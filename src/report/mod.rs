@@ -3,6 +3,7 @@
 //! In: results. Out: text. Computes nothing.
 
 mod budget;
+mod check;
 mod json;
 mod layout;
 mod momentum;
@@ -12,6 +13,7 @@ mod words;
 
 pub use budget::budget_text;
 pub use budget::ledger_table;
+pub use check::check_text;
 pub use json::{Provenance, budget_json, layout_json, momentum_json, unload_json};
 pub use layout::{layout_table, layout_text};
 pub use momentum::{momentum_table, momentum_text};
