@@ -10,7 +10,7 @@ use crate::report::{budget_json, budget_text, ledger_table};
 pub(super) fn run(args: &BudgetArgs) -> Outcome {
     let common = &args.common;
     let loaded = load(common)?;
-    let target = Target::of(common)?;
+    let target = Target::of(common, &loaded)?;
     let progress = Progress::new(common.quiet);
     let (plan, budget) = on_threads(common, || {
         progress.show("basis", 0, 1);

@@ -9,7 +9,7 @@ use crate::report::check_text;
 
 pub(super) fn run(common: &Common) -> Outcome {
     let loaded = load(common)?;
-    let target = Target::of(common)?;
+    let target = Target::of(common, &loaded)?;
     let text = match common.format {
         Format::Json => pretty(&serde_json::json!({ "schema": "couplet/check/1", "provenance": loaded.provenance, "faults": [] })),
         Format::Text | Format::Csv => check_text(&loaded.scenario, &loaded.provenance),

@@ -11,7 +11,7 @@ use crate::report::{layout_json, layout_table, layout_text};
 
 pub(super) fn run(common: &Common) -> Outcome {
     let loaded = load(common)?;
-    let target = Target::of(common)?;
+    let target = Target::of(common, &loaded)?;
     let vehicle = &loaded.scenario.vehicle;
     let study = on_threads(common, || Study::new(vehicle))?;
     let requirements = check_layout(&loaded.scenario.requirements, &study.cases);

@@ -9,7 +9,7 @@ use crate::report::{momentum_json, momentum_table, momentum_text};
 
 pub(super) fn run(common: &Common) -> Outcome {
     let loaded = load(common)?;
-    let target = Target::of(common)?;
+    let target = Target::of(common, &loaded)?;
     let plan = on_threads(common, || plan(loaded.scenario, common))??;
     let phases = plan.summary();
     let text = match common.format {

@@ -8,6 +8,7 @@ use std::path::{Path, PathBuf};
 use tempfile::NamedTempFile;
 
 use super::args::{Common, Output};
+use super::scenario::Loaded;
 
 /// Why the command could not do its work.
 #[derive(Debug)]
@@ -49,9 +50,11 @@ pub(super) enum Target {
 }
 
 impl Target {
-    /// Opens the target of a call that reads the configuration and its overlays.
-    pub(super) fn of(common: &Common) -> Result<Self, Failure> {
-        let inputs: Vec<&Path> = std::iter::once(&common.file).chain(&common.overlays).map(PathBuf::as_path).collect();
+    /// Opens the target of a call that reads the configuration, its overlays and the files they name.
+    pub(super) fn of(common: &Common, loaded: &Loaded) -> Result<Self, Failure> {
+        let folder = common.file.parent().unwrap_or_else(|| Path::new(""));
+        let named: Vec<PathBuf> = loaded.provenance.ephemerides.keys().map(|file| folder.join(file)).collect();
+        let inputs: Vec<&Path> = std::iter::once(&common.file).chain(&common.overlays).chain(&named).map(PathBuf::as_path).collect();
         Self::open(&common.output, &inputs)
     }
 

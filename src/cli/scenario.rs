@@ -5,6 +5,7 @@ use indicatif::{ProgressBar, ProgressStyle};
 use super::args::Common;
 use super::output::{Failure, styled};
 use crate::config::{Diagnostic, Document, ResolutionChoice, read, render_all};
+use crate::environment::Trajectory;
 use crate::lifetime::{Plan, PlanError};
 use crate::mission::Scenario;
 use crate::momentum::Resolution;
@@ -32,12 +33,22 @@ pub(super) fn load(common: &Common) -> Result<Loaded, Failure> {
         version: env!("CARGO_PKG_VERSION"),
         config: common.file.display().to_string(),
         config_sha256: document.sha256(),
+        ephemerides: ephemerides(&scenario),
         overlays: common.overlays.iter().map(|overlay| overlay.display().to_string()).collect(),
         settings: common.settings.clone(),
         seed: scenario.settings.seed,
         lifetimes: scenario.settings.lifetimes,
     };
     Ok(Loaded { scenario, provenance })
+}
+
+/// Name and SHA-256 of every ephemeris file that a phase flies.
+fn ephemerides(scenario: &Scenario) -> std::collections::BTreeMap<String, String> {
+    let tables = scenario.mission.phases.iter().filter_map(|phase| match &phase.trajectory {
+        Trajectory::Table(table) => Some(&table.0),
+        _ => None,
+    });
+    tables.map(|ephemeris| (ephemeris.file().to_owned(), ephemeris.sha256().to_owned())).collect()
 }
 
 /// Simulates the mission.

@@ -15,7 +15,7 @@ pub(super) fn run(args: &UnloadArgs) -> Outcome {
     let common = &args.common;
     let asked = args.momentum.as_deref().map(momentum).transpose()?;
     let loaded = load(common)?;
-    let target = Target::of(common)?;
+    let target = Target::of(common, &loaded)?;
     let plan = on_threads(common, || plan(loaded.scenario, common))??;
     let found = match asked {
         Some(momentum) => Some(plan.unload_in(0, momentum)),

@@ -3,6 +3,7 @@
 use std::sync::Arc;
 
 use nalgebra::Vector3;
+use sha2::{Digest, Sha256};
 
 use super::epoch::Epoch;
 use super::oem::{EphemerisError, Point, Reader, Segment};
@@ -26,6 +27,8 @@ const ROUNDING_S: f64 = 1e-3;
 pub struct Ephemeris {
     centre: String,
     object: String,
+    file: String,
+    sha256: String,
     pieces: Arc<Vec<Piece>>,
 }
 
@@ -61,7 +64,9 @@ impl Ephemeris {
         if !faults.is_empty() {
             return Err(faults);
         }
-        Ok(Self { centre: first.centre.clone(), object: first.object.clone(), pieces: Arc::new(pieces) })
+        let digit = |four: u8| char::from_digit(u32::from(four), 16).unwrap_or('0');
+        let sha256 = Sha256::digest(text).iter().flat_map(|byte| [digit(byte >> 4), digit(byte & 15)]).collect();
+        Ok(Self { centre: first.centre.clone(), object: first.object.clone(), file: String::new(), sha256, pieces: Arc::new(pieces) })
     }
 
     /// Name of the centre, in capitals.
@@ -74,6 +79,25 @@ impl Ephemeris {
     #[must_use]
     pub fn object(&self) -> &str {
         &self.object
+    }
+
+    /// The same, read from `file`.
+    #[must_use]
+    pub fn named(mut self, file: &str) -> Self {
+        file.clone_into(&mut self.file);
+        self
+    }
+
+    /// The file it was read from, as the configuration names it; empty if it is not known.
+    #[must_use]
+    pub fn file(&self) -> &str {
+        &self.file
+    }
+
+    /// SHA-256 of the text it was read from, hexadecimal.
+    #[must_use]
+    pub fn sha256(&self) -> &str {
+        &self.sha256
     }
 
     /// First usable instant.

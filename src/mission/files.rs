@@ -44,7 +44,7 @@ impl Files<'_> {
                     faults.push(at, message, "name the centre of the file with `about`");
                     return None;
                 }
-                Some(Trajectory::Table(Box::new((ephemeris, *body))))
+                Some(Trajectory::Table(Box::new((ephemeris.named(file), *body))))
             }
             Err(found) => {
                 for fault in found.iter().take(TOLD) {

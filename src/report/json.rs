@@ -24,6 +24,8 @@ pub struct Provenance {
     pub config: String,
     /// SHA-256 of the merged configuration.
     pub config_sha256: String,
+    /// Ephemeris files that the phases fly, each with its SHA-256.
+    pub ephemerides: std::collections::BTreeMap<String, String>,
     /// Overlay files in order.
     pub overlays: Vec<String>,
     /// Settings of the command line in order.
