@@ -4,6 +4,7 @@
 //! the registry of its uncertain parameters. Knows nothing of orbits or disturbances.
 
 mod faults;
+mod feed;
 mod mass;
 mod propulsion;
 mod surface;
@@ -11,6 +12,7 @@ mod tank;
 mod wheels;
 
 pub use faults::Faults;
+pub use feed::{Feed, PressureLaw};
 pub use mass::{INERTIA_ELEMENTS, MassProperties, MassState, symmetric};
 pub use propulsion::{ExhaustSpeed, Propulsion, PulseLimits, Thruster};
 pub use surface::{Hinge, Material, Shade, Surface};
