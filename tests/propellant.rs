@@ -161,16 +161,12 @@ fn momentum_of_a_burn() {
     let (dry, tank_m) = (Vector3::new(0.02, -0.01, 1.1), Vector3::new(0.05, 0.0, 0.3));
     let (dry_kg, start_kg) = (800.0, 400.0);
     let centre = |used: f64| (dry * dry_kg + tank_m * (start_kg - used)) / (dry_kg + start_kg - used);
-    let burn = Burn {
-        position_m: Vector3::new(0.0, 0.0, -0.2),
-        force_n: Vector3::new(3.0, -2.0, 420.0),
-        flow_kg_per_s: 0.14,
-        propellant_kg: 350.0,
-    };
+    let (position, force_n) = (Vector3::new(0.0, 0.0, -0.2), Vector3::new(3.0, -2.0, 420.0));
+    let burn = Burn { torque_n_m: position.cross(&force_n), force_n, flow_kg_per_s: 0.14, propellant_kg: 350.0 };
     let steps = 100_000;
     let dt = burn.duration_s() / f64::from(steps);
     let plain: Vector3<f64> =
-        (0..steps).map(|k| (burn.position_m - centre(burn.flow_kg_per_s * dt * (f64::from(k) + 0.5))).cross(&burn.force_n) * dt).sum();
+        (0..steps).map(|k| (position - centre(burn.flow_kg_per_s * dt * (f64::from(k) + 0.5))).cross(&burn.force_n) * dt).sum();
     let got = burn.momentum_n_m_s(centre);
     assert!((got - plain).norm() < 1e-3 * plain.norm(), "{got:?} {plain:?}");
 }

@@ -17,7 +17,7 @@ pub(super) fn run(args: &BudgetArgs) -> Outcome {
         let plan = plan(loaded.scenario, common)?;
         let settings = plan.scenario().settings.clone();
         let budget = Budget::new(&plan, settings.seed, settings.lifetimes, &|step, done, of| progress.show(step, done, of))
-            .map_err(|error| Failure::Machine(format!("error: cannot keep the lifetimes in a temporary file: {error}")))?;
+            .map_err(|error| Failure::Machine(format!("error: the lifetimes could not be flown to their end: {error}")))?;
         Ok::<_, Failure>((plan, budget))
     })??;
     progress.finish();

@@ -59,11 +59,17 @@ pub(super) fn plan(scenario: Scenario, common: &Common) -> Result<Plan, Failure>
     };
     let margin = scenario.settings.margin;
     Plan::new(scenario, resolution, margin).map_err(|error| {
-        let PlanError::NotServed { .. } = &error;
         let file = common.file.display();
-        Failure::Input(format!(
-            "error: {error}\n --> {file}: `thrusters`\n  = help: `couplet layout {file}` shows what the layout can do; turn or add a thruster, or set `propulsion.net_force: any`"
-        ))
+        let (place, help) = match &error {
+            PlanError::NotServed { .. } => (
+                "thrusters",
+                format!("`couplet layout {file}` shows what the layout can do; turn or add a thruster, or set `propulsion.net_force: any`"),
+            ),
+            PlanError::BurnTooLarge { .. } => {
+                ("tank.loaded", "load more propellant, or lower the Δv of this burn or of those before it".to_owned())
+            }
+        };
+        Failure::Input(format!("error: {error}\n --> {file}: `{place}`\n  = help: {help}"))
     })
 }
 

@@ -4,7 +4,8 @@ use schemars::JsonSchema;
 use serde::Deserialize;
 
 use super::attitude::Attitude;
-use super::leaf::{Quantity, SpreadQuantity, SpreadTriple, Triple};
+use super::event::Event;
+use super::leaf::Quantity;
 use super::orbit::Orbit;
 use crate::units::kind;
 
@@ -62,40 +63,6 @@ pub enum Timing {
     Due,
     /// At the point of the next orbit where it takes least propellant: in a turning attitude the same momentum meets different thrusters.
     Cheapest,
-}
-
-/// One thing that takes propellant: give `rate_damping` or `slews`.
-#[derive(Debug, Clone, Deserialize, JsonSchema)]
-#[serde(deny_unknown_fields)]
-pub struct Event {
-    /// Name, such as `tip-off`.
-    pub name: String,
-    /// Damping of the rates after separation.
-    pub rate_damping: Option<RateDamping>,
-    /// Slews made on thrusters.
-    pub slews: Option<Slews>,
-}
-
-/// Damping of body rates with thrusters.
-#[derive(Debug, Clone, Deserialize, JsonSchema)]
-#[serde(deny_unknown_fields)]
-pub struct RateDamping {
-    /// Rates about x, y, z before damping, such as `0 0 0 ± 0.8 deg/s`.
-    pub rates: SpreadTriple<kind::AngularRate>,
-}
-
-/// Rest-to-rest slews on thrusters.
-#[derive(Debug, Clone, Deserialize, JsonSchema)]
-#[serde(deny_unknown_fields)]
-pub struct Slews {
-    /// Axis of the rotation in the body frame, any length but zero.
-    pub axis: Triple<kind::Number>,
-    /// Angle of one slew, such as `90 deg`.
-    pub angle: Quantity<kind::Angle>,
-    /// Highest rate; a slew too short to reach it is limited by the torque of the thrusters. Such as `0.3 deg/s`.
-    pub rate: Quantity<kind::AngularRate>,
-    /// How many in the phase, such as `24 ± 6`.
-    pub count: SpreadQuantity<kind::Number>,
 }
 
 /// How the budget is made.

@@ -12,6 +12,7 @@ mod decode;
 mod diagnostic;
 mod document;
 mod environment;
+mod event;
 mod leaf;
 mod long_form;
 mod mission;
@@ -38,8 +39,9 @@ pub use decode::decode;
 pub use diagnostic::{Diagnostic, Mark, Related, Severity, Site};
 pub use document::Document;
 pub use environment::{Accommodation, ActivityLevel, Atmosphere, BodyLight, Cycle, Environment, SolarActivity, Wind};
+pub use event::{AxisTurn, Burn, Deadband, Event, Hold, RateDamping, SafeMode, Slews, SpinChange, When};
 pub use leaf::{Quantity, SpreadQuantity, SpreadTriple, Triple};
-pub use mission::{Axis, Budget, Event, Figure, Mission, Phase, RateDamping, Requirement, ResolutionChoice, Slews, Timing, Unload};
+pub use mission::{Axis, Budget, Figure, Mission, Phase, Requirement, ResolutionChoice, Timing, Unload};
 pub use nearest::{did_you_mean, known, nearest};
 pub use orbit::{About, LagrangePoint, Orbit, OwnBody, Stationary};
 pub use path::{Path, Segment};
@@ -47,7 +49,8 @@ pub use reference::reference;
 pub use render::{render_all, sort, to_json};
 pub use source::{Place, Source};
 pub use spacecraft::{
-    Material, NetForceChoice, Plume, Propulsion, PulsePerformance, Shaded, Spacecraft, Surface, Tank, Thruster, Wheel, Wheels,
+    Blowdown, Engine, Material, NetForceChoice, OneTank, Plume, PressureLaw, PressurePoint, Propulsion, PulsePerformance, Shaded,
+    Spacecraft, Surface, Tank, Thruster, Wheel, Wheels,
 };
 pub use spec::{Spec, read, schema};
 pub use walk::{Leaf, check_structure};

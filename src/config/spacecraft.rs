@@ -109,6 +109,8 @@ pub struct Propulsion {
     pub net_force: NetForceChoice,
     /// Pulses that one thruster is qualified for. Default: not stated, not checked.
     pub qualified_pulses: Option<Quantity<kind::Number>>,
+    /// How thrust and exhaust speed of thrusters and engines follow the feed pressure. Default: thrust in proportion, exhaust speed not at all.
+    pub pressure_law: Option<PressureLaw>,
 }
 
 /// A plume as a cone.
@@ -166,18 +168,98 @@ pub struct Thruster {
     pub exhaust_speed: Option<SpreadQuantity<kind::Speed>>,
 }
 
-/// The propellant tank; its feed pressure is taken as constant.
+/// The propellant: in one tank, given by `loaded` and `position`, or in several `tanks`.
 #[derive(Debug, Clone, Deserialize, JsonSchema)]
 #[serde(deny_unknown_fields)]
 pub struct Tank {
     /// Propellant loaded, such as `34 kg`.
-    pub loaded: Quantity<kind::Mass>,
+    pub loaded: Option<Quantity<kind::Mass>>,
     /// Centre of the tank in the body frame, such as `0 0 0.5 m`.
-    pub position: Triple<kind::Length>,
+    pub position: Option<Triple<kind::Length>>,
+    /// Several tanks, drained one after the other in the order of this list.
+    #[serde(default)]
+    pub tanks: Vec<OneTank>,
+    /// Expansion of a gas that presses the propellant out. Default: a regulator holds the feed pressure constant.
+    pub blowdown: Option<Blowdown>,
+    /// Error of the mass loaded, such as `0 ± 0.2 kg`; above zero is more than stated. Default: none.
+    pub loading_error: Option<SpreadQuantity<kind::Mass>>,
     /// Propellant that cannot be used, as a share of what is loaded, such as `2 %`. Default: none.
     pub residual: Option<SpreadQuantity<kind::Number>>,
     /// Propellant lost through valves, such as `15 g/yr`. Default: none.
     pub leakage: Option<SpreadQuantity<kind::MassRate>>,
+}
+
+/// One of several tanks.
+#[derive(Debug, Clone, Deserialize, JsonSchema)]
+#[serde(deny_unknown_fields)]
+pub struct OneTank {
+    /// Name, such as `upper`.
+    pub name: String,
+    /// Propellant loaded, such as `17 kg`.
+    pub loaded: Quantity<kind::Mass>,
+    /// Centre of the tank in the body frame, such as `0 0.4 0.5 m`.
+    pub position: Triple<kind::Length>,
+}
+
+/// A gas that expands as propellant leaves; all tanks share it. Give `volume` or `ratio`.
+#[derive(Debug, Clone, Deserialize, JsonSchema)]
+#[serde(deny_unknown_fields)]
+pub struct Blowdown {
+    /// Feed pressure with the tanks as loaded, such as `22 bar`.
+    pub pressure: Quantity<kind::Pressure>,
+    /// Volume of all tanks, such as `0.048 m3`.
+    pub volume: Option<Quantity<kind::Volume>>,
+    /// Pressure as loaded over pressure when empty at constant temperature, such as `4`.
+    pub ratio: Option<Quantity<kind::Number>>,
+    /// Density of the propellant, such as `1008 kg/m3`.
+    pub propellant_density: Quantity<kind::Density>,
+    /// Exponent of the expansion: 1 at constant temperature, up to 1.67 without heat. Default: 1.
+    pub exponent: Option<Quantity<kind::Number>>,
+}
+
+/// How thrust and exhaust speed follow the feed pressure: give the powers or a table.
+#[derive(Debug, Clone, Deserialize, JsonSchema)]
+#[serde(deny_unknown_fields)]
+pub struct PressureLaw {
+    /// Power of the pressure with which thrust goes, such as `0.85`. Default: 1.
+    pub thrust_power: Option<Quantity<kind::Number>>,
+    /// Power of the pressure with which exhaust speed goes, such as `0.04`. Default: 0.
+    pub exhaust_speed_power: Option<Quantity<kind::Number>>,
+    /// Shares by feed pressure, rising. Between the entries a straight line; beyond them the last value.
+    #[serde(default)]
+    pub table: Vec<PressurePoint>,
+}
+
+/// One point of the table.
+#[derive(Debug, Clone, Deserialize, JsonSchema)]
+#[serde(deny_unknown_fields)]
+pub struct PressurePoint {
+    /// Feed pressure, such as `10 bar`.
+    pub pressure: Quantity<kind::Pressure>,
+    /// Share of the stated thrust, such as `55 %`.
+    pub thrust: Quantity<kind::Number>,
+    /// Share of the stated exhaust speed, such as `97 %`.
+    pub exhaust_speed: Quantity<kind::Number>,
+}
+
+/// An engine for orbit burns.
+#[derive(Debug, Clone, Deserialize, JsonSchema)]
+#[serde(deny_unknown_fields)]
+pub struct Engine {
+    /// Name, such as `main`.
+    pub name: String,
+    /// Thrust, such as `20 N ± 3 %`.
+    pub thrust: SpreadQuantity<kind::Force>,
+    /// Specific impulse, such as `225 s ± 1 %`; or give `exhaust_speed`.
+    pub isp: Option<SpreadQuantity<kind::Time>>,
+    /// Exhaust speed, such as `2206 m/s`; or give `isp`.
+    pub exhaust_speed: Option<SpreadQuantity<kind::Speed>>,
+    /// Position of the nozzle in the body frame, such as `0 0 -0.1 m`.
+    pub position: Triple<kind::Length>,
+    /// Direction in which it pushes the spacecraft, any length but zero, such as `0 0 1`.
+    pub push: Triple<kind::Number>,
+    /// Angle of the push from there about two axes across it, such as `0 ± 0.3 deg`. Default: exact.
+    pub misalignment: Option<SpreadQuantity<kind::Angle>>,
 }
 
 /// The wheel array.

@@ -6,8 +6,8 @@ use serde_yaml::Value;
 
 use super::leaf::{self, Form};
 use super::{
-    Budget, Diagnostic, Document, Environment, Material, Mission, Path, Propulsion, Requirement, Spacecraft, Surface, Tank, Thruster,
-    Wheels, check_structure, decode,
+    Budget, Diagnostic, Document, Engine, Environment, Material, Mission, Path, Propulsion, Requirement, Spacecraft, Surface, Tank,
+    Thruster, Wheels, check_structure, decode,
 };
 
 /// A spacecraft, its mission and what is asked of it.
@@ -26,7 +26,10 @@ pub struct Spec {
     pub propulsion: Propulsion,
     /// The thrusters.
     pub thrusters: Vec<Thruster>,
-    /// The propellant tank.
+    /// Engines for orbit burns, beside the thrusters.
+    #[serde(default)]
+    pub engines: Vec<Engine>,
+    /// The propellant.
     pub tank: Tank,
     /// The wheel array. Default: no wheels.
     pub wheels: Option<Wheels>,

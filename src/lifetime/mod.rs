@@ -3,14 +3,19 @@
 //! [`Plan`] holds all that chance does not touch; a draw of everything uncertain turns it into an
 //! [`Outcome`]. Flying is pure, and flying many draws at once gives the same outcomes.
 
+mod audit;
 mod engine;
+mod events;
+mod flight;
+mod modulation;
 mod outcome;
 mod plan;
 mod policy;
 mod summary;
 mod timing;
 
-pub use outcome::Outcome;
+pub use audit::{Imbalance, audit_momentum, audit_propellant};
+pub use outcome::{Outcome, TooLarge};
 pub use plan::{Plan, PlanError};
 pub use policy::UnloadRate;
 pub use summary::{PhaseSummary, TypicalUnload};

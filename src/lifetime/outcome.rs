@@ -2,6 +2,17 @@
 
 use crate::propellant::{ROWS, Row};
 
+/// A burn that asks for more propellant than is left.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct TooLarge {
+    /// Index of its stratum and of its event in the phase.
+    pub place: (usize, usize),
+    /// What it asks for, kg.
+    pub asks_kg: f64,
+    /// What is left, kg.
+    pub left_kg: f64,
+}
+
 /// What one lifetime did.
 #[derive(Debug, Clone, PartialEq)]
 pub struct Outcome {
@@ -18,6 +29,10 @@ pub struct Outcome {
     pub life_s: Option<f64>,
     /// Shortest time between unloads, s.
     pub shortest_interval_s: Option<f64>,
+    /// Propellant left at the end, kg; below zero it is what the mission lacks.
+    pub left_kg: f64,
+    /// The first burn that asks for more propellant than is left.
+    pub too_large: Option<TooLarge>,
     /// Impossible unloads: angular impulses that the layout cannot make, counted like unloads.
     pub unserved: f64,
 }
@@ -35,9 +50,11 @@ impl Outcome {
         ROWS.into_iter().filter(|row| row.is_attitude_control()).map(|row| self.row(row)).sum()
     }
 
-    /// Propellant that must be on board: attitude control, leakage and residual, kg. Margin is not burnt.
+    /// Propellant that must be on board: attitude control, orbit burns, leakage, residual and what was loaded too little, kg. Margin
+    /// is not burnt.
     #[must_use]
     pub fn needed_kg(&self) -> f64 {
-        self.attitude_total_kg() + self.row(Row::Leakage) + self.row(Row::Residual)
+        let others = [Row::OrbitBurns, Row::Leakage, Row::Residual, Row::LoadingError];
+        self.attitude_total_kg() + others.into_iter().map(|row| self.row(row)).sum::<f64>()
     }
 }

@@ -26,6 +26,18 @@ pub enum PlanError {
         /// The choice in force: `zero` or `any`.
         net_force: &'static str,
     },
+    /// A burn asks for more propellant than is there.
+    #[error("the burn `{event}` of phase {phase} asks for {asks_kg:.2} kg, but {left_kg:.2} kg are left by then")]
+    BurnTooLarge {
+        /// Name of the phase.
+        phase: String,
+        /// Name of the event.
+        event: String,
+        /// What it asks for, kg.
+        asks_kg: f64,
+        /// What is left, kg.
+        left_kg: f64,
+    },
 }
 
 /// A mission ready to be flown with any draw.
@@ -44,6 +56,8 @@ pub struct Plan {
     /// Layouts about the centres of mass that matter, and which of them each stratum takes.
     pub(super) pricers: Vec<Pricer>,
     pub(super) pricer_of: Vec<usize>,
+    /// Shares of the time that burning thrusters are on where that holds the attitude.
+    pub(super) duties: super::modulation::Duties,
     /// Margin on attitude control, as a share.
     pub(super) margin: f64,
 }
@@ -72,6 +86,7 @@ impl Plan {
             wheel_torque: scenario.vehicle.wheels.as_ref().map(wheel_torque),
             pricers: Vec::new(),
             pricer_of: Vec::new(),
+            duties: Vec::new(),
             margin,
             strata,
             raw,
@@ -79,20 +94,27 @@ impl Plan {
             scenario,
         };
         plan.price_layout()?;
-        let history = plan.mass_history();
+        plan.duties = plan.find_duties();
+        let history = plan.mass_history()?;
         plan.basis = FoldedBasis::new(&plan.scenario, &plan.strata, &plan.raw, &history);
+        plan.duties = plan.find_duties();
         plan.nominal_rows = plan.rows_in(&plan.nominal);
         plan.price_layout()?;
         Ok(plan)
     }
 
     /// Propellant on board over the nominal mission.
-    fn mass_history(&self) -> MassHistory {
+    fn mass_history(&self) -> Result<MassHistory, PlanError> {
         let loaded = self.scenario.vehicle.tank.loaded_kg;
         let outcome = self.fly(&self.nominal);
+        if let Some(found) = outcome.too_large {
+            let phase = &self.scenario.mission.phases[self.strata[found.place.0].phase];
+            let (phase, event) = (phase.name.clone(), phase.events[found.place.1].name.clone());
+            return Err(PlanError::BurnTooLarge { phase, event, asks_kg: found.asks_kg, left_kg: found.left_kg });
+        }
         let ends = self.strata.iter().zip(&outcome.used_kg);
         let points = ends.map(|(stratum, used)| (stratum.start_s + stratum.duration_s, (loaded - used).max(0.0)));
-        MassHistory::new(std::iter::once((0.0, loaded)).chain(points).collect())
+        Ok(MassHistory::new(std::iter::once((0.0, loaded)).chain(points).collect()))
     }
 
     fn price_layout(&mut self) -> Result<(), PlanError> {

@@ -2,17 +2,37 @@
 
 use nalgebra::Vector3;
 
-use crate::config;
-use crate::uncertain::{Parameters, Uncertain};
-use crate::vehicle::Faults;
+use crate::config::{self, Hold, Spec, When, did_you_mean};
+use crate::uncertain::{Parameters, Spread, Uncertain};
+use crate::vehicle::{Faults, register_triple};
 
 /// One event of a phase.
 #[derive(Debug, Clone)]
 pub struct Event {
     /// Name.
     pub name: String,
+    /// When it happens.
+    pub when: When,
     /// What happens.
     pub kind: EventKind,
+}
+
+/// What pushes in a burn.
+#[derive(Debug, Clone, PartialEq, Eq)]
+pub enum BurnSource {
+    /// Index of an engine.
+    Engine(usize),
+    /// Indices of thrusters that burn together.
+    Thrusters(Vec<usize>),
+}
+
+/// Thrusters that hold the attitude within a band.
+#[derive(Debug, Clone)]
+pub struct Band {
+    /// Half its width, rad.
+    pub half_width_rad: f64,
+    /// Disturbance torque about x, y, z, N·m.
+    pub disturbance_n_m: [Uncertain; 3],
 }
 
 /// What happens in an event.
@@ -34,34 +54,202 @@ pub enum EventKind {
         /// How many in the phase.
         count: Uncertain,
     },
+    /// Orbit burns.
+    Burn {
+        /// Δv of one, m/s.
+        delta_v_m_per_s: Uncertain,
+        /// How many in the phase.
+        count: Uncertain,
+        /// What pushes.
+        source: BurnSource,
+        /// How the attitude is held.
+        hold: Hold,
+    },
+    /// Attitude held within a band.
+    Deadband {
+        /// How long in the phase, s.
+        time_s: Uncertain,
+        /// The band.
+        band: Band,
+    },
+    /// A change of the spin.
+    Spin {
+        /// Axis in the body frame, unit.
+        axis: Vector3<f64>,
+        /// Rates before and after, rad/s.
+        rates_rad_per_s: [f64; 2],
+        /// How often in the phase.
+        count: Uncertain,
+    },
+    /// Turns of the axis of a spin.
+    AxisTurn {
+        /// Axis of the spin in the body frame, unit.
+        axis: Vector3<f64>,
+        /// Rate of the spin, rad/s.
+        rate_rad_per_s: f64,
+        /// Angle of one turn, rad.
+        angle_rad: f64,
+        /// Angle by which the body turns during a pulse, rad.
+        arc_rad: f64,
+        /// How many in the phase.
+        count: Uncertain,
+    },
+    /// Safe mode, held within a band.
+    SafeMode {
+        /// Days a year.
+        days_per_year: Uncertain,
+        /// The band.
+        band: Band,
+    },
 }
 
-pub(super) fn read(written: &config::Event, at: &str, parameters: &mut Parameters, faults: &mut Faults) -> Option<Event> {
-    let kind = match (&written.rate_damping, &written.slews) {
-        (Some(damping), None) => {
-            let mut axes = ["x", "y", "z"].into_iter();
-            let rates_rad_per_s = damping
-                .rates
-                .0
-                .map(|spread| parameters.register(format!("{}.rates.{}", written.name, axes.next().unwrap_or_default()), "rad/s", spread));
-            EventKind::RateDamping { rates_rad_per_s }
-        }
-        (None, Some(slews)) => {
-            let axis = faults.direction(&format!("{at}.slews.axis"), slews.axis.0);
-            let angle = faults.positive(&format!("{at}.slews.angle"), slews.angle.0, "an angle");
-            let rate = faults.positive(&format!("{at}.slews.rate"), slews.rate.0, "a rate");
-            let count = faults.spread(&format!("{at}.slews.count"), slews.count.0, 0.0, f64::INFINITY, "a count");
-            EventKind::Slews {
-                axis: axis?,
-                angle_rad: angle?,
-                rate_rad_per_s: rate?,
-                count: parameters.register(format!("{}.count", written.name), "", count?),
-            }
-        }
-        _ => {
-            faults.push(at, "expected one of `rate_damping` and `slews`", "keep one of them, and write a second event for the other");
+/// What an event is read with.
+pub(super) struct Reading<'a> {
+    pub(super) spec: &'a Spec,
+    pub(super) parameters: &'a mut Parameters,
+    pub(super) faults: &'a mut Faults,
+}
+
+pub(super) fn read(written: &config::Event, at: &str, with: &mut Reading<'_>) -> Option<Event> {
+    let given = [
+        written.rate_damping.is_some(),
+        written.slews.is_some(),
+        written.burn.is_some(),
+        written.deadband.is_some(),
+        written.spin.is_some(),
+        written.axis_turn.is_some(),
+        written.safe_mode.is_some(),
+    ];
+    if given.iter().filter(|given| **given).count() != 1 {
+        let message = "expected one of `rate_damping`, `slews`, `burn`, `deadband`, `spin`, `axis_turn` and `safe_mode`";
+        with.faults.push(at, message, "keep one of them, and write a second event for the other");
+        return None;
+    }
+    let name = written.name.as_str();
+    let kind = with
+        .damping(name, written.rate_damping.as_ref())
+        .or_else(|| with.slews(name, at, written.slews.as_ref()?))
+        .or_else(|| with.burn(name, at, written.burn.as_ref()?))
+        .or_else(|| with.deadband(name, at, written.deadband.as_ref()?))
+        .or_else(|| with.spin(name, at, written.spin.as_ref()?))
+        .or_else(|| with.axis_turn(name, at, written.axis_turn.as_ref()?))
+        .or_else(|| with.safe_mode(name, at, written.safe_mode.as_ref()?))?;
+    let first = matches!(kind, EventKind::RateDamping { .. } | EventKind::Spin { .. });
+    Some(Event { name: name.to_owned(), when: written.when.unwrap_or(if first { When::Start } else { When::Spread }), kind })
+}
+
+impl Reading<'_> {
+    fn damping(&mut self, name: &str, written: Option<&config::RateDamping>) -> Option<EventKind> {
+        let rates_rad_per_s = register_triple(&format!("{name}.rates"), "rad/s", written?.rates.0, self.parameters);
+        Some(EventKind::RateDamping { rates_rad_per_s })
+    }
+
+    /// A count that is one unless it is given.
+    fn count(&mut self, name: &str, at: &str, written: Option<Spread>) -> Option<Uncertain> {
+        let spread = written.unwrap_or(Spread::Fixed(1.0));
+        let count = self.faults.spread(&format!("{at}.count"), spread, 0.0, f64::INFINITY, "a count")?;
+        Some(self.parameters.register(format!("{name}.count"), "", count))
+    }
+
+    fn slews(&mut self, name: &str, at: &str, written: &config::Slews) -> Option<EventKind> {
+        let at = format!("{at}.slews");
+        let axis = self.faults.direction(&format!("{at}.axis"), written.axis.0);
+        let angle = self.faults.positive(&format!("{at}.angle"), written.angle.0, "an angle");
+        let rate = self.faults.positive(&format!("{at}.rate"), written.rate.0, "a rate");
+        let count = self.count(name, &at, Some(written.count.0));
+        Some(EventKind::Slews { axis: axis?, angle_rad: angle?, rate_rad_per_s: rate?, count: count? })
+    }
+
+    fn burn(&mut self, name: &str, at: &str, written: &config::Burn) -> Option<EventKind> {
+        let at = format!("{at}.burn");
+        let source = self.source(&at, written);
+        let delta_v = self.faults.spread(&format!("{at}.delta_v"), written.delta_v.0, 0.0, f64::INFINITY, "a Δv");
+        let count = self.count(name, &at, written.count.map(|count| count.0));
+        let source = source?;
+        if written.hold == Hold::OffModulation && matches!(source, BurnSource::Engine(_)) {
+            let help = "name the `thrusters` that burn, or hold with `thrusters`";
+            self.faults.push(&format!("{at}.hold"), "one engine cannot be modulated against its own torque", help);
             return None;
         }
-    };
-    Some(Event { name: written.name.clone(), kind })
+        let delta_v_m_per_s = self.parameters.register(format!("{name}.delta_v"), "m/s", delta_v?);
+        Some(EventKind::Burn { delta_v_m_per_s, count: count?, source, hold: written.hold })
+    }
+
+    fn source(&mut self, at: &str, written: &config::Burn) -> Option<BurnSource> {
+        let engines = self.spec.engines.iter().map(|engine| engine.name.as_str());
+        let thrusters = self.spec.thrusters.iter().map(|thruster| thruster.name.as_str());
+        match (&written.engine, written.thrusters.is_empty()) {
+            (Some(engine), true) => {
+                let found = engines.clone().position(|name| name == engine);
+                if found.is_none() {
+                    let help = did_you_mean(engine, engines).unwrap_or_else(|| "describe it under `engines`".to_owned());
+                    self.faults.push(
+                        &format!("{at}.engine"),
+                        format!("names the engine `{engine}`, which `engines` does not describe"),
+                        help,
+                    );
+                }
+                found.map(BurnSource::Engine)
+            }
+            (None, false) => {
+                let mut found = Vec::new();
+                for (k, wanted) in written.thrusters.iter().enumerate() {
+                    if let Some(index) = thrusters.clone().position(|name| name == wanted) {
+                        found.push(index);
+                    } else {
+                        let help = did_you_mean(wanted, thrusters.clone()).unwrap_or_else(|| "name one of `thrusters`".to_owned());
+                        self.faults.push(&format!("{at}.thrusters[{k}]"), format!("`{wanted}` is no thruster"), help);
+                    }
+                }
+                (found.len() == written.thrusters.len()).then_some(BurnSource::Thrusters(found))
+            }
+            _ => {
+                self.faults.push(
+                    at,
+                    "expected one of `engine` and `thrusters`",
+                    "name what pushes: `engine: main`, or `thrusters: [A1, A4]`",
+                );
+                None
+            }
+        }
+    }
+
+    fn band(&mut self, name: &str, at: &str, half_width: f64, disturbance: Option<[Spread; 3]>) -> Option<Band> {
+        let half_width_rad = self.faults.positive(&format!("{at}.half_width"), half_width, "half the width of a band")?;
+        let torque = disturbance.unwrap_or([Spread::Fixed(0.0); 3]);
+        Some(Band { half_width_rad, disturbance_n_m: register_triple(&format!("{name}.disturbance"), "N m", torque, self.parameters) })
+    }
+
+    fn deadband(&mut self, name: &str, at: &str, written: &config::Deadband) -> Option<EventKind> {
+        let at = format!("{at}.deadband");
+        let time = self.faults.spread(&format!("{at}.time"), written.time.0, 0.0, f64::INFINITY, "a time");
+        let band = self.band(name, &at, written.half_width.0, written.disturbance.as_ref().map(|torque| torque.0));
+        Some(EventKind::Deadband { time_s: self.parameters.register(format!("{name}.time"), "s", time?), band: band? })
+    }
+
+    fn spin(&mut self, name: &str, at: &str, written: &config::SpinChange) -> Option<EventKind> {
+        let at = format!("{at}.spin");
+        let axis = self.faults.direction(&format!("{at}.axis"), written.axis.0);
+        let count = self.count(name, &at, written.count.map(|count| count.0));
+        let rates_rad_per_s = [written.from.map_or(0.0, |rate| rate.0), written.to.0];
+        Some(EventKind::Spin { axis: axis?, rates_rad_per_s, count: count? })
+    }
+
+    fn axis_turn(&mut self, name: &str, at: &str, written: &config::AxisTurn) -> Option<EventKind> {
+        let at = format!("{at}.axis_turn");
+        let axis = self.faults.direction(&format!("{at}.axis"), written.axis.0);
+        let rate = self.faults.positive(&format!("{at}.rate"), written.rate.0, "a rate");
+        let angle = self.faults.positive(&format!("{at}.angle"), written.angle.0, "an angle");
+        let arc = written.arc.map_or(0.0, |arc| arc.0);
+        let arc = self.faults.within(&format!("{at}.arc"), arc, 0.0, std::f64::consts::PI, "an angle in rad");
+        let count = self.count(name, &at, Some(written.count.0));
+        Some(EventKind::AxisTurn { axis: axis?, rate_rad_per_s: rate?, angle_rad: angle?, arc_rad: arc?, count: count? })
+    }
+
+    fn safe_mode(&mut self, name: &str, at: &str, written: &config::SafeMode) -> Option<EventKind> {
+        let at = format!("{at}.safe_mode");
+        let days = self.faults.spread(&format!("{at}.days_per_year"), written.days_per_year.0, 0.0, 365.25, "a number of days");
+        let band = self.band(name, &at, written.half_width.0, written.disturbance.as_ref().map(|torque| torque.0));
+        Some(EventKind::SafeMode { days_per_year: self.parameters.register(format!("{name}.days_per_year"), "", days?), band: band? })
+    }
 }

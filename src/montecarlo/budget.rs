@@ -128,10 +128,11 @@ impl Budget {
     /// Flies the nominal mission and `lifetimes` draws, and finds the drivers.
     ///
     /// # Errors
-    /// The temporary file for the lifetimes cannot be written.
+    /// The temporary file for the lifetimes cannot be written, or books do not balance: a fault of the program.
     pub fn new(plan: &Plan, seed: u64, lifetimes: u64, progress: &Progress<'_>) -> io::Result<Self> {
         let confidence = plan.scenario().settings.confidence;
         let nominal = plan.fly(plan.nominal());
+        plan.audit(&nominal).and_then(|()| plan.audit_unloads()).map_err(io::Error::other)?;
         let mut store = run(plan, seed, lifetimes, &|done| progress("lifetimes", done, lifetimes))?;
         let all = distributions(&mut store, plan, &nominal, confidence)?;
         let loaded_kg = plan.vehicle().tank.loaded_kg;

@@ -87,9 +87,10 @@ pub fn run(plan: &Plan, seed: u64, lifetimes: u64, progress: &(dyn Fn(u64) + Syn
             .map(|start| {
                 let count = usize::try_from(block.min(last - start)).unwrap_or(BLOCK);
                 let outcomes = plan.fly_block(&draws(plan, seed, start, count));
-                outcomes.iter().map(figures).collect()
+                outcomes.iter().map(|outcome| plan.audit(outcome).map(|()| figures(outcome))).collect()
             })
-            .collect();
+            .collect::<Result<_, _>>()
+            .map_err(io::Error::other)?;
         for row in flown.iter().flatten() {
             store.push(row)?;
         }

@@ -16,12 +16,12 @@ pub fn delta_v_of(propellant_kg: f64, exhaust_speed_m_per_s: f64, mass_before_kg
     -exhaust_speed_m_per_s * (-propellant_kg / mass_before_kg).ln_1p()
 }
 
-/// A burn: where and how the engine pushes, and for how long.
+/// A burn: how the engine or the thrusters push, and for how long.
 #[derive(Debug, Clone, Copy, PartialEq)]
 pub struct Burn {
-    /// Where the engine stands, body frame, m.
-    pub position_m: Vector3<f64>,
-    /// Its push on the spacecraft, body frame, N.
+    /// Torque of the push about the body origin, N·m, body frame: r × F, summed.
+    pub torque_n_m: Vector3<f64>,
+    /// Push on the spacecraft, body frame, N.
     pub force_n: Vector3<f64>,
     /// Propellant per second, kg/s.
     pub flow_kg_per_s: f64,
@@ -43,7 +43,7 @@ impl Burn {
     /// derivative is of the order of (used/mass)⁴.
     #[must_use]
     pub fn momentum_n_m_s(&self, centre_m: impl Fn(f64) -> Vector3<f64>) -> Vector3<f64> {
-        let torque = |used_kg: f64| (self.position_m - centre_m(used_kg)).cross(&self.force_n);
+        let torque = |used_kg: f64| self.torque_n_m - centre_m(used_kg).cross(&self.force_n);
         let [start, middle, end] = [0.0, self.propellant_kg / 2.0, self.propellant_kg].map(torque);
         (start + middle * 4.0 + end) * (self.duration_s() / 6.0)
     }

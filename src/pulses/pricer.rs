@@ -26,6 +26,31 @@ impl Performance {
     }
 }
 
+impl Performance {
+    /// The same with thrust and exhaust speed times factors.
+    #[must_use]
+    pub fn times(&self, thrust: f64, speed: f64) -> Self {
+        Self(self.0.iter().map(|(f, u)| (f * thrust, u * speed)).collect())
+    }
+
+    /// Thrust, N, and steady exhaust speed, m/s, of one thruster.
+    #[must_use]
+    pub fn of(&self, thruster: usize) -> (f64, f64) {
+        self.0[thruster]
+    }
+}
+
+/// The smallest firing that turns the spacecraft about a direction.
+#[derive(Debug, Clone, PartialEq)]
+pub struct SmallestFiring {
+    /// Its angular impulse, N·m·s.
+    pub bit_n_m_s: f64,
+    /// Its propellant, kg.
+    pub propellant_kg: f64,
+    /// The thrusters, one pulse each.
+    pub thrusters: Vec<usize>,
+}
+
 /// Prices and allocations of a layout about one centre of mass.
 #[derive(Debug, Clone)]
 pub struct Pricer {
@@ -92,6 +117,27 @@ impl Pricer {
             cycles[index] += firing.pulses * times;
         }
         Some(total_kg)
+    }
+
+    /// The smallest firing along a unit direction: the thruster that does least makes its shortest pulse, the others as much
+    /// as the direction asks. `None` if the layout cannot give it.
+    #[must_use]
+    pub fn smallest(&self, direction: &Vector3<f64>, performance: &Performance) -> Option<SmallestFiring> {
+        let firings: Vec<(usize, f64)> = self.capability.price.firings(direction)?.filter(|(_, impulse)| *impulse > 0.0).collect();
+        // A share that is rounding would make the bit vanish.
+        let most = firings.iter().map(|(_, impulse)| *impulse).fold(0.0, f64::max);
+        let counted = firings.iter().filter(|(_, impulse)| *impulse > 1e-9 * most);
+        let bit = counted.map(|(index, impulse)| performance.0[*index].0 * self.limits.shortest_s / impulse).fold(f64::INFINITY, f64::min);
+        if !bit.is_finite() {
+            return None;
+        }
+        let one = |(index, impulse): &(usize, f64)| {
+            let (thrust, speed) = performance.0[*index];
+            let on_time_s = (impulse * bit / thrust).max(self.limits.shortest_s);
+            impulse * bit / (speed * self.limits.share(on_time_s))
+        };
+        let propellant_kg = firings.iter().map(one).sum();
+        Some(SmallestFiring { bit_n_m_s: bit, propellant_kg, thrusters: firings.into_iter().map(|(index, _)| index).collect() })
     }
 
     /// Firing of one thruster at nominal performance.

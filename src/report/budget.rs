@@ -69,7 +69,9 @@ fn answer(budget: &Budget) -> String {
 fn ledger(budget: &Budget) -> String {
     let kg = |x: f64| format!("{x:.3}");
     let mut table = Table::new(&["propellant, kg", "nominal", "mean", "P50", "P95", "P99"]);
-    for (row, distribution) in ROWS.iter().zip(&budget.rows) {
+    // Functions that the mission does not use are left out; the other formats have them all.
+    let used = |d: &Distribution| d.nominal.abs() > 0.0 || d.sd > 0.0;
+    for (row, distribution) in ROWS.iter().zip(&budget.rows).filter(|(_, distribution)| used(distribution)) {
         table.push(ledger_row(&plain(row.key()), distribution, &kg));
     }
     table.push(ledger_row("attitude control, total", &budget.attitude, &kg));
@@ -81,7 +83,7 @@ fn ledger(budget: &Budget) -> String {
     let mut bounds = Table::new(&["attitude total, kg", "lower limit", "estimate", "upper limit"]);
     limits.for_each(|row| bounds.push(row));
     let note = format!(
-        "Total: unloading, rate damping and slews. Needed on board adds leakage and residual, not margin. Limits are one-sided, each with {:.0} % confidence, free of any assumption on the distribution.",
+        "Needed on board adds orbit burns, leakage, residual and what is loaded too little to the total, not the margin. Limits are one-sided, each with {:.0} % confidence, free of any assumption on the distribution.",
         budget.confidence * 100.0
     );
     let timing = budget.timing.map_or_else(String::new, |gain| paragraph("  ", "  ", &timing_text(&gain)));

@@ -67,30 +67,34 @@ impl MassProperties {
         })
     }
 
-    /// Nominal mass properties with propellant as a point mass at the tank.
+    /// Nominal mass properties with point masses of propellant: mass, kg, and place, m, of each.
     #[must_use]
-    pub fn with_propellant(&self, propellant_kg: f64, tank_m: &Vector3<f64>) -> MassState {
-        let nominal = |u: &Uncertain| u.nominal();
-        combine(self, nominal, propellant_kg, tank_m)
+    pub fn with_propellant(&self, propellant: impl Iterator<Item = (f64, Vector3<f64>)>) -> MassState {
+        combine(self, Uncertain::nominal, propellant)
     }
 
-    /// Mass properties of one draw with propellant as a point mass at the tank.
+    /// Mass properties of one draw with point masses of propellant.
     #[must_use]
-    pub fn in_draw(&self, draw: &Draw, propellant_kg: f64, tank_m: &Vector3<f64>) -> MassState {
-        combine(self, |u| u.in_draw(draw), propellant_kg, tank_m)
+    pub fn in_draw(&self, draw: &Draw, propellant: impl Iterator<Item = (f64, Vector3<f64>)>) -> MassState {
+        combine(self, |u| u.in_draw(draw), propellant)
     }
 }
 
-/// Adds a point mass (parallel-axis theorem).
-fn combine(dry: &MassProperties, value: impl Fn(&Uncertain) -> f64, propellant_kg: f64, tank_m: &Vector3<f64>) -> MassState {
+/// Adds point masses (parallel-axis theorem).
+fn combine(dry: &MassProperties, value: impl Fn(&Uncertain) -> f64, propellant: impl Iterator<Item = (f64, Vector3<f64>)>) -> MassState {
     let dry_kg = value(&dry.mass_kg);
     let dry_centre = Vector3::from(dry.centre_of_mass_m.each_ref().map(&value));
-    let mass_kg = dry_kg + propellant_kg;
-    let centre = (dry_centre * dry_kg + tank_m * propellant_kg) / mass_kg;
-    let shifted = |mass: f64, arm: Vector3<f64>| (Matrix3::identity() * arm.norm_squared() - arm * arm.transpose()) * mass;
+    // About the body origin first, then about the centre of mass that comes out.
+    let about_origin = |mass: f64, at: Vector3<f64>| (Matrix3::identity() * at.norm_squared() - at * at.transpose()) * mass;
     let own = symmetric(dry.inertia_kg_m2.each_ref().map(&value));
-    let inertia_kg_m2 = own + shifted(dry_kg, dry_centre - centre) + shifted(propellant_kg, tank_m - centre);
-    MassState { mass_kg, centre_of_mass_m: centre, inertia_kg_m2 }
+    let (mut mass_kg, mut moment, mut inertia) = (dry_kg, dry_centre * dry_kg, own + about_origin(dry_kg, dry_centre));
+    for (kg, at) in propellant {
+        mass_kg += kg;
+        moment += at * kg;
+        inertia += about_origin(kg, at);
+    }
+    let centre_of_mass_m = moment / mass_kg;
+    MassState { mass_kg, centre_of_mass_m, inertia_kg_m2: inertia - about_origin(mass_kg, centre_of_mass_m) }
 }
 
 /// A body's principal moments obey the triangle inequality: none exceeds the sum of the others.
@@ -125,7 +129,7 @@ mod tests {
             centre_of_mass_box_m: None,
             inertia_kg_m2: [tiny, tiny, tiny, zero, zero, zero],
         };
-        let both = dry.with_propellant(3.0, &Vector3::new(0.0, 0.0, 2.0));
+        let both = dry.with_propellant([(1.0, Vector3::new(0.0, 0.0, 2.0)), (2.0, Vector3::new(0.0, 0.0, 2.0))].into_iter());
         assert!((both.centre_of_mass_m.z - 1.0).abs() < 1e-15);
         assert!((both.inertia_kg_m2[(0, 0)] - 6.0).abs() < 1e-9);
         assert!(both.inertia_kg_m2[(2, 2)].abs() < 1e-9);

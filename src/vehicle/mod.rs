@@ -3,6 +3,7 @@
 //! In: the configuration as written. Out: a [`Vehicle`] that nothing after it checks again, and
 //! the registry of its uncertain parameters. Knows nothing of orbits or disturbances.
 
+mod engine;
 mod faults;
 mod feed;
 mod mass;
@@ -11,12 +12,13 @@ mod surface;
 mod tank;
 mod wheels;
 
+pub use engine::Engine;
 pub use faults::Faults;
 pub use feed::{Feed, PressureLaw};
 pub use mass::{INERTIA_ELEMENTS, MassProperties, MassState, symmetric};
 pub use propulsion::{ExhaustSpeed, Propulsion, PulseLimits, Thruster};
 pub use surface::{Hinge, Material, Shade, Surface};
-pub use tank::Tank;
+pub use tank::{OneTank, Tank};
 pub use wheels::{Wheel, Wheels};
 
 use crate::config::Spec;
@@ -44,7 +46,9 @@ pub struct Vehicle {
     pub propulsion: Propulsion,
     /// Wheel array, if there is one.
     pub wheels: Option<Wheels>,
-    /// Propellant tank.
+    /// Engines for orbit burns.
+    pub engines: Vec<Engine>,
+    /// Propellant.
     pub tank: Tank,
 }
 
@@ -66,6 +70,7 @@ impl Vehicle {
         let (materials, surfaces) = surface::read(spec, parameters, faults);
         let propulsion = Propulsion::new(spec, parameters, faults);
         let wheels = spec.wheels.as_ref().map(|written| Wheels::new(written, faults));
+        let engines = engine::read(spec, parameters, faults);
         let tank = Tank::new(&spec.tank, parameters, faults);
         if faults.count() > before {
             return None;
@@ -82,14 +87,21 @@ impl Vehicle {
                 Some(read) => Some(read?),
                 None => None,
             },
+            engines,
             tank: tank?,
         })
+    }
+
+    /// Mass properties of a draw with this much propellant on board, kg.
+    #[must_use]
+    pub fn mass_in_draw(&self, draw: &crate::uncertain::Draw, propellant_kg: f64) -> MassState {
+        self.dry.in_draw(draw, self.tank.contents(propellant_kg))
     }
 
     /// Nominal mass properties with this much propellant on board, kg.
     #[must_use]
     pub fn mass_state(&self, propellant_kg: f64) -> MassState {
-        self.dry.with_propellant(propellant_kg, &self.tank.position_m)
+        self.dry.with_propellant(self.tank.contents(propellant_kg))
     }
 }
 

@@ -2,7 +2,7 @@
 
 use nalgebra::{Unit, UnitVector3, Vector3};
 
-use super::{Faults, STANDARD_GRAVITY};
+use super::{Faults, PressureLaw, STANDARD_GRAVITY};
 use crate::config::{self, NetForceChoice, Spec, SpreadQuantity};
 use crate::uncertain::{Draw, Parameters, Spread, Uncertain};
 use crate::units::{Kind, kind};
@@ -124,6 +124,8 @@ pub struct Propulsion {
     pub net_force: NetForceChoice,
     /// Pulses that one thruster is qualified for.
     pub qualified_pulses: Option<f64>,
+    /// How thrust and exhaust speed follow the feed pressure.
+    pub pressure_law: PressureLaw,
 }
 
 impl Propulsion {
@@ -169,8 +171,48 @@ impl Propulsion {
             plume,
             net_force,
             qualified_pulses,
+            pressure_law: pressure_law(spec, faults)?,
         })
     }
+}
+
+/// How thrust and exhaust speed follow the feed pressure; a table counts from the pressure as loaded.
+fn pressure_law(spec: &Spec, faults: &mut Faults) -> Option<PressureLaw> {
+    const AT: &str = "propulsion.pressure_law";
+    let Some(written) = &spec.propulsion.pressure_law else { return Some(PressureLaw::Powers(1.0, 0.0)) };
+    let Some(blowdown) = &spec.tank.blowdown else {
+        faults.push(AT, "the feed pressure is constant, so nothing follows it", "describe `tank.blowdown`, or leave `pressure_law` out");
+        return None;
+    };
+    let powers = written.thrust_power.is_some() || written.exhaust_speed_power.is_some();
+    if written.table.is_empty() {
+        let thrust = faults.within(&format!("{AT}.thrust_power"), written.thrust_power.map_or(1.0, |power| power.0), 0.0, 3.0, "a power");
+        let speed = written.exhaust_speed_power.map_or(0.0, |power| power.0);
+        let speed = faults.within(&format!("{AT}.exhaust_speed_power"), speed, 0.0, 1.0, "a power");
+        return Some(PressureLaw::Powers(thrust?, speed?));
+    }
+    if powers {
+        faults.push(AT, "expected powers or a table, got both", "keep one");
+        return None;
+    }
+    let mut rows: Vec<(f64, f64, f64)> = Vec::new();
+    for (index, point) in written.table.iter().enumerate() {
+        let at = format!("{AT}.table[{index}]");
+        let pressure = faults.positive(&format!("{at}.pressure"), point.pressure.0, "a pressure")?;
+        let thrust = faults.within(&format!("{at}.thrust"), point.thrust.0, 1e-3, 10.0, "a share of the thrust")?;
+        let speed = faults.within(&format!("{at}.exhaust_speed"), point.exhaust_speed.0, 1e-3, 10.0, "a share of the exhaust speed")?;
+        let ratio = pressure / blowdown.pressure.0;
+        if rows.last().is_some_and(|(before, ..)| *before >= ratio) {
+            faults.push(
+                &format!("{at}.pressure"),
+                "expected a higher pressure than in the entry before",
+                "sort the entries by rising pressure",
+            );
+            return None;
+        }
+        rows.push((ratio, thrust, speed));
+    }
+    Some(PressureLaw::Table(rows))
 }
 
 fn pulse_limits(written: &config::Propulsion, faults: &mut Faults) -> Option<PulseLimits> {
@@ -207,9 +249,15 @@ fn pulse_limits(written: &config::Propulsion, faults: &mut Faults) -> Option<Pul
     Some(PulseLimits { shortest_s, longest_s, duty_cycle: duty_cycle?, performance })
 }
 
-type Written<'a> = (Option<&'a SpreadQuantity<kind::Time>>, Option<&'a SpreadQuantity<kind::Speed>>);
+pub(super) type Written<'a> = (Option<&'a SpreadQuantity<kind::Time>>, Option<&'a SpreadQuantity<kind::Speed>>);
 
-fn exhaust_speed(at: &str, name: &str, written: Written<'_>, parameters: &mut Parameters, faults: &mut Faults) -> Option<ExhaustSpeed> {
+pub(super) fn exhaust_speed(
+    at: &str,
+    name: &str,
+    written: Written<'_>,
+    parameters: &mut Parameters,
+    faults: &mut Faults,
+) -> Option<ExhaustSpeed> {
     let (key, spread, factor, unit): (&str, Spread, f64, &'static str) = match written {
         (Some(isp), None) => ("isp", isp.0, STANDARD_GRAVITY, kind::Time::UNIT),
         (None, Some(speed)) => ("exhaust_speed", speed.0, 1.0, kind::Speed::UNIT),
