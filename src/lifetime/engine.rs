@@ -71,12 +71,13 @@ impl Plan {
         for (index, stratum) in self.strata.iter().enumerate() {
             let next = self.strata.get(index + 1).map(|next| next.phase);
             let place = Place { stratum: index, first: previous != Some(stratum.phase), last: next != Some(stratum.phase) };
-            flight.enter(leakage * stratum.duration_s);
-            flight.events(&place, true);
             let (windows, rate) = self.unloads(index, rows);
-            flight.unload(index, &windows, rate);
-            flight.events(&place, false);
-            flight.leave(leakage * stratum.duration_s);
+            flight.through(|flight| {
+                flight.events(&place, true);
+                flight.unload(index, &windows, rate);
+                flight.events(&place, false);
+                flight.take(Row::Leakage, leakage * stratum.duration_s);
+            });
             previous = Some(stratum.phase);
         }
         let mut outcome = flight.finish();

@@ -139,14 +139,14 @@ impl Flight<'_> {
         let speed = push.force_n.norm() / push.flow_kg_per_s;
         let before = self.mass(0.0);
         let whole_kg = propellant_of_burn(delta_v * times, speed, before.mass_kg);
-        // One burn in the middle of those of the stratum.
-        let middle_kg = propellant_of_burn(delta_v * times / 2.0, speed, before.mass_kg);
-        let one_kg = propellant_of_burn(delta_v, speed, before.mass_kg - middle_kg);
+        // The mean burn of the stratum stands in the middle of them.
+        let one_kg = if times > 0.0 { whole_kg / times } else { 0.0 };
+        let used_kg = ((whole_kg - one_kg) / 2.0).max(0.0);
         match (hold, duty) {
             (Hold::None, _) => {}
             (Hold::Thrusters, _) => {
                 let burn = Burn { propellant_kg: one_kg, ..push };
-                let momentum = burn.momentum_n_m_s(|used| self.mass(middle_kg + used).centre_of_mass_m);
+                let momentum = burn.momentum_n_m_s(|used| self.mass(used_kg + used).centre_of_mass_m);
                 self.fire(Row::BurnHold, stratum, &-momentum, times);
             }
             (Hold::OffModulation, duty) => match self.push(source, duty) {

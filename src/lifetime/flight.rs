@@ -30,9 +30,6 @@ pub(super) struct Flight<'a> {
     pub(super) outcome: Outcome,
     /// Propellant left, kg; below zero it is what the mission lacks.
     left_kg: f64,
-    /// Use within the stratum at hand and the one before, kg.
-    burnt_kg: f64,
-    burnt_before_kg: f64,
 }
 
 impl<'a> Flight<'a> {
@@ -57,33 +54,31 @@ impl<'a> Flight<'a> {
                 too_large: None,
             },
             left_kg: vehicle.tank.loaded_kg + vehicle.tank.loading_error_kg.in_draw(draw),
-            burnt_kg: 0.0,
-            burnt_before_kg: 0.0,
         }
     }
 
-    /// Begins a stratum; the feed pressure is that of its middle, as far as the stratum before tells.
-    pub(super) fn enter(&mut self, leaks_kg: f64) {
-        self.burnt_before_kg = std::mem::take(&mut self.burnt_kg);
-        self.press(f64::midpoint(self.burnt_before_kg, leaks_kg));
+    /// Flies one stratum. In blowdown twice: the first time at the feed pressure of its start tells how much leaves, the second
+    /// time at the pressure when half of that has left.
+    pub(super) fn through(&mut self, stratum: impl Fn(&mut Self)) {
+        if self.plan.vehicle().tank.feed != Feed::Regulated {
+            self.press(0.0);
+            let (outcome, left_kg) = (self.outcome.clone(), self.left_kg);
+            stratum(self);
+            let takes_kg = left_kg - self.left_kg;
+            (self.outcome, self.left_kg) = (outcome, left_kg);
+            self.press(takes_kg / 2.0);
+        }
+        stratum(self);
+        let used_kg = ROWS.into_iter().filter(|row| row.leaves_the_tank()).map(|row| self.outcome.row(row)).sum();
+        self.outcome.used_kg.push(used_kg);
     }
 
     /// Sets thrust and exhaust speed by the feed pressure after `more_kg` have left.
     fn press(&mut self, more_kg: f64) {
         let vehicle = self.plan.vehicle();
-        if vehicle.tank.feed == Feed::Regulated {
-            return;
-        }
         let used_kg = vehicle.tank.loaded_kg - self.left_kg + more_kg;
         self.pressed = vehicle.propulsion.pressure_law.factors(vehicle.tank.feed.pressure_ratio(used_kg.min(vehicle.tank.loaded_kg)));
         self.performance = self.loaded.times(self.pressed.0, self.pressed.1);
-    }
-
-    /// Ends a stratum.
-    pub(super) fn leave(&mut self, leaks_kg: f64) {
-        self.take(Row::Leakage, leaks_kg);
-        let used_kg = ROWS.into_iter().filter(|row| row.leaves_the_tank()).map(|row| self.outcome.row(row)).sum();
-        self.outcome.used_kg.push(used_kg);
     }
 
     pub(super) fn finish(mut self) -> Outcome {
@@ -95,9 +90,6 @@ impl<'a> Flight<'a> {
     pub(super) fn take(&mut self, row: Row, kg: f64) {
         self.outcome.rows_kg[row.index()] += kg;
         self.left_kg -= kg;
-        if row != Row::Leakage && row != Row::OrbitBurns {
-            self.burnt_kg += kg;
-        }
     }
 
     /// Gives an angular impulse (N·m·s, body frame) `times` times.
