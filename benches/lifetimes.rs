@@ -8,7 +8,7 @@ use std::time::Instant;
 
 use couplet::config::{Document, read};
 use couplet::lifetime::Plan;
-use couplet::mission::Scenario;
+use couplet::mission::{Margin, Scenario};
 use couplet::momentum::Resolution;
 use couplet::montecarlo::{Figure, Wanted, draws, run};
 
@@ -23,7 +23,7 @@ fn main() {
     let mut out = std::io::stdout().lock();
 
     let start = Instant::now();
-    let plan = Plan::new(scenario, Resolution::Default, 1.0).expect("heron can be flown");
+    let plan = Plan::new(scenario, Resolution::Default, Margin::NONE).expect("heron can be flown");
     let basis_s = start.elapsed().as_secs_f64();
     let (strata, features, rows) = (plan.strata().len(), plan.basis().features.len(), plan.basis().matrix.nrows());
     writeln!(out, "basis              {basis_s:8.3} s   ({strata} strata, {features} features, {rows} rows)").expect("standard output");

@@ -5,6 +5,7 @@ mod support;
 
 use couplet::environment::{SPEED_OF_LIGHT_M_PER_S, Warmth, patches};
 use couplet::lifetime::Plan;
+use couplet::mission::Margin;
 use couplet::momentum::Resolution;
 use nalgebra::Vector3;
 use support::{SMALL, heron, scenario};
@@ -88,7 +89,7 @@ fn the_choice_of_counting_it() {
             "environment.infrared=0 W/m2",
             &format!("environment.albedo={albedo}"),
         ];
-        let plan = Plan::new(heron(&settings), Resolution::Default, 0.0).unwrap();
+        let plan = Plan::new(heron(&settings), Resolution::Default, Margin::NONE).unwrap();
         plan.summary()[0].sources.iter().find(|(name, _, _)| *name == "body_light").unwrap().2
     };
     let (one, two) = (secular("0.15 ± 0.01"), secular("0.3"));

@@ -6,7 +6,7 @@ mod support;
 use couplet::disturbance::{Radiation, ResidualDipole, Source, Surroundings};
 use couplet::environment::Gas;
 use couplet::lifetime::{PhaseSummary, Plan};
-use couplet::mission::Scenario;
+use couplet::mission::{Margin, Scenario};
 use couplet::momentum::Resolution;
 use nalgebra::{Matrix3, Vector3};
 use support::{SMALL, heron, scenario};
@@ -14,7 +14,7 @@ use support::{SMALL, heron, scenario};
 const DAY_S: f64 = 86_400.0;
 
 fn plan(scenario: Scenario) -> Plan {
-    Plan::new(scenario, Resolution::Default, 0.0).unwrap()
+    Plan::new(scenario, Resolution::Default, Margin::NONE).unwrap()
 }
 
 fn secular(phase: &PhaseSummary, name: &str) -> Vector3<f64> {
@@ -163,7 +163,7 @@ fn wind_to_first_order() {
     let base = ["mission.phases=[{name: only, duration: 20 d, unload: {every: 1 d}}]", "environment.solar_activity={level: moderate}"];
     let total = |wind: &str, draw: Option<f64>| {
         let key = format!("environment.wind={{east: {wind}}}");
-        let plan = Plan::new(heron(&[base[0], base[1], &key]), Resolution::Default, 0.0).unwrap();
+        let plan = Plan::new(heron(&[base[0], base[1], &key]), Resolution::Default, Margin::NONE).unwrap();
         let mut flown = plan.nominal().clone();
         if let Some(value) = draw {
             let parameters = plan.scenario().parameters.as_slice();
@@ -185,7 +185,7 @@ fn wind_to_first_order() {
 fn unloading_at_the_cheapest_point() {
     let flown = |timing: &str| {
         let phase = format!("mission.phases=[{{name: only, duration: 30 d, unload: {{every: 1 d, timing: {timing}}}}}]");
-        Plan::new(heron(&[&phase]), Resolution::Default, 0.0).unwrap()
+        Plan::new(heron(&[&phase]), Resolution::Default, Margin::NONE).unwrap()
     };
     let (due, cheapest) = (flown("due"), flown("cheapest"));
     assert!(due.timing_gain().is_none());

@@ -5,7 +5,7 @@ use std::fmt::Write;
 
 use couplet::config::{Document, read};
 use couplet::environment::{Body, Elements, Ephemeris, Epoch, Orbit};
-use couplet::mission::Scenario;
+use couplet::mission::{Margin, Scenario};
 use proptest::prelude::*;
 
 fn two_body(semi_major_axis_m: f64, eccentricity: f64) -> Orbit {
@@ -200,7 +200,7 @@ fn an_ephemeris_in_a_configuration() {
     let period = flown.mission.phases[0].trajectory.revolution_s().unwrap();
     // 2π √(a³/μ).
     assert!((period - 5926.2).abs() < 0.1, "{period}");
-    let plan = couplet::lifetime::Plan::new(flown, couplet::momentum::Resolution::Full, 0.0).unwrap();
+    let plan = couplet::lifetime::Plan::new(flown, couplet::momentum::Resolution::Full, Margin::NONE).unwrap();
     assert!(plan.fly(plan.nominal()).attitude_total_kg() > 1e-3);
     let fault = |orbit: &str, days: u32| try_it(orbit, days).unwrap_err();
     assert!(fault("{ephemeris: path.oem}", 5).contains("covers 2029-01-01T00:00:00Z to 2029-01-05T00:00:00Z, but the phase lasts"));

@@ -4,6 +4,7 @@
 mod support;
 
 use couplet::lifetime::Plan;
+use couplet::mission::Margin;
 use couplet::momentum::Resolution;
 use support::heron;
 
@@ -18,7 +19,7 @@ fn turned() -> f64 {
 
 #[test]
 fn secular_momentum_by_hand() {
-    let plan = Plan::new(heron(&[]), Resolution::Default, 0.0).unwrap();
+    let plan = Plan::new(heron(&[]), Resolution::Default, Margin::NONE).unwrap();
     let phase = &plan.summary()[0];
     let program = |name: &str| phase.sources.iter().find(|(source, _, _)| *source == name).unwrap().2.norm();
 

@@ -4,7 +4,7 @@
 
 use couplet::config::{Document, read};
 use couplet::lifetime::{PhaseSummary, Plan};
-use couplet::mission::Scenario;
+use couplet::mission::{Margin, Scenario};
 use couplet::momentum::Resolution;
 use nalgebra::{Matrix3, Vector3};
 
@@ -16,7 +16,7 @@ fn plan(name: &str) -> Plan {
     let file = std::path::Path::new(env!("CARGO_MANIFEST_DIR")).join("configs").join(name);
     let none: &[&str] = &[];
     let document = Document::load(&file, none, none).unwrap();
-    Plan::new(Scenario::new(&read(&document).unwrap()).unwrap(), Resolution::Default, 0.0).unwrap()
+    Plan::new(Scenario::new(&read(&document).unwrap()).unwrap(), Resolution::Default, Margin::NONE).unwrap()
 }
 
 fn secular(phase: &PhaseSummary, name: &str) -> f64 {

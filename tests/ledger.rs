@@ -5,7 +5,7 @@ mod support;
 
 use couplet::config::{Document, read};
 use couplet::lifetime::{Imbalance, Outcome, Plan, PlanError, audit_momentum, audit_propellant};
-use couplet::mission::Scenario;
+use couplet::mission::{Margin, Scenario};
 use couplet::momentum::Resolution;
 use couplet::propellant::{DeadbandAxis, Row, propellant_of_burn};
 use nalgebra::Vector3;
@@ -25,7 +25,7 @@ fn phase(rest: &str) -> String {
 }
 
 fn plan(settings: &[&str]) -> Result<Plan, PlanError> {
-    Plan::new(scenario(SMALL, &[&CALM[..], settings].concat()), Resolution::Default, 0.0)
+    Plan::new(scenario(SMALL, &[&CALM[..], settings].concat()), Resolution::Default, Margin::NONE)
 }
 
 fn flown(settings: &[&str]) -> Outcome {
@@ -110,8 +110,9 @@ fn a_deadband_and_safe_mode() {
     let held = flown(&[&event("deadband: {time: 30 d, half_width: 0.5 deg, disturbance: 2e-3 0 0 N m}")]);
     close(held.row(Row::Deadband), 30.0 * (day(2e-3) + 2.0 * day(0.0)), 1e-9);
     // About x against the disturbance fire Y1 … or their like: two valves, as often as pulses come.
-    let pulses: f64 = held.cycles.iter().sum();
+    let pulses: f64 = held.wear.cycles.iter().sum();
     close(pulses, held.row(Row::Deadband) / pulse_kg * 2.0, 1e-9);
+    close(held.wear.throughput_kg.iter().sum(), held.row(Row::Deadband), 1e-9);
     let safe = flown(&[&event("safe_mode: {days_per_year: 36.525, half_width: 0.5 deg, disturbance: 2e-3 0 0 N m}")]);
     close(safe.row(Row::SafeMode), held.row(Row::Deadband) / 3.0, 1e-9);
 }
@@ -154,7 +155,7 @@ fn a_tank_that_runs_down() {
     let expected = gas_kg * ((1.0 + steady / 2.0 / gas_kg).powi(2) - 1.0);
     // Five strata that each take a fifth of the tank: the pressure of each is that when half of it has left.
     close(outcome.row(Row::WheelUnloading), expected, 0.01);
-    let fine = Plan::new(scenario(SMALL, &[&CALM[..], &settings].concat()), Resolution::Full, 0.0).unwrap();
+    let fine = Plan::new(scenario(SMALL, &[&CALM[..], &settings].concat()), Resolution::Full, Margin::NONE).unwrap();
     close(fine.fly(fine.nominal()).row(Row::WheelUnloading), expected, 2e-3);
     // Thrust falls with the pressure, so pulses must be longer or more: none is lost.
     assert!(outcome.unserved <= 0.0);
@@ -189,7 +190,7 @@ fn running_dry() {
 fn an_error_of_loading() {
     let scenario = scenario(SMALL, &[&CALM[..], &["tank.loading_error=0 ± 0.1 kg"]].concat());
     let id = scenario.vehicle.tank.loading_error_kg.parameter().unwrap();
-    let plan = Plan::new(scenario, Resolution::Default, 0.0).unwrap();
+    let plan = Plan::new(scenario, Resolution::Default, Margin::NONE).unwrap();
     let short = plan.fly(&plan.nominal().clone().with(id, -0.2));
     plan.audit(&short).unwrap();
     close(short.row(Row::LoadingError), 0.2, 1e-12);

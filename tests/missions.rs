@@ -3,7 +3,7 @@
 
 use couplet::config::{Document, read};
 use couplet::lifetime::Plan;
-use couplet::mission::Scenario;
+use couplet::mission::{Margin, Scenario};
 use couplet::momentum::Resolution;
 
 const DEMOS: [(&str, &str); 5] = [
@@ -110,7 +110,7 @@ fn both_resolutions_agree_on_every_demonstration() {
         ),
     ] {
         let flown = |resolution: Resolution| {
-            let plan = Plan::new(scenario(name, &[&format!("mission.phases={phases}")]).unwrap(), resolution, 0.0).unwrap();
+            let plan = Plan::new(scenario(name, &[&format!("mission.phases={phases}")]).unwrap(), resolution, Margin::NONE).unwrap();
             let windows: Vec<f64> = (0..plan.strata().len())
                 .flat_map(|k| {
                     let (windows, rate) = plan.nominal_unloads(k);
@@ -134,7 +134,7 @@ fn both_resolutions_agree_on_every_demonstration() {
 fn a_finer_tolerance_is_met_with_more_work() {
     let used = |tolerance: &str| {
         let settings = ["mission.phases=[{name: a, duration: 90 d, unload: {every: 1 d}}]", &format!("budget.tolerance={tolerance}")];
-        let plan = Plan::new(scenario("heron", &settings).unwrap(), Resolution::Default, 0.0).unwrap();
+        let plan = Plan::new(scenario("heron", &settings).unwrap(), Resolution::Default, Margin::NONE).unwrap();
         plan.convergence()[0]
     };
     let (coarse, fine) = (used("5 %"), used("0.3 %"));

@@ -9,17 +9,17 @@ use couplet::environment::{
 };
 use couplet::layout::intact;
 use couplet::lifetime::Plan;
-use couplet::mission::Scenario;
+use couplet::mission::{Margin, Scenario};
 use couplet::momentum::Resolution;
 use couplet::montecarlo::draws;
 use couplet::propellant::{burn_propellant, slew_momentum};
-use couplet::pulses::{Performance, Pricer, fire, unload};
+use couplet::pulses::{Performance, Pricer, Wear, fire, unload};
 use couplet::vehicle::MassState;
 use nalgebra::{Matrix3, Rotation3, Vector3};
 use support::{SMALL, heron, scenario};
 
 fn plan(scenario: Scenario) -> Plan {
-    Plan::new(scenario, Resolution::Default, 0.0).unwrap()
+    Plan::new(scenario, Resolution::Default, Margin::NONE).unwrap()
 }
 
 fn close(got: f64, expected: f64, relative: f64) {
@@ -68,10 +68,10 @@ fn a_bang_bang_turn() {
     let slew = slew_momentum(&Vector3::x(), angle, 10.0, &mass, pricer.authority()).unwrap();
     close(slew.duration_s, 6.8647, 1e-5);
     close(slew.rate_rad_per_s.to_degrees(), 26.22, 1e-3);
-    let mut cycles = vec![0.0; 12];
+    let mut wear = Wear::none(12);
     let performance = Performance::nominal(&scenario.vehicle.propulsion);
     let both = [slew.start_n_m_s, -slew.start_n_m_s];
-    let kg: f64 = both.iter().map(|h| pricer.cost(h, 1.0, &performance, &mut cycles).unwrap()).sum();
+    let kg: f64 = both.iter().map(|h| pricer.cost(h, 1.0, &performance, &mut wear).unwrap()).sum();
     close(kg, 0.07226, 1e-4);
     // A slow limit makes a coast: momentum I ω, time θ/ω + ω I/T.
     let slow = slew_momentum(&Vector3::x(), angle, 0.1, &mass, pricer.authority()).unwrap();
@@ -165,7 +165,7 @@ fn the_basis_agrees_with_a_plain_integration() {
         "environment.solar_activity={level: moderate}",
         "environment.body_light=off",
     ]);
-    let plan = Plan::new(scenario.clone(), Resolution::Full, 0.0).unwrap();
+    let plan = Plan::new(scenario.clone(), Resolution::Full, Margin::NONE).unwrap();
     let stratum = &plan.strata()[1];
     let phase = &scenario.mission.phases[0];
     let mass = plan.basis().masses[1];
@@ -237,7 +237,7 @@ fn default_resolution_agrees_with_full() {
         let start = format!("mission.orbit.mean_anomaly={anomaly} deg");
         let settings =
             [&start, "mission.phases=[{name: only, duration: 60 d, unload: {every: 1 d}}]", "environment.solar_activity={level: moderate}"];
-        let plan = Plan::new(heron(&settings), resolution, 0.0).unwrap();
+        let plan = Plan::new(heron(&settings), resolution, Margin::NONE).unwrap();
         (plan.fly(plan.nominal()).attitude_total_kg(), plan.strata().len())
     };
     let full: Vec<(f64, usize)> = [0.0, 22.5, 45.0, 67.5].map(|anomaly| flown(anomaly, Resolution::Full)).to_vec();
@@ -290,7 +290,7 @@ fn unloading_at_a_fill() {
 #[test]
 fn a_layout_that_cannot_unload_is_refused() {
     let without_z = "thrusters=[{name: a, position: 0 2 0 m, push: 0 0 1}, {name: b, position: 0 -2 0 m, push: 0 0 -1}]";
-    let error = Plan::new(scenario(SMALL, &[without_z]), Resolution::Default, 0.0).unwrap_err();
+    let error = Plan::new(scenario(SMALL, &[without_z]), Resolution::Default, Margin::NONE).unwrap_err();
     assert!(error.to_string().contains("no firing turns the spacecraft along"), "{error}");
 }
 

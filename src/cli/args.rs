@@ -88,6 +88,10 @@ pub(super) struct Common {
 pub(super) struct BudgetArgs {
     #[command(flatten)]
     pub(super) common: Common,
+
+    /// Only how one row of the ledger comes about in the nominal mission, such as `wheel_unloading`.
+    #[arg(long, value_name = "ROW")]
+    pub(super) explain: Option<String>,
 }
 
 #[derive(Debug, Args)]
@@ -98,4 +102,8 @@ pub(super) struct UnloadArgs {
     /// Momentum in the wheels, body frame, such as "1 2 -0.5 N m s". Default: the largest of the nominal mission.
     #[arg(long, value_name = "VECTOR", allow_hyphen_values = true)]
     pub(super) momentum: Option<String>,
+
+    /// Push that the unload may leave: `zero`, `any`, or a price on it, such as "0.5 g/(N s)". Default: `propulsion.net_force`.
+    #[arg(long, value_name = "CHOICE", allow_hyphen_values = true)]
+    pub(super) net_force: Option<String>,
 }

@@ -7,19 +7,22 @@ use super::args::{Format, UnloadArgs};
 use super::budget::pretty;
 use super::output::{Failure, Target};
 use super::scenario::{load, on_threads, plan};
+use crate::pulses::ForceChoice;
 use crate::report::{unload_json, unload_table, unload_text};
 use crate::uncertain::parse_triple;
-use crate::units::{Kind, kind::Momentum};
+use crate::units::kind::{ImpulsePrice, Momentum};
+use crate::units::{Kind, parse};
 
 pub(super) fn run(args: &UnloadArgs) -> Outcome {
     let common = &args.common;
     let asked = args.momentum.as_deref().map(momentum).transpose()?;
+    let force = args.net_force.as_deref().map(force).transpose()?;
     let loaded = load(common)?;
     let target = Target::of(common, &loaded)?;
     let plan = on_threads(common, || plan(loaded.scenario, common))??;
     let found = match asked {
-        Some(momentum) => Some(plan.unload_in(0, momentum)),
-        None => plan.largest_unload(),
+        Some(momentum) => Some(plan.unload_in(0, momentum, force)),
+        None => plan.largest_momentum().map(|(stratum, momentum)| plan.unload_in(stratum, momentum, force)),
     };
     let refused = |message: String| Failure::Input(format!("error: {message}\n --> {}", common.file.display()));
     let unload = match found {
@@ -35,6 +38,23 @@ pub(super) fn run(args: &UnloadArgs) -> Outcome {
     };
     target.finish(&text)?;
     Ok(true)
+}
+
+fn force(text: &str) -> Result<ForceChoice, Failure> {
+    match text.trim() {
+        "zero" => Ok(ForceChoice::Zero),
+        "any" => Ok(ForceChoice::Any),
+        price => match parse(price, ImpulsePrice::DIMENSION, ImpulsePrice::NAME, ImpulsePrice::EXAMPLE) {
+            Ok(price) if price >= 0.0 => Ok(ForceChoice::Priced(price)),
+            Ok(_) => Err(Failure::Input(format!(
+                "error: --net-force \"{text}\": expected a price of at least zero\n  = help: write `any` for none"
+            ))),
+            Err(error) => Err(Failure::Input(format!(
+                "error: --net-force \"{text}\": {}\n  = help: write `zero`, `any` or a price such as \"0.5 g/(N s)\"",
+                error.message
+            ))),
+        },
+    }
 }
 
 fn momentum(text: &str) -> Result<Vector3<f64>, Failure> {

@@ -171,5 +171,5 @@ pub(crate) fn kind_named(name: &str) -> Option<KindWords> {
     macro_rules! table {
         ($($kind:ident)*) => { match name { $(stringify!($kind) => Some(KindWords::of::<units::kind::$kind>()),)* _ => None } };
     }
-    table!(Number Length Area Volume Mass MassRate Time Force Impulse Torque Momentum Inertia Speed Dipole Angle AngularRate Pressure Density GravitationalParameter Irradiance Temperature Price)
+    table!(Number Length Area Volume Mass MassRate Time Force Impulse Torque Momentum Inertia Speed Dipole Angle AngularRate Pressure Density GravitationalParameter Irradiance Temperature Acceleration ImpulsePrice Price)
 }

@@ -73,8 +73,13 @@ pub struct Budget {
     pub lifetimes: Option<Quantity<kind::Number>>,
     /// Seed of the draws, a whole number. Default: 1.
     pub seed: Option<u64>,
-    /// Margin on attitude-control propellant, such as `100 %`. Default: none.
+    /// Margin on attitude-control propellant, such as `100 %`. Default: that of `margin_rule`, else none.
     pub margin: Option<Quantity<kind::Number>>,
+    /// Margin on orbit burns, such as `5 %`. Default: that of `margin_rule`, else none.
+    pub burn_margin: Option<Quantity<kind::Number>>,
+    /// A rule that gives the margins. Default: `own`.
+    #[serde(default)]
+    pub margin_rule: MarginRule,
     /// Confidence of the limits on quantiles. Default: `95 %`.
     pub confidence: Option<Quantity<kind::Number>>,
     /// How finely the mission is simulated. Default: `default`.
@@ -82,6 +87,19 @@ pub struct Budget {
     pub resolution: ResolutionChoice,
     /// How far steps and strata of the default resolution may put secular and cyclic momentum off, `0.1 %` to `20 %`. Default: `1 %`.
     pub tolerance: Option<Quantity<kind::Number>>,
+}
+
+/// A rule that gives margins.
+#[derive(Debug, Clone, Copy, Default, PartialEq, Eq, Deserialize, JsonSchema)]
+#[serde(rename_all = "snake_case")]
+pub enum MarginRule {
+    /// What `margin` and `burn_margin` say.
+    #[default]
+    Own,
+    /// ESA SRE-PA/2011.097, section 2.3: 100 % on attitude control and momentum management, 5 % on calculated manoeuvres, and 2 % residual where `tank.residual` is not given.
+    EsaAssessment,
+    /// None: the P95 upper limit is the requirement.
+    P95,
 }
 
 /// How finely the mission is simulated.
@@ -132,6 +150,12 @@ pub enum Figure {
     UnloadInterval,
     /// Largest share of the wheel envelope filled, nominal.
     WheelFill,
+    /// Valve cycles of the busiest thruster, 95 % quantile.
+    ValveCycles,
+    /// Propellant through the busiest thruster, 95 % quantile, kg.
+    Throughput,
+    /// Push of all unloads, mean over the nominal mission, (m/s)/d without regard to direction.
+    UnloadDeltaVPerDay,
     /// Guaranteed pure torque of the intact layout, both ends of the centre-of-mass travel, N·m.
     GuaranteedPureTorque,
     /// Least torque of the cases that `axis`, `out` and `net_force` name, N·m.

@@ -41,7 +41,7 @@ pub use document::Document;
 pub use environment::{Accommodation, ActivityLevel, Atmosphere, BodyLight, Cycle, Environment, SolarActivity, Wind};
 pub use event::{AxisTurn, Burn, Deadband, Event, Hold, RateDamping, SafeMode, Slews, SpinChange, When};
 pub use leaf::{Quantity, SpreadQuantity, SpreadTriple, Triple};
-pub use mission::{Axis, Budget, Figure, Mission, Phase, Requirement, ResolutionChoice, Timing, Unload};
+pub use mission::{Axis, Budget, Figure, MarginRule, Mission, Phase, Requirement, ResolutionChoice, Timing, Unload};
 pub use nearest::{did_you_mean, known, nearest};
 pub use orbit::{About, LagrangePoint, Orbit, OwnBody, Stationary};
 pub use path::{Path, Segment};

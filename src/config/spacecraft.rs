@@ -109,6 +109,8 @@ pub struct Propulsion {
     pub net_force: NetForceChoice,
     /// Pulses that one thruster is qualified for. Default: not stated, not checked.
     pub qualified_pulses: Option<Quantity<kind::Number>>,
+    /// Propellant that one thruster is qualified to pass, such as `60 kg`. Default: not stated, not checked.
+    pub qualified_throughput: Option<Quantity<kind::Mass>>,
     /// How thrust and exhaust speed of thrusters and engines follow the feed pressure. Default: thrust in proportion, exhaust speed not at all.
     pub pressure_law: Option<PressureLaw>,
 }

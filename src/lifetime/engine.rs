@@ -4,7 +4,7 @@ use nalgebra::{DMatrix, Vector3};
 
 use super::flight::{Flight, Place};
 use super::policy::unload_rate;
-use super::{Outcome, Plan, UnloadRate};
+use super::{Entry, Outcome, Plan, UnloadRate, What};
 use crate::momentum::FeatureValues;
 use crate::propellant::Row;
 use crate::uncertain::Draw;
@@ -62,11 +62,33 @@ impl Plan {
         (windows, rate)
     }
 
+    /// The books of the nominal flight, in order of time: how the propellant of every row came about.
+    #[must_use]
+    pub fn books(&self) -> Vec<Entry> {
+        let mut flight = Flight::new(self, &self.nominal);
+        flight.entries = Some(Vec::new());
+        self.through(&mut flight, &self.nominal_rows);
+        flight.entries.unwrap_or_default()
+    }
+
     fn timeline(&self, draw: &Draw, rows: &[f64]) -> Outcome {
         let tank = &self.scenario.vehicle.tank;
         let mut flight = Flight::new(self, draw);
-        let leakage = tank.leakage_kg_per_s.in_draw(draw);
+        self.through(&mut flight, rows);
         let residual = tank.residual.in_draw(draw) * tank.loaded_kg;
+        let mut outcome = flight.finish();
+        outcome.rows_kg[Row::Residual.index()] = residual;
+        outcome.rows_kg[Row::LoadingError.index()] = 0.0 - tank.loading_error_kg.in_draw(draw);
+        outcome.rows_kg[Row::Margin.index()] =
+            self.margin.attitude * outcome.attitude_total_kg() + self.margin.burns * outcome.row(Row::OrbitBurns);
+        let usable_kg = tank.loaded_kg + tank.loading_error_kg.in_draw(draw) - residual;
+        outcome.life_s = self.life(&outcome.used_kg, usable_kg);
+        outcome
+    }
+
+    /// Flies all strata.
+    fn through(&self, flight: &mut Flight<'_>, rows: &[f64]) {
+        let leakage = self.scenario.vehicle.tank.leakage_kg_per_s.in_draw(flight.draw);
         let mut previous = None;
         for (index, stratum) in self.strata.iter().enumerate() {
             let next = self.strata.get(index + 1).map(|next| next.phase);
@@ -76,17 +98,12 @@ impl Plan {
                 flight.events(&place, true);
                 flight.unload(index, &windows, rate);
                 flight.events(&place, false);
-                flight.take(Row::Leakage, leakage * stratum.duration_s);
+                let leaked_kg = leakage * stratum.duration_s;
+                flight.take(Row::Leakage, leaked_kg);
+                flight.note(Row::Leakage, index, What::Time, stratum.duration_s, leaked_kg);
             });
             previous = Some(stratum.phase);
         }
-        let mut outcome = flight.finish();
-        outcome.rows_kg[Row::Residual.index()] = residual;
-        outcome.rows_kg[Row::LoadingError.index()] = -tank.loading_error_kg.in_draw(draw);
-        outcome.rows_kg[Row::Margin.index()] = self.margin * outcome.attitude_total_kg();
-        let usable_kg = tank.loaded_kg + tank.loading_error_kg.in_draw(draw) - residual;
-        outcome.life_s = self.life(&outcome.used_kg, usable_kg);
-        outcome
     }
 
     /// Time at which `usable_kg` is gone.

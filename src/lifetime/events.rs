@@ -2,8 +2,8 @@
 
 use nalgebra::Vector3;
 
-use super::TooLarge;
 use super::flight::{Flight, Place};
+use super::{TooLarge, What};
 use crate::config::{Hold, When};
 use crate::mission::{Band, BurnSource, Event, EventKind};
 use crate::propellant::{Burn, DeadbandAxis, Row, axis_turn_momentum, damping_momentum, propellant_of_burn, slew_momentum, spin_momentum};
@@ -123,8 +123,9 @@ impl Flight<'_> {
             for (firing, per_s) in [(&first, rates.against_per_s), (&second, rates.with_per_s)] {
                 let pulses = per_s * time_s;
                 self.take(row, firing.propellant_kg * pulses);
-                for thruster in &firing.thrusters {
-                    self.outcome.cycles[*thruster] += pulses;
+                self.note(row, stratum, What::Pulses(axis, firing.bit_n_m_s), pulses, firing.propellant_kg * pulses);
+                for (thruster, kg) in &firing.thrusters {
+                    self.outcome.wear.add(*thruster, pulses, kg * pulses);
                 }
             }
         }
@@ -154,11 +155,21 @@ impl Flight<'_> {
                     let slower = modulated.force_n.norm() / modulated.flow_kg_per_s;
                     let more_kg = propellant_of_burn(delta_v * times, slower, before.mass_kg) - whole_kg;
                     self.take(Row::BurnHold, more_kg.max(0.0));
+                    let what = What::Burn { delta_v_m_per_s: delta_v * times, mass_kg: before.mass_kg, speed_m_per_s: slower };
+                    self.note(Row::BurnHold, stratum, what, times, more_kg.max(0.0));
                 }
                 None => self.outcome.unserved += times,
             },
         }
         self.take(Row::OrbitBurns, whole_kg);
+        let what = What::Burn { delta_v_m_per_s: delta_v * times, mass_kg: before.mass_kg, speed_m_per_s: speed };
+        self.note(Row::OrbitBurns, stratum, what, times, whole_kg);
+        if let BurnSource::Thrusters(list) = source {
+            for index in list {
+                let (thrust, speed) = self.performance.of(*index);
+                self.outcome.wear.add(*index, times, whole_kg * thrust / speed / push.flow_kg_per_s);
+            }
+        }
         whole_kg
     }
 

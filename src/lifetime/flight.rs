@@ -2,10 +2,10 @@
 
 use nalgebra::Vector3;
 
-use super::{Outcome, Plan, UnloadRate};
+use super::{Entry, Outcome, Plan, UnloadRate, What};
 use crate::config::Timing;
 use crate::propellant::{ROWS, Row};
-use crate::pulses::Performance;
+use crate::pulses::{Performance, Wear};
 use crate::uncertain::Draw;
 use crate::vehicle::{Feed, MassState};
 
@@ -28,6 +28,8 @@ pub(super) struct Flight<'a> {
     /// Factors on thrust and exhaust speed at the feed pressure at hand.
     pub(super) pressed: (f64, f64),
     pub(super) outcome: Outcome,
+    /// The books, if they are asked for.
+    pub(super) entries: Option<Vec<Entry>>,
     /// Propellant left, kg; below zero it is what the mission lacks.
     left_kg: f64,
 }
@@ -45,7 +47,7 @@ impl<'a> Flight<'a> {
             outcome: Outcome {
                 rows_kg: [0.0; ROWS.len()],
                 unloads: 0.0,
-                cycles: vec![0.0; vehicle.propulsion.thrusters.len()],
+                wear: Wear::none(vehicle.propulsion.thrusters.len()),
                 used_kg: Vec::with_capacity(plan.strata().len()),
                 life_s: None,
                 shortest_interval_s: None,
@@ -53,6 +55,7 @@ impl<'a> Flight<'a> {
                 left_kg: 0.0,
                 too_large: None,
             },
+            entries: None,
             left_kg: vehicle.tank.loaded_kg + vehicle.tank.loading_error_kg.in_draw(draw),
         }
     }
@@ -62,10 +65,10 @@ impl<'a> Flight<'a> {
     pub(super) fn through(&mut self, stratum: impl Fn(&mut Self)) {
         if self.plan.vehicle().tank.feed != Feed::Regulated {
             self.press(0.0);
-            let (outcome, left_kg) = (self.outcome.clone(), self.left_kg);
+            let (outcome, left_kg, entries) = (self.outcome.clone(), self.left_kg, self.entries.clone());
             stratum(self);
             let takes_kg = left_kg - self.left_kg;
-            (self.outcome, self.left_kg) = (outcome, left_kg);
+            (self.outcome, self.left_kg, self.entries) = (outcome, left_kg, entries);
             self.press(takes_kg / 2.0);
         }
         stratum(self);
@@ -94,9 +97,24 @@ impl<'a> Flight<'a> {
 
     /// Gives an angular impulse (N·m·s, body frame) `times` times.
     pub(super) fn fire(&mut self, row: Row, stratum: usize, impulse: &Vector3<f64>, times: f64) {
-        match self.plan.pricer(stratum).cost(impulse, times, &self.performance, &mut self.outcome.cycles) {
-            Some(kg) => self.take(row, kg),
+        match self.plan.pricer(stratum).cost(impulse, times, &self.performance, &mut self.outcome.wear) {
+            Some(kg) => {
+                self.take(row, kg);
+                self.note(row, stratum, What::Impulse(*impulse), times, kg);
+            }
             None => self.outcome.unserved += times,
+        }
+    }
+
+    /// Writes an entry into the books, if they are asked for.
+    pub(super) fn note(&mut self, row: Row, stratum: usize, what: What, times: f64, kg: f64) {
+        let plan = self.plan;
+        if let Some(entries) = &mut self.entries {
+            let price_kg = match &what {
+                What::Impulse(impulse) => plan.price(stratum, impulse),
+                _ => None,
+            };
+            entries.push(Entry { row, stratum, what, times, kg, price_kg });
         }
     }
 

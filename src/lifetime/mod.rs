@@ -11,14 +11,16 @@ mod modulation;
 mod outcome;
 mod plan;
 mod policy;
+mod push;
 mod summary;
 mod timing;
 
 pub use audit::{Imbalance, audit_momentum, audit_propellant};
-pub use outcome::{Outcome, TooLarge};
+pub use outcome::{Entry, Outcome, TooLarge, What};
 pub use plan::{Plan, PlanError};
 pub use policy::UnloadRate;
-pub use summary::{PhaseSummary, TypicalUnload};
+pub use push::UnloadDeltaV;
+pub use summary::{PhaseSummary, Transient, TypicalUnload};
 pub use timing::TimingGain;
 
 /// Lifetimes flown together: one matrix product of this width.

@@ -1,6 +1,9 @@
 //! What one lifetime did.
 
+use nalgebra::Vector3;
+
 use crate::propellant::{ROWS, Row};
+use crate::pulses::Wear;
 
 /// A burn that asks for more propellant than is left.
 #[derive(Debug, Clone, Copy, PartialEq)]
@@ -13,6 +16,43 @@ pub struct TooLarge {
     pub left_kg: f64,
 }
 
+/// One entry of the books of a flight: how some propellant of a row came about.
+#[derive(Debug, Clone, PartialEq)]
+pub struct Entry {
+    /// The row.
+    pub row: Row,
+    /// Index of the stratum.
+    pub stratum: usize,
+    /// What was done.
+    pub what: What,
+    /// How often.
+    pub times: f64,
+    /// Propellant of all, kg.
+    pub kg: f64,
+    /// Propellant of one angular impulse at the steady exhaust speed, kg.
+    pub price_kg: Option<f64>,
+}
+
+/// What was done for an entry.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub enum What {
+    /// An angular impulse given, N·m·s, body frame.
+    Impulse(Vector3<f64>),
+    /// Pulses that hold an axis (0 to 2) within a band: angular impulse of one, N·m·s.
+    Pulses(usize, f64),
+    /// A change of speed, m/s, from a mass, kg, at an exhaust speed, m/s.
+    Burn {
+        /// Change of speed of all, m/s.
+        delta_v_m_per_s: f64,
+        /// Mass before, kg.
+        mass_kg: f64,
+        /// Effective exhaust speed, m/s.
+        speed_m_per_s: f64,
+    },
+    /// Time that passed.
+    Time,
+}
+
 /// What one lifetime did.
 #[derive(Debug, Clone, PartialEq)]
 pub struct Outcome {
@@ -20,8 +60,8 @@ pub struct Outcome {
     pub rows_kg: [f64; ROWS.len()],
     /// Unloads over the mission; a last interval that the mission cuts short counts by its share.
     pub unloads: f64,
-    /// Valve cycles of each thruster.
-    pub cycles: Vec<f64>,
+    /// Valve cycles of each thruster, and propellant through it.
+    pub wear: Wear,
     /// Propellant used at the end of each stratum, kg, without residual and margin.
     pub used_kg: Vec<f64>,
     /// Time at which the usable propellant is gone, s; past the mission carried on at the mean rate of

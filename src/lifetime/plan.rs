@@ -1,7 +1,7 @@
 //! All that chance does not touch, computed once.
 
 use crate::authority::{Authority, Price};
-use crate::mission::{Scenario, UnloadPolicy};
+use crate::mission::{Margin, Scenario, UnloadPolicy};
 use crate::momentum::{
     Convergence, FoldedBasis, MassHistory, PhaseMomentum, RawBasis, Resolution, Stratum, phase_momentum, simulate, wheel_envelope,
     wheel_torque,
@@ -58,19 +58,19 @@ pub struct Plan {
     pub(super) pricer_of: Vec<usize>,
     /// Shares of the time that burning thrusters are on where that holds the attitude.
     pub(super) duties: super::modulation::Duties,
-    /// Margin on attitude control, as a share.
-    pub(super) margin: f64,
+    /// Margins.
+    pub(super) margin: Margin,
 }
 
 impl Plan {
     /// Simulates the mission and prices the layout.
     ///
-    /// `margin` is a share of the attitude-control rows. The first flight, with a full tank throughout,
+    /// The first flight, with a full tank throughout,
     /// gives the propellant on board over time; mass properties then follow it.
     ///
     /// # Errors
     /// The layout cannot make the torques that the mission asks of it.
-    pub fn new(scenario: Scenario, resolution: Resolution, margin: f64) -> Result<Self, PlanError> {
+    pub fn new(scenario: Scenario, resolution: Resolution, margin: Margin) -> Result<Self, PlanError> {
         let (strata, raw, convergence) = simulate(&scenario, resolution);
         let full = MassHistory::constant(scenario.vehicle.tank.loaded_kg);
         let filling = scenario.vehicle.wheels.as_ref().map(|wheels| {

@@ -4,7 +4,7 @@ use nalgebra::Vector3;
 
 use super::Plan;
 use crate::config::Timing;
-use crate::pulses::Performance;
+use crate::pulses::{Performance, Wear};
 
 /// Propellant of the nominal unloads that may wait for the cheapest point of the orbit, kg.
 #[derive(Debug, Clone, Copy, PartialEq)]
@@ -40,10 +40,9 @@ impl Plan {
         for stratum in waiting {
             let (windows, Some(rate)) = self.nominal_unloads(stratum) else { continue };
             let impulses: Vec<Vector3<f64>> = windows.iter().map(|h| -h).collect();
-            let mut cycles = vec![0.0; self.vehicle().propulsion.thrusters.len()];
-            let mut cost = |impulse: &Vector3<f64>, times: f64| {
-                self.pricer(stratum).cost(impulse, times, &performance, &mut cycles).unwrap_or(f64::NAN)
-            };
+            let mut wear = Wear::none(self.vehicle().propulsion.thrusters.len());
+            let mut cost =
+                |impulse: &Vector3<f64>, times: f64| self.pricer(stratum).cost(impulse, times, &performance, &mut wear).unwrap_or(f64::NAN);
             gain.as_due_kg += impulses.iter().map(|impulse| cost(impulse, rate.count / impulses.len() as f64)).sum::<f64>();
             gain.cheapest_kg += self.cheapest(stratum, &impulses).map_or(0.0, |impulse| cost(&impulse, rate.count));
         }

@@ -19,7 +19,7 @@ pub use attitude::{Attitude, Law, Moment};
 pub use event::{Band, BurnSource, Event, EventKind};
 pub use phase::{Phase, UnloadPolicy};
 pub use pointing::{Direction, Pointing, Sky};
-pub use settings::{Bound, Requirement, Settings};
+pub use settings::{Bound, Margin, Requirement, Settings};
 pub use surroundings::{Accommodation, BodyLightShares};
 pub use survey::Survey;
 

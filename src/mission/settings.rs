@@ -1,6 +1,6 @@
 //! How the budget is made, and what must hold.
 
-use crate::config::{self, Figure, ResolutionChoice, Spec};
+use crate::config::{self, Figure, MarginRule, ResolutionChoice, Spec};
 use crate::layout::Scope;
 use crate::units::{self, Dimension, Kind, kind};
 use crate::vehicle::Faults;
@@ -12,14 +12,30 @@ pub struct Settings {
     pub lifetimes: u64,
     /// Seed of the draws.
     pub seed: u64,
-    /// Margin on the attitude-control rows, as a share.
-    pub margin: f64,
+    /// Margins.
+    pub margin: Margin,
     /// Confidence of the limits on quantiles.
     pub confidence: f64,
     /// How finely the mission is simulated.
     pub resolution: ResolutionChoice,
     /// How far the default resolution may put secular and cyclic momentum off, as a share.
     pub tolerance: f64,
+}
+
+/// Margins, as shares of nominal rows.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Margin {
+    /// The rule they come from.
+    pub rule: MarginRule,
+    /// On the attitude-control rows.
+    pub attitude: f64,
+    /// On orbit burns.
+    pub burns: f64,
+}
+
+impl Margin {
+    /// None.
+    pub const NONE: Self = Self { rule: MarginRule::Own, attitude: 0.0, burns: 0.0 };
 }
 
 /// A bound on a figure.
@@ -57,6 +73,9 @@ impl Figure {
             Self::PropellantNominal | Self::PropellantP95 | Self::PropellantP99 => {
                 (kind::Mass::DIMENSION, kind::Mass::UNIT, kind::Mass::NAME, kind::Mass::EXAMPLE)
             }
+            Self::ValveCycles => (kind::Number::DIMENSION, "", "a number of pulses", "100000"),
+            Self::Throughput => (kind::Mass::DIMENSION, kind::Mass::UNIT, kind::Mass::NAME, kind::Mass::EXAMPLE),
+            Self::UnloadDeltaVPerDay => (kind::Acceleration::DIMENSION, kind::Acceleration::UNIT, kind::Acceleration::NAME, "0.2 mm/(s d)"),
             Self::ProbabilityEnough | Self::WheelFill => (kind::Number::DIMENSION, "", "a share", "95 %"),
             Self::UnloadInterval => (kind::Time::DIMENSION, kind::Time::UNIT, kind::Time::NAME, "1 d"),
             Self::Price => (kind::Price::DIMENSION, kind::Price::UNIT, kind::Price::NAME, kind::Price::EXAMPLE),
@@ -76,6 +95,9 @@ impl Figure {
             Self::ProbabilityEnough => "probability of enough",
             Self::UnloadInterval => "shortest time between unloads",
             Self::WheelFill => "largest fill of the wheels",
+            Self::ValveCycles => "valve cycles, busiest, P95",
+            Self::Throughput => "throughput, busiest, P95",
+            Self::UnloadDeltaVPerDay => "push of unloads",
             Self::GuaranteedPureTorque => "pure torque in every direction",
             Self::Torque => "least torque",
             Self::Price => "highest price",
@@ -89,13 +111,19 @@ const MOST_LIFETIMES: f64 = 1e8;
 pub(super) fn settings(written: &config::Budget, faults: &mut Faults) -> Option<Settings> {
     let lifetimes =
         faults.within("budget.lifetimes", written.lifetimes.map_or(10_000.0, |n| n.0), 1.0, MOST_LIFETIMES, "a number of lifetimes");
-    let margin = faults.within("budget.margin", written.margin.map_or(0.0, |margin| margin.0), 0.0, 100.0, "a margin");
+    let (attitude, burns) = match written.margin_rule {
+        MarginRule::Own | MarginRule::P95 => (0.0, 0.0),
+        MarginRule::EsaAssessment => (1.0, 0.05),
+    };
+    let attitude = faults.within("budget.margin", written.margin.map_or(attitude, |margin| margin.0), 0.0, 100.0, "a margin");
+    let burns = faults.within("budget.burn_margin", written.burn_margin.map_or(burns, |margin| margin.0), 0.0, 100.0, "a margin");
     let confidence = faults.within("budget.confidence", written.confidence.map_or(0.95, |c| c.0), 0.5, 0.999_999, "a confidence");
     let tolerance = faults.within("budget.tolerance", written.tolerance.map_or(0.01, |share| share.0), 1e-3, 0.2, "a tolerance");
     #[expect(clippy::cast_possible_truncation, clippy::cast_sign_loss, reason = "checked to lie from 1 to 1e8")]
     let lifetimes = lifetimes?.round() as u64;
     let (seed, resolution) = (written.seed.unwrap_or(1), written.resolution);
-    Some(Settings { lifetimes, seed, margin: margin?, confidence: confidence?, resolution, tolerance: tolerance? })
+    let margin = Margin { rule: written.margin_rule, attitude: attitude?, burns: burns? };
+    Some(Settings { lifetimes, seed, margin, confidence: confidence?, resolution, tolerance: tolerance? })
 }
 
 pub(super) fn requirements(spec: &Spec, faults: &mut Faults) -> Vec<Requirement> {

@@ -8,7 +8,7 @@ use super::{
 };
 use crate::config;
 use crate::layout::{LayoutCase, all_cases, figure, intact};
-use crate::lifetime::{Outcome, Plan, TimingGain};
+use crate::lifetime::{Outcome, Plan, TimingGain, UnloadDeltaV};
 use crate::mission::{Bound, Requirement};
 use crate::propellant::{ROWS, Row};
 
@@ -97,6 +97,12 @@ pub struct Budget {
     pub unloads: Distribution,
     /// Valve cycles of each thruster.
     pub cycles: Vec<Distribution>,
+    /// Propellant through each thruster, kg.
+    pub throughput: Vec<Distribution>,
+    /// Share of lifetimes whose attitude control stays within the nominal value and its margin.
+    pub within_margin: Proportion,
+    /// Push of the nominal unloads.
+    pub unload_delta_v: Option<UnloadDeltaV>,
     /// Time until the usable propellant is gone, s, that this share of lifetimes reaches; `None` if it never ends.
     pub life_s: Vec<(f64, Option<f64>)>,
     /// Propellant loaded, kg.
@@ -136,7 +142,9 @@ impl Budget {
         let mut store = run(plan, seed, lifetimes, &|done| progress("lifetimes", done, lifetimes))?;
         let all = distributions(&mut store, plan, &nominal, confidence)?;
         let loaded_kg = plan.vehicle().tank.loaded_kg;
-        let enough = enough(&mut store, loaded_kg, confidence)?;
+        let enough = share_within(&mut store, Figure::Needed, loaded_kg, confidence)?;
+        let margin_kg = nominal.attitude_total_kg() * (1.0 + plan.scenario().settings.margin.attitude);
+        let within_margin = share_within(&mut store, Figure::AttitudeTotal, margin_kg, confidence)?;
         let life_s = lives(&mut store)?;
         drop(store);
         progress("drivers", 0, 1);
@@ -150,6 +158,9 @@ impl Budget {
             needed: one(Figure::Needed),
             unloads: one(Figure::Unloads),
             cycles: (0..thrusters).map(|k| one(Figure::Cycles(k))).collect(),
+            throughput: (0..thrusters).map(|k| one(Figure::Throughput(k, thrusters))).collect(),
+            within_margin,
+            unload_delta_v: plan.unload_delta_v(),
             nominal,
             life_s,
             loaded_kg,
@@ -185,6 +196,9 @@ impl Budget {
             F::ProbabilityEnough => Some(self.enough.lower),
             F::UnloadInterval => self.nominal.shortest_interval_s,
             F::WheelFill => self.wheel_fill,
+            F::ValveCycles => largest_p95(&self.cycles),
+            F::Throughput => largest_p95(&self.throughput),
+            F::UnloadDeltaVPerDay => Some(self.unload_delta_v.map_or(0.0, |push| push.per_day_m_per_s)),
             F::Torque => figure(cases, &requirement.scope).0,
             F::Price => figure(cases, &requirement.scope).1,
             F::GuaranteedPureTorque => self.layout.iter().map(|case| case.pure_torque.guaranteed_n_m).reduce(f64::min),
@@ -193,9 +207,15 @@ impl Budget {
     }
 }
 
+/// The largest P95 of several figures.
+fn largest_p95(list: &[Distribution]) -> Option<f64> {
+    list.iter().filter_map(|distribution| Some(distribution.at(0.95)?.value)).reduce(f64::max)
+}
+
 /// Distributions of all figures, by column.
 fn distributions(store: &mut Store, plan: &Plan, nominal: &Outcome, confidence: f64) -> io::Result<Vec<Distribution>> {
-    let columns = Figure::Cycles(plan.vehicle().propulsion.thrusters.len()).column();
+    let thrusters = plan.vehicle().propulsion.thrusters.len();
+    let columns = Figure::Throughput(thrusters, thrusters).column();
     let n = store.rows();
     let mut moments = vec![Moments::new(); columns];
     store.for_each(|row| moments.iter_mut().zip(row).for_each(|(moment, value)| moment.push(*value)))?;
@@ -227,9 +247,10 @@ fn rank_of(n: usize, p: f64) -> usize {
     rank.min(n)
 }
 
-fn enough(store: &mut Store, loaded_kg: f64, confidence: f64) -> io::Result<Proportion> {
+/// Share of lifetimes in which a figure does not exceed a bound.
+fn share_within(store: &mut Store, figure: Figure, most: f64, confidence: f64) -> io::Result<Proportion> {
     let mut covered = 0;
-    store.for_each(|row| covered += usize::from(row[Figure::Needed.column()] <= loaded_kg))?;
+    store.for_each(|row| covered += usize::from(row[figure.column()] <= most))?;
     Ok(proportion(covered, store.rows(), confidence))
 }
 

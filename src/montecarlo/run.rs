@@ -25,8 +25,10 @@ pub enum Figure {
     Unloads,
     /// Time until the usable propellant is gone, s; infinite if never.
     Life,
-    /// Valve cycles of a thruster.
+    /// Valve cycles of the thruster of this index.
     Cycles(usize),
+    /// Propellant through the thruster of this index, of so many, kg.
+    Throughput(usize, usize),
 }
 
 impl Figure {
@@ -40,13 +42,15 @@ impl Figure {
             Self::Unloads => ROWS.len() + 2,
             Self::Life => ROWS.len() + 3,
             Self::Cycles(thruster) => ROWS.len() + 4 + thruster,
+            Self::Throughput(thruster, of) => ROWS.len() + 4 + of + thruster,
         }
     }
 }
 
 pub(super) fn figures(outcome: &Outcome) -> Vec<f64> {
     let single = [outcome.attitude_total_kg(), outcome.needed_kg(), outcome.unloads, outcome.life_s.unwrap_or(f64::INFINITY)];
-    outcome.rows_kg.iter().copied().chain(single).chain(outcome.cycles.iter().copied()).collect()
+    let wear = outcome.wear.cycles.iter().chain(&outcome.wear.throughput_kg).copied();
+    outcome.rows_kg.iter().copied().chain(single).chain(wear).collect()
 }
 
 /// The draws of lifetimes `first..first + count`.
@@ -75,7 +79,8 @@ pub fn draws(plan: &Plan, seed: u64, first: u64, count: usize) -> Vec<Draw> {
 /// # Errors
 /// The temporary file cannot be written.
 pub fn run(plan: &Plan, seed: u64, lifetimes: u64, progress: &(dyn Fn(u64) + Sync)) -> io::Result<Store> {
-    let columns = Figure::Cycles(plan.vehicle().propulsion.thrusters.len()).column();
+    let thrusters = plan.vehicle().propulsion.thrusters.len();
+    let columns = Figure::Throughput(thrusters, thrusters).column();
     let mut store = Store::new(columns)?;
     let block = BLOCK as u64;
     let wave = BLOCKS_PER_WAVE * block;

@@ -36,6 +36,12 @@ pub(super) fn warnings(plan: &Plan, budget: &Budget) -> Vec<String> {
             list.push(format!("thruster {} makes {cycles:.0} pulses at P95, over the {limit:.0} it is qualified for", name(thruster)));
         }
     }
+    if let Some(limit) = plan.vehicle().propulsion.qualified_throughput_kg {
+        let over = budget.throughput.iter().enumerate().filter_map(|(k, d)| Some((k, d.at(0.95)?.value))).filter(|(_, kg)| *kg > limit);
+        for (thruster, kg) in over {
+            list.push(format!("thruster {} passes {kg:.2} kg at P95, over the {limit:.2} kg it is qualified for", name(thruster)));
+        }
+    }
     if budget.needed.nominal > budget.loaded_kg {
         list.push(format!(
             "the propellant loaded, {:.2} kg, does not cover the nominal need of {:.2} kg",

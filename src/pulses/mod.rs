@@ -8,5 +8,5 @@ mod pricer;
 mod unload;
 
 pub use firing::{Firing, fire};
-pub use pricer::{Performance, Pricer, SmallestFiring};
+pub use pricer::{ForceChoice, Performance, Pricer, SmallestFiring, Wear};
 pub use unload::{ThrusterPulses, UnloadCommand, UnloadError, unload};

@@ -40,6 +40,29 @@ impl Performance {
     }
 }
 
+/// What the thrusters have done.
+#[derive(Debug, Clone, PartialEq)]
+pub struct Wear {
+    /// Valve cycles of each.
+    pub cycles: Vec<f64>,
+    /// Propellant through each, kg.
+    pub throughput_kg: Vec<f64>,
+}
+
+impl Wear {
+    /// Nothing yet, for this many thrusters.
+    #[must_use]
+    pub fn none(thrusters: usize) -> Self {
+        Self { cycles: vec![0.0; thrusters], throughput_kg: vec![0.0; thrusters] }
+    }
+
+    /// Adds pulses and propellant, kg, of one thruster.
+    pub fn add(&mut self, thruster: usize, pulses: f64, propellant_kg: f64) {
+        self.cycles[thruster] += pulses;
+        self.throughput_kg[thruster] += propellant_kg;
+    }
+}
+
 /// The smallest firing that turns the spacecraft about a direction.
 #[derive(Debug, Clone, PartialEq)]
 pub struct SmallestFiring {
@@ -47,9 +70,23 @@ pub struct SmallestFiring {
     pub bit_n_m_s: f64,
     /// Its propellant, kg.
     pub propellant_kg: f64,
-    /// The thrusters, one pulse each.
-    pub thrusters: Vec<usize>,
+    /// The thrusters, one pulse each, and the propellant of each, kg.
+    pub thrusters: Vec<(usize, f64)>,
 }
+
+/// Push that an unload may leave.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub enum ForceChoice {
+    /// None: couples only.
+    Zero,
+    /// Whatever takes the least propellant.
+    Any,
+    /// Weighed at this price along each body axis, kg/(N·s).
+    Priced(f64),
+}
+
+/// Bound of an imagined force: far over any thruster, so that it never binds.
+const MOST_IMAGINED_N: f64 = 1e9;
 
 /// Prices and allocations of a layout about one centre of mass.
 #[derive(Debug, Clone)]
@@ -63,12 +100,30 @@ impl Pricer {
     /// The layout of `propulsion` about a centre of mass, with its own choice of net force.
     #[must_use]
     pub fn new(propulsion: &Propulsion, centre_of_mass_m: &Vector3<f64>) -> Self {
-        let net = match propulsion.net_force {
-            NetForceChoice::Zero => NetForce::Zero,
-            NetForceChoice::Any => NetForce::Any,
+        let choice = match propulsion.net_force {
+            NetForceChoice::Zero => ForceChoice::Zero,
+            NetForceChoice::Any => ForceChoice::Any,
         };
+        Self::with_force(propulsion, centre_of_mass_m, choice)
+    }
+
+    /// The layout of `propulsion` about a centre of mass, with another choice of net force.
+    ///
+    /// A priced push is weighed along each body axis against the propellant it saves: an imagined force along each axis
+    /// balances it at that price, and firings leave it out.
+    #[must_use]
+    pub fn with_force(propulsion: &Propulsion, centre_of_mass_m: &Vector3<f64>, choice: ForceChoice) -> Self {
         let generators = Self::generators(propulsion, centre_of_mass_m);
-        let capability = Capability::new(&generators, net);
+        let capability = match choice {
+            ForceChoice::Zero => Capability::new(&generators, NetForce::Zero),
+            ForceChoice::Any => Capability::new(&generators, NetForce::Any),
+            ForceChoice::Priced(cost) => {
+                let axes = (0..3).flat_map(|axis| [Vector3::ith(axis, 1.0), Vector3::ith(axis, -1.0)]);
+                let imagined = axes.map(|force| Generator { torque: Vector3::zeros(), force, least: 0.0, most: MOST_IMAGINED_N, cost });
+                let all: Vec<Generator> = generators.iter().copied().chain(imagined).collect();
+                Capability { authority: Authority::new(&generators, NetForce::Any), price: PriceMap::new(&all, NetForce::Zero) }
+            }
+        };
         Self { generators, capability, limits: propulsion.pulses.clone() }
     }
 
@@ -100,21 +155,21 @@ impl Pricer {
         &self.capability.price
     }
 
-    /// Adds up propellant, kg, of giving an angular impulse (N·m·s) `times` times; counts pulses into `cycles`.
+    /// Adds up propellant, kg, of giving an angular impulse (N·m·s) `times` times; counts pulses and propellant of each thruster into `wear`.
     ///
     /// The thrusters and their impulses are chosen at nominal performance, as on-board software does;
     /// the propellant follows the performance of the draw. `None` if the layout cannot give it.
     #[must_use]
-    pub fn cost(&self, impulse_n_m_s: &Vector3<f64>, times: f64, performance: &Performance, cycles: &mut [f64]) -> Option<f64> {
+    pub fn cost(&self, impulse_n_m_s: &Vector3<f64>, times: f64, performance: &Performance, wear: &mut Wear) -> Option<f64> {
         if impulse_n_m_s.norm_squared() <= 0.0 {
             return Some(0.0);
         }
         let mut total_kg = 0.0;
-        for (index, impulse) in self.capability.price.firings(impulse_n_m_s)? {
+        for (index, impulse) in self.capability.price.firings(impulse_n_m_s)?.filter(|(index, _)| *index < self.generators.len()) {
             let (thrust, speed) = performance.0[index];
             let firing = fire(impulse, thrust, speed, &self.limits);
             total_kg += firing.propellant_kg * times;
-            cycles[index] += firing.pulses * times;
+            wear.add(index, firing.pulses * times, firing.propellant_kg * times);
         }
         Some(total_kg)
     }
@@ -131,13 +186,13 @@ impl Pricer {
         if !bit.is_finite() {
             return None;
         }
-        let one = |(index, impulse): &(usize, f64)| {
+        let one = |(index, impulse): &(usize, f64)| -> (usize, f64) {
             let (thrust, speed) = performance.0[*index];
             let on_time_s = (impulse * bit / thrust).max(self.limits.shortest_s);
-            impulse * bit / (speed * self.limits.share(on_time_s))
+            (*index, impulse * bit / (speed * self.limits.share(on_time_s)))
         };
-        let propellant_kg = firings.iter().map(one).sum();
-        Some(SmallestFiring { bit_n_m_s: bit, propellant_kg, thrusters: firings.into_iter().map(|(index, _)| index).collect() })
+        let thrusters: Vec<(usize, f64)> = firings.iter().map(one).collect();
+        Some(SmallestFiring { bit_n_m_s: bit, propellant_kg: thrusters.iter().map(|(_, kg)| kg).sum(), thrusters })
     }
 
     /// Firing of one thruster at nominal performance.

@@ -37,6 +37,10 @@ pub struct UnloadCommand {
     pub residual_n_m_s: Vector3<f64>,
     /// Impulse on the spacecraft, N·s.
     pub net_impulse_n_s: Vector3<f64>,
+    /// Angular impulse of the pulses that fire together, N·m·s, mean over the unload.
+    pub per_pulse_n_m_s: Vector3<f64>,
+    /// Time in which the wheels take that back at full torque, s; `None` without wheels.
+    pub follow_s: Option<f64>,
 }
 
 /// No firing removes the momentum.
@@ -57,17 +61,19 @@ pub struct UnloadError(
 /// The layout cannot make the torque, under its choice of net force.
 pub fn unload(momentum_n_m_s: Vector3<f64>, pricer: &Pricer, wheel_torque: Option<&Authority>) -> Result<UnloadCommand, UnloadError> {
     let wanted = -momentum_n_m_s;
-    let ideal_propellant_kg = match pricer.price_map().price(&wanted) {
-        Price::Served { kg } => kg,
-        Price::NotServed { along } => return Err(UnloadError(along.into())),
-    };
+    if let Price::NotServed { along } = pricer.price_map().price(&wanted) {
+        return Err(UnloadError(along.into()));
+    }
     let impulses = pricer.price_map().allocate(&wanted).ok_or_else(|| UnloadError(wanted.normalize().into()))?;
-    let thrusters: Vec<ThrusterPulses> = impulses.iter().enumerate().filter_map(|(k, impulse)| whole_pulses(pricer, k, *impulse)).collect();
+    let real = impulses.iter().take(pricer.layout().len());
+    let ideal_propellant_kg = real.zip(pricer.layout()).map(|(impulse, own)| impulse * own.cost).sum();
+    let thrusters = whole_pulses(pricer, &momentum_n_m_s, &impulses);
     let given: Vector3<f64> = thrusters.iter().map(|t| pricer.layout()[t.thruster].torque * t.impulse_n_s).sum();
     let cycles = thrusters.iter().map(|t| t.pulses).max().unwrap_or(0);
     let on_time_s = thrusters.iter().map(|t| t.on_time_s).fold(0.0, f64::max);
-    let follow_s = wheel_torque.map_or(0.0, |torque| torque.fill(&(given / f64::from(cycles.max(1)))));
-    let period_s = (on_time_s / pricer.limits().duty_cycle).max(follow_s);
+    let per_pulse_n_m_s = given / f64::from(cycles.max(1));
+    let follow_s = wheel_torque.map(|torque| torque.fill(&per_pulse_n_m_s));
+    let period_s = (on_time_s / pricer.limits().duty_cycle).max(follow_s.unwrap_or(0.0));
     Ok(UnloadCommand {
         momentum_n_m_s,
         propellant_kg: thrusters.iter().map(|t| t.propellant_kg).sum(),
@@ -76,24 +82,46 @@ pub fn unload(momentum_n_m_s: Vector3<f64>, pricer: &Pricer, wheel_torque: Optio
         residual_n_m_s: momentum_n_m_s + given,
         net_impulse_n_s: thrusters.iter().map(|t| pricer.layout()[t.thruster].force * t.impulse_n_s).sum(),
         thrusters,
+        per_pulse_n_m_s,
+        follow_s,
     })
 }
 
-/// Rounds to whole pulses; none if less than half a shortest pulse is asked for.
-fn whole_pulses(pricer: &Pricer, thruster: usize, impulse_n_s: f64) -> Option<ThrusterPulses> {
+/// Most thrusters under one shortest pulse among which all choices are tried: a basic solution has no more.
+const MOST_SMALL: usize = 6;
+
+/// Whole pulses of every thruster. One that is asked for at least a shortest pulse gives its impulse exactly, by its
+/// on-time. Those asked for less make one shortest pulse or none: that choice of all which leaves least in the wheels.
+fn whole_pulses(pricer: &Pricer, momentum: &Vector3<f64>, impulses: &[f64]) -> Vec<ThrusterPulses> {
+    let asked = impulses.iter().enumerate().take(pricer.layout().len()).filter(|(_, impulse)| **impulse > 0.0);
+    let each: Vec<(ThrusterPulses, bool)> = asked.map(|(k, impulse)| one(pricer, k, *impulse)).collect();
+    let torque = |pulses: &ThrusterPulses| pricer.layout()[pulses.thruster].torque * pulses.impulse_n_s;
+    let sure: Vector3<f64> = each.iter().filter(|(_, small)| !small).map(|(pulses, _)| torque(pulses)).sum();
+    let small: Vec<usize> = (0..each.len()).filter(|k| each[*k].1).take(MOST_SMALL).collect();
+    let left = |choice: u32| {
+        let chosen = small.iter().enumerate().filter(|(bit, _)| choice >> bit & 1 == 1);
+        (momentum + sure + chosen.map(|(_, k)| torque(&each[*k].0)).sum::<Vector3<f64>>()).norm()
+    };
+    let choices = 1_u32 << small.len();
+    let best = (0..choices).reduce(|a, b| if left(b) < left(a) { b } else { a }).unwrap_or(0);
+    let fires = |k: usize| !each[k].1 || small.iter().position(|own| *own == k).is_some_and(|bit| best >> bit & 1 == 1);
+    (0..each.len()).filter(|k| fires(*k)).map(|k| each[k].0.clone()).collect()
+}
+
+/// Pulses of one thruster, and whether it was asked for less than one shortest pulse.
+fn one(pricer: &Pricer, thruster: usize, impulse_n_s: f64) -> (ThrusterPulses, bool) {
     let firing = pricer.firing(thruster, impulse_n_s);
-    let rounded = firing.pulses.round();
-    if rounded < 1.0 {
-        return None;
-    }
+    let small = firing.pulses < 1.0 - 1e-9;
+    let rounded = firing.pulses.round().max(1.0);
     #[expect(clippy::cast_possible_truncation, clippy::cast_sign_loss, reason = "saturates; rounded and at least 1")]
     let pulses = rounded as u32;
     let share = rounded / firing.pulses;
-    Some(ThrusterPulses {
+    let made = ThrusterPulses {
         thruster,
         impulse_n_s: impulse_n_s * share,
         pulses,
         on_time_s: firing.on_time_s,
         propellant_kg: firing.propellant_kg * share,
-    })
+    };
+    (made, small)
 }

@@ -1,13 +1,16 @@
 //! The budget on one page of text.
 
+use std::fmt::Write;
+
 use super::layout::{axes_table, verdict_text};
 use super::momentum::phase_text;
 use super::table::Table;
 use super::unload::unload_text;
 use super::words::{heading, number, paragraph, percent, plain, vector};
+use crate::config::MarginRule;
 use crate::layout::TravelEnd;
 use crate::lifetime::{PhaseSummary, TimingGain, TypicalUnload};
-use crate::mission::{Bound, Scenario};
+use crate::mission::{Bound, Margin, Scenario};
 use crate::montecarlo::{Budget, Checked, Distribution};
 use crate::propellant::ROWS;
 
@@ -66,7 +69,7 @@ fn answer(budget: &Budget) -> String {
     )
 }
 
-fn ledger(budget: &Budget) -> String {
+fn ledger(budget: &Budget, margin: &Margin) -> String {
     let kg = |x: f64| format!("{x:.3}");
     let mut table = Table::new(&["propellant, kg", "nominal", "mean", "P50", "P95", "P99"]);
     // Functions that the mission does not use are left out; the other formats have them all.
@@ -86,8 +89,35 @@ fn ledger(budget: &Budget) -> String {
         "Needed on board adds orbit burns, leakage, residual and what is loaded too little to the total, not the margin. Limits are one-sided, each with {:.0} % confidence, free of any assumption on the distribution.",
         budget.confidence * 100.0
     );
+    let blanket = blanket_text(budget, margin);
     let timing = budget.timing.map_or_else(String::new, |gain| paragraph("  ", "  ", &timing_text(&gain)));
-    format!("{}{}\n{}{timing}", table.to_text(), paragraph("  ", "  ", &note), bounds.to_text())
+    format!("{}{}\n{}{blanket}{timing}", table.to_text(), paragraph("  ", "  ", &note), bounds.to_text())
+}
+
+/// What the margin rule amounts to, beside the limit that the lifetimes give.
+fn blanket_text(budget: &Budget, margin: &Margin) -> String {
+    let rule = match margin.rule {
+        MarginRule::Own => "The stated margin",
+        MarginRule::EsaAssessment => "The margin of ESA SRE-PA/2011.097, 2.3,",
+        MarginRule::P95 => {
+            return paragraph("  ", "  ", "No blanket margin: the P95 upper limit above is the requirement.");
+        }
+    };
+    if margin.attitude <= 0.0 {
+        return String::new();
+    }
+    let text = format!(
+        "{rule} on attitude control ({:.0} %) makes {} kg, which {} stay within (probability at least {:.2} %).",
+        margin.attitude * 100.0,
+        number(budget.attitude.nominal * (1.0 + margin.attitude), 4),
+        if budget.within_margin.share >= 1.0 {
+            "all lifetimes flown".to_owned()
+        } else {
+            format!("{:.2} % of lifetimes", budget.within_margin.share * 100.0)
+        },
+        budget.within_margin.lower * 100.0
+    );
+    paragraph("  ", "  ", &text)
 }
 
 /// What waiting for the cheapest point of the orbit saves.
@@ -150,7 +180,15 @@ fn valves(budget: &Budget, scenario: &Scenario) -> String {
     let Some((thruster, cycles)) = most else { return String::new() };
     let qualified = scenario.vehicle.propulsion.qualified_pulses.map_or_else(String::new, |limit| format!("; qualified for {limit:.0}"));
     let p95 = cycles.at(0.95).map_or(f64::NAN, |estimate| estimate.value);
-    let text = format!("Busiest valve: {}, {:.0} pulses nominally, {p95:.0} at P95{qualified}.", thruster.name, cycles.nominal);
+    let mut text = format!("Busiest valve: {}, {:.0} pulses nominally, {p95:.0} at P95{qualified}.", thruster.name, cycles.nominal);
+    if let Some(push) = budget.unload_delta_v.filter(|push| push.each_m_per_s > 1e-9) {
+        let _ = write!(
+            text,
+            " An unload pushes the spacecraft by {} mm/s in the mean; in a year they add up to {} mm/s away from the centre, along the flight and along the orbit normal.",
+            number(push.each_m_per_s * 1e3, 3),
+            vector(&(push.per_year_m_per_s * 1e3), 2)
+        );
+    }
     paragraph("  ", "  ", &text)
 }
 
@@ -180,7 +218,7 @@ pub fn budget_text(scenario: &Scenario, budget: &Budget, phases: &[PhaseSummary]
     if !budget.requirements.is_empty() {
         section("Requirements", requirements_table(&budget.requirements));
     }
-    section("Propellant", ledger(budget));
+    section("Propellant", ledger(budget, &scenario.settings.margin));
     section("Drivers", drivers(budget));
     for case in &budget.layout {
         let tank = if case.travel_end == TravelEnd::Start { "full" } else { "empty" };

@@ -5,13 +5,14 @@ use serde::Serialize;
 use serde_json::{Map, Value, json};
 
 use crate::authority::NetForce;
+use crate::config::MarginRule;
 use crate::layout::{Advice, LayoutCase, OutBecause, Study, TravelEnd, Verdict};
 use crate::lifetime::{PhaseSummary, TypicalUnload};
 use crate::mission::{Bound, Scenario};
 use crate::momentum::Convergence;
 use crate::montecarlo::{Budget, Checked, Distribution};
 use crate::propellant::ROWS;
-use crate::vehicle::Thruster;
+use crate::vehicle::{Propulsion, Thruster};
 
 const SECONDS_PER_YEAR: f64 = 31_557_600.0;
 
@@ -36,7 +37,10 @@ pub struct Provenance {
     pub lifetimes: u64,
 }
 
-fn document(name: &str, provenance: &Provenance, mut body: Map<String, Value>) -> Value {
+/// A document of a name: its schema and provenance, and the body's keys.
+#[must_use]
+pub fn document(name: &str, provenance: &Provenance, body: Value) -> Value {
+    let mut body = object(body);
     body.insert("schema".to_owned(), json!(format!("couplet/{name}/1")));
     body.insert("provenance".to_owned(), json!(provenance));
     Value::Object(body)
@@ -163,7 +167,7 @@ pub fn layout_json(study: &Study, checked: &[Checked], provenance: &Provenance) 
         "wheels": wheels,
         "requirements": requirements(checked),
     });
-    document("layout", provenance, object(body))
+    document("layout", provenance, body)
 }
 
 fn phases(list: &[PhaseSummary]) -> Value {
@@ -201,7 +205,7 @@ fn simulated(used: &Convergence) -> Value {
 /// `couplet/momentum/1`.
 #[must_use]
 pub fn momentum_json(list: &[PhaseSummary], provenance: &Provenance) -> Value {
-    document("momentum", provenance, object(json!({ "phases": phases(list) })))
+    document("momentum", provenance, json!({ "phases": phases(list) }))
 }
 
 fn unload(unload: &TypicalUnload, thrusters: &[Thruster]) -> Value {
@@ -230,13 +234,14 @@ fn unload(unload: &TypicalUnload, thrusters: &[Thruster]) -> Value {
         "delta_v_m_per_s": xyz(&(command.net_impulse_n_s / unload.mass_kg)),
         "valve_cycles": command.thrusters.iter().map(|firing| firing.pulses).sum::<u32>(),
         "phase": unload.phase,
+        "transient": { "rate_rad_per_s": unload.transient.rate_rad_per_s, "angle_rad": unload.transient.angle_rad },
     })
 }
 
 /// `couplet/unload/1`.
 #[must_use]
 pub fn unload_json(typical: &TypicalUnload, thrusters: &[Thruster], provenance: &Provenance) -> Value {
-    document("unload", provenance, object(unload(typical, thrusters)))
+    document("unload", provenance, unload(typical, thrusters))
 }
 
 fn quantile(distribution: &Distribution, p: f64) -> Option<f64> {
@@ -255,6 +260,32 @@ fn ledger(budget: &Budget) -> Value {
         })
     };
     ROWS.iter().zip(&budget.rows).map(one).collect()
+}
+
+fn margin_rule(rule: MarginRule) -> &'static str {
+    match rule {
+        MarginRule::Own => "own",
+        MarginRule::EsaAssessment => "esa_assessment",
+        MarginRule::P95 => "p95",
+    }
+}
+
+fn margin(scenario: &Scenario, budget: &Budget) -> Value {
+    let margin = &scenario.settings.margin;
+    json!({
+        "rule": margin_rule(margin.rule),
+        "attitude": margin.attitude,
+        "burns": margin.burns,
+        "attitude_with_margin_kg": budget.attitude.nominal * (1.0 + margin.attitude),
+        "probability_within": budget.within_margin.share,
+        "probability_within_interval": [budget.within_margin.lower, budget.within_margin.upper],
+    })
+}
+
+fn throughput(propulsion: &Propulsion, budget: &Budget) -> Value {
+    let each = propulsion.thrusters.iter().zip(&budget.throughput);
+    let qualified = propulsion.qualified_throughput_kg;
+    each.map(|(t, d)| json!({ "thruster": t.name, "nominal": d.nominal, "p95": quantile(d, 0.95), "qualified": qualified })).collect()
 }
 
 fn attitude_total(budget: &Budget) -> Value {
@@ -327,6 +358,13 @@ pub fn budget_json(
         "unloads": { "nominal": budget.unloads.nominal, "p95": quantile(&budget.unloads, 0.95) },
         "valve_cycles": cycles,
         "drivers": drivers,
+        "throughput_kg": throughput(propulsion, budget),
+        "margin": margin(scenario, budget),
+        "unload_delta_v": budget.unload_delta_v.map(|push| json!({
+            "each_m_per_s": push.each_m_per_s,
+            "per_day_m_per_s": push.per_day_m_per_s,
+            "per_year_m_per_s": xyz(&push.per_year_m_per_s),
+        })),
         "wheel_fill": budget.wheel_fill,
         "unload_timing": budget.timing.map(|gain| json!({ "as_due_kg": gain.as_due_kg, "cheapest_kg": gain.cheapest_kg })),
         "requirements": requirements(&budget.requirements),
@@ -335,5 +373,5 @@ pub fn budget_json(
         "momentum": { "phases": phases(momentum) },
         "unload": typical.map(|typical| unload(typical, &propulsion.thrusters)),
     });
-    document("budget", provenance, object(body))
+    document("budget", provenance, body)
 }

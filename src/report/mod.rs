@@ -4,6 +4,7 @@
 
 mod budget;
 mod check;
+mod explain;
 mod json;
 mod layout;
 mod momentum;
@@ -14,7 +15,8 @@ mod words;
 pub use budget::budget_text;
 pub use budget::ledger_table;
 pub use check::check_text;
-pub use json::{Provenance, budget_json, layout_json, momentum_json, unload_json};
+pub use explain::{explain_json, explain_table, explain_text, row_named, row_names};
+pub use json::{Provenance, budget_json, document, layout_json, momentum_json, unload_json};
 pub use layout::{layout_table, layout_text};
 pub use momentum::{momentum_table, momentum_text};
 pub use table::Table;

@@ -47,5 +47,14 @@ pub fn unload_text(unload: &TypicalUnload, thrusters: &[Thruster]) -> String {
         vector(&command.net_impulse_n_s, 3),
         vector(&(command.net_impulse_n_s / unload.mass_kg * 1e3), 3),
     );
-    format!("{}{}", paragraph("  ", "  ", &sentence), table.to_text())
+    let turned = unload.transient.angle_rad.map_or_else(String::new, |angle| {
+        format!(", and turns it by {} mdeg before the wheels have stopped it", number(angle.to_degrees() * 1e3, 3))
+    });
+    let transient =
+        format!("A pulse of each gives the body {} mdeg/s{turned}.", number(unload.transient.rate_rad_per_s.to_degrees() * 1e3, 3));
+    if command.thrusters.is_empty() {
+        let wait = "The shortest pulses would leave more in the wheels than they take out: nothing fires. Wait until more has gathered.";
+        return paragraph("  ", "  ", wait);
+    }
+    format!("{}{}", paragraph("  ", "  ", &format!("{sentence} {transient}")), table.to_text())
 }

@@ -90,6 +90,10 @@ pub mod kind {
         Inertia [2, 1, 0, 0, 0, 0], "a moment of inertia", "kg m2", "82 kg m2";
         /// Speed, m/s.
         Speed [1, 0, -1, 0, 0, 0], "a speed", "m/s", "2108 m/s";
+        /// Acceleration, m/s²; also Δv over time.
+        Acceleration [1, 0, -2, 0, 0, 0], "a speed over time", "m/s2", "0.2 mm/(s d)";
+        /// Propellant per impulse, kg/(N·s).
+        ImpulsePrice [-1, 0, 1, 0, 0, 0], "a price of impulse", "kg/(N s)", "0.5 g/(N s)";
         /// Magnetic dipole moment, A·m².
         Dipole [2, 0, 0, 1, 0, 0], "a magnetic dipole", "A m2", "0.6 A m2";
         /// Plane angle, rad.

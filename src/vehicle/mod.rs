@@ -71,7 +71,7 @@ impl Vehicle {
         let propulsion = Propulsion::new(spec, parameters, faults);
         let wheels = spec.wheels.as_ref().map(|written| Wheels::new(written, faults));
         let engines = engine::read(spec, parameters, faults);
-        let tank = Tank::new(&spec.tank, parameters, faults);
+        let tank = Tank::new(spec, parameters, faults);
         if faults.count() > before {
             return None;
         }

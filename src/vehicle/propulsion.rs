@@ -124,6 +124,8 @@ pub struct Propulsion {
     pub net_force: NetForceChoice,
     /// Pulses that one thruster is qualified for.
     pub qualified_pulses: Option<f64>,
+    /// Propellant that one thruster is qualified to pass, kg.
+    pub qualified_throughput_kg: Option<f64>,
     /// How thrust and exhaust speed follow the feed pressure.
     pub pressure_law: PressureLaw,
 }
@@ -171,6 +173,7 @@ impl Propulsion {
             plume,
             net_force,
             qualified_pulses,
+            qualified_throughput_kg: spec.propulsion.qualified_throughput.map(|mass| mass.0),
             pressure_law: pressure_law(spec, faults)?,
         })
     }

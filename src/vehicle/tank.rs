@@ -33,10 +33,11 @@ pub struct Tank {
 }
 
 impl Tank {
-    pub(super) fn new(written: &config::Tank, parameters: &mut Parameters, faults: &mut Faults) -> Option<Self> {
+    pub(super) fn new(spec: &config::Spec, parameters: &mut Parameters, faults: &mut Faults) -> Option<Self> {
+        let written = &spec.tank;
         let tanks = tanks(written, faults);
         let loaded_kg = tanks.as_ref().map(|tanks| tanks.iter().map(|tank| tank.loaded_kg).sum());
-        let residual = written.residual.map_or(Spread::Fixed(0.0), |share| share.0);
+        let residual = written.residual.map_or(Spread::Fixed(usual_residual(spec)), |share| share.0);
         let residual = faults.spread("tank.residual", residual, 0.0, 1.0, "a share of the load");
         let leakage = written.leakage.map_or(Spread::Fixed(0.0), |rate| rate.0);
         let leakage = faults.spread("tank.leakage", leakage, 0.0, f64::INFINITY, "a loss");
@@ -69,6 +70,11 @@ impl Tank {
             (tank.loaded_kg - from_this, tank.position_m)
         })
     }
+}
+
+/// Residual where none is stated: that of the margin rule.
+fn usual_residual(spec: &config::Spec) -> f64 {
+    if spec.budget.margin_rule == config::MarginRule::EsaAssessment { 0.02 } else { 0.0 }
 }
 
 fn tanks(written: &config::Tank, faults: &mut Faults) -> Option<Vec<OneTank>> {
