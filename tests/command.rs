@@ -32,6 +32,15 @@ fn json(output: &Output) -> Value {
     serde_json::from_slice(&output.stdout).unwrap()
 }
 
+/// `--explain` adds up to the row it explains, and a wrong name is told the right one.
+#[test]
+fn a_row_is_explained() {
+    let explained = json(&run(&["budget", "configs/heron.yaml", "--explain", "wheel_unloading", "--format", "json"]));
+    let sum: f64 = explained["entries"].as_array().unwrap().iter().map(|entry| entry["propellant_kg"].as_f64().unwrap()).sum();
+    let row = explained["nominal_kg"].as_f64().unwrap();
+    assert!(row > 1.0 && (sum - row).abs() < 1e-9 * row);
+}
+
 fn has(value: &Value, keys: &[&str]) {
     for key in keys {
         assert!(value.get(key).is_some(), "`{key}` is missing in {value:#}");

@@ -13,7 +13,7 @@ use couplet::mission::{Margin, Scenario};
 use couplet::momentum::Resolution;
 use couplet::montecarlo::draws;
 use couplet::propellant::{burn_propellant, slew_momentum};
-use couplet::pulses::{Performance, Pricer, Wear, fire, unload};
+use couplet::pulses::{ForceChoice, Performance, Pricer, Wear, fire, unload};
 use couplet::vehicle::MassState;
 use nalgebra::{Matrix3, Rotation3, Vector3};
 use support::{SMALL, heron, scenario};
@@ -305,4 +305,31 @@ fn heron_layout_by_hand() {
         // No thruster pushes along y, so torque and force together span five dimensions.
         assert!(case.pure_torque.every_direction && case.torque_rank == 3 && case.wrench_rank == 5);
     }
+}
+
+/// A price on the push lies between its ends: for nothing it is any push, at a high price none, and the push falls as the price
+/// rises while the propellant grows (duality: both are monotone).
+#[test]
+fn a_price_on_the_push_of_an_unload() {
+    let scenario = heron(&[]);
+    let centre = scenario.vehicle.mass_state(34.0).centre_of_mass_m;
+    let h = Vector3::new(1.0, 2.0, -0.5);
+    let made = |choice: ForceChoice| {
+        let done = unload(h, &Pricer::with_force(&scenario.vehicle.propulsion, &centre, choice), None).unwrap();
+        assert!(done.residual_n_m_s.norm() < 1e-9);
+        (done.ideal_propellant_kg, done.net_impulse_n_s.lp_norm(1))
+    };
+    let (any, zero) = (made(ForceChoice::Any), made(ForceChoice::Zero));
+    assert!(any.0 < zero.0 && any.1 > 1.0 && zero.1 < 1e-9);
+    let mut before = any;
+    for price in [1e-9, 1e-6, 1e-5, 2e-5, 5e-5, 1e-4, 1e-3] {
+        let priced = made(ForceChoice::Priced(price));
+        assert!(priced.0 >= before.0 - 1e-12 && priced.1 <= before.1 + 1e-9, "{price}: {priced:?} after {before:?}");
+        // No other choice is better at this price.
+        for other in [any, zero] {
+            assert!(priced.0 + price * priced.1 <= other.0 + price * other.1 + 1e-12, "{price}");
+        }
+        before = priced;
+    }
+    close(before.0, zero.0, 1e-9);
 }
