@@ -10,6 +10,8 @@ use crate::propellant::{Burn, DeadbandAxis, Row, axis_turn_momentum, damping_mom
 use crate::uncertain::Uncertain;
 
 const YEAR_DAYS: f64 = 365.25;
+/// Phases up to this length, s, have their spread events at their middle: a third of a year.
+const SHORT_S: f64 = 365.25 / 3.0 * 86_400.0;
 /// Directions across a spin axis that are tried for the cheapest pulse.
 const ACROSS: u32 = 24;
 
@@ -35,7 +37,15 @@ impl Flight<'_> {
         match event.when {
             When::Start => f64::from(u8::from(place.first)),
             When::End => f64::from(u8::from(place.last)),
-            When::Spread => stratum.duration_s / self.plan.scenario().mission.phases[stratum.phase].duration_s,
+            When::Spread => {
+                let phase = &self.plan.scenario().mission.phases[stratum.phase];
+                if phase.duration_s > SHORT_S {
+                    return stratum.duration_s / phase.duration_s;
+                }
+                // In a short phase little changes: all at its middle.
+                let middle_s = phase.start_s + phase.duration_s / 2.0;
+                f64::from(u8::from((stratum.start_s..stratum.start_s + stratum.duration_s).contains(&middle_s)))
+            }
         }
     }
 

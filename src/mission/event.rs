@@ -191,6 +191,8 @@ impl Reading<'_> {
                 }
                 found.map(BurnSource::Engine)
             }
+            // Told already, and once is enough.
+            (None, false) if self.spec.thrusters.is_empty() => None,
             (None, false) => {
                 let mut found = Vec::new();
                 for (k, wanted) in written.thrusters.iter().enumerate() {

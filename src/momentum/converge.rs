@@ -33,7 +33,7 @@ pub struct Convergence {
     /// Estimated error of the mean momentum of a window and of the cyclic from the number of strata; `None` where every unload is simulated
     /// or there are too few to tell.
     pub strata_error: Option<f64>,
-    /// Tolerance asked for.
+    /// Tolerance of the phase: that of the mission, eased for short phases, whose errors average out.
     pub tolerance: f64,
 }
 
@@ -61,7 +61,7 @@ pub fn simulate(scenario: &Scenario, resolution: Resolution) -> (Vec<Stratum>, R
             step_error,
             strata: strata.len(),
             strata_error,
-            tolerance: scenario.settings.tolerance,
+            tolerance: measure.eased,
         });
         all.1.push(&simulator, spans);
         all.0.extend(strata);
@@ -118,7 +118,7 @@ fn divide(simulator: &Simulator<'_>, measure: &Measure, resolution: Resolution, 
             return (strata, bases, None, grid);
         }
         let error = measure.strata_error(&bases);
-        let enough = error.is_none_or(|error| error <= measure.tolerance * (1.0 - FOR_STEPS));
+        let enough = error.is_none_or(|error| error <= measure.eased - measure.tolerance * FOR_STEPS);
         let finer = Grid { strata: 2 * grid.strata, ..grid };
         let count = |grid: &Grid| super::strata::strata(simulator.index(), simulator.phase(), resolution, grid).len();
         if count(&finer) == strata.len() {
@@ -132,10 +132,22 @@ fn divide(simulator: &Simulator<'_>, measure: &Measure, resolution: Resolution, 
     }
 }
 
+/// A short phase may be off by more than the mission: errors of phases are independent and average out, as the square root
+/// of how many such phases there would be, up to this factor.
+const MOST_EASED: f64 = 4.0;
+
+/// Tolerance for the strata of a phase, as a share of what the wheels hold in it.
+fn eased(scenario: &Scenario, phase_s: f64) -> f64 {
+    scenario.settings.tolerance * (scenario.mission.duration_s() / phase_s).sqrt().clamp(1.0, MOST_EASED)
+}
+
 /// Values of the features in the nominal case.
 struct Measure {
     values: Vec<f64>,
+    /// Of the mission.
     tolerance: f64,
+    /// Of the phase.
+    eased: f64,
 }
 
 /// Nominal momentum of a probe, N·m·s.
@@ -157,7 +169,7 @@ impl Measure {
     fn new(scenario: &Scenario, simulator: &Simulator<'_>, mass: &MassState) -> Self {
         let nominal = scenario.parameters.nominal();
         let values = simulator.features().iter().map(|f| nominal_value(&f.feature, scenario, &nominal, mass)).collect();
-        Self { values, tolerance: scenario.settings.tolerance }
+        Self { values, tolerance: scenario.settings.tolerance, eased: eased(scenario, simulator.phase().duration_s) }
     }
 
     fn total(&self, parts: &[Vector3<f64>]) -> Vector3<f64> {
