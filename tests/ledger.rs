@@ -55,6 +55,9 @@ fn a_burn_and_its_attitude_hold() {
     let ten = flown(&[&event("burn: {delta_v: 1 m/s, count: 10, engine: main}")]);
     close(ten.row(Row::OrbitBurns), burnt, 1e-3);
     close(ten.row(Row::BurnHold), outcome.row(Row::BurnHold), 3e-3);
+    // On dates: one burn on each, wherever in the phase.
+    let dated = flown(&[&event("when: {on: [2029-03-20, 2029-05-01, 2029-06-28]}, burn: {delta_v: 3.333333333333 m/s, engine: main}")]);
+    close(dated.row(Row::OrbitBurns), burnt, 1e-3);
     let free = flown(&[&event("when: end, burn: {delta_v: 10 m/s, engine: main, hold: none}")]);
     assert!(free.row(Row::BurnHold) <= 0.0);
 }
@@ -233,6 +236,8 @@ fn events_and_tanks_that_cannot_be() {
     refused(&event("burn: {delta_v: 1 m/s, thrusters: [X1, X9]}"), "`X9` is no thruster");
     refused(&event("burn: {delta_v: 1 m/s, engine: main, hold: off_modulation}"), "one engine cannot be modulated");
     refused(&event("burn: {delta_v: -1 m/s, engine: main}"), "expected a Δv of at least 0");
+    refused(&event("when: {on: [2030-05-01]}, burn: {delta_v: 1 m/s, engine: main}"), "2030-05-01T00:00:00Z lies outside the phase");
+    refused(&event("when: {on: [soon]}, burn: {delta_v: 1 m/s, engine: main}"), "is not a date");
     refused(&event("deadband: {time: 3 d, half_width: 0 deg}"), "expected half the width of a band above zero");
     refused(
         &event("deadband: {time: 3 d, half_width: 1 deg}, slews: {axis: 1 0 0, angle: 1 deg, rate: 1 deg/s, count: 1}"),
@@ -245,4 +250,21 @@ fn events_and_tanks_that_cannot_be() {
     refused("tank.blowdown={pressure: 22 bar, propellant_density: 1000 kg/m3}", "expected one of `volume` and `ratio`");
     refused("propulsion.pressure_law={thrust_power: 1}", "the feed pressure is constant");
     refused("engines=[{name: main, thrust: 20 N, position: 0 0 0 m, push: 0 0 1}]", "expected `isp` or `exhaust_speed`");
+}
+
+/// Momentum under the smallest couple: carried, a fraction of a pulse is charged every time; waiting, one unload in so many
+/// intervals makes whole pulses, for the same propellant, since both are at the shortest pulse.
+#[test]
+fn unloads_under_the_shortest_pulse() {
+    // 1e-7 N m for a day is 8.64e-3 N m s; couples of two 1 N thrusters on 2 m arms for 10 ms make 0.04 N m s: five days, whole.
+    let torque = "spacecraft.body_torque=0 1e-7 0 N m";
+    let phases = "mission.phases=[{name: only, duration: 100 d, unload: {every: 1 d}}]";
+    let carried = flown(&[torque, phases]);
+    let waited = flown(&[torque, phases, "propulsion.small_unload=wait"]);
+    close(carried.unloads, 100.0, 1e-9);
+    close(waited.unloads, 20.0, 1e-9);
+    close(waited.shortest_interval_s.unwrap(), 5.0 * DAY_S, 1e-9);
+    close(waited.row(Row::WheelUnloading), carried.row(Row::WheelUnloading), 1e-9);
+    assert!(plan(&[torque, phases]).unwrap().small_unloads() > 0.99);
+    assert!(plan(&[torque, phases, "propulsion.small_unload=wait"]).unwrap().small_unloads() < 0.01);
 }

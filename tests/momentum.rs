@@ -266,7 +266,11 @@ fn nothing_is_lost_between_timeline_and_ledger() {
     let plan = plan(heron(&[]));
     for draw in draws(&plan, 3, 0, 10) {
         let outcome = plan.fly(&draw);
-        close(*outcome.used_kg.last().unwrap(), outcome.attitude_total_kg() + outcome.row(Row::Leakage), 1e-12);
+        close(
+            *outcome.used_kg.last().unwrap(),
+            outcome.attitude_total_kg() + outcome.row(Row::OrbitBurns) + outcome.row(Row::Leakage),
+            1e-12,
+        );
         assert!(outcome.used_kg.windows(2).all(|pair| pair[1] >= pair[0]));
     }
 }

@@ -31,7 +31,7 @@ pub struct Event {
 }
 
 /// When an event happens.
-#[derive(Debug, Clone, Copy, PartialEq, Eq, Deserialize, JsonSchema)]
+#[derive(Debug, Clone, PartialEq, Eq, Deserialize, JsonSchema)]
 #[serde(rename_all = "snake_case")]
 pub enum When {
     /// At the start of the phase.
@@ -40,6 +40,8 @@ pub enum When {
     End,
     /// Spread evenly over it.
     Spread,
+    /// On dates within it, ISO 8601, such as `{on: [2030-05-01, 2031-05-01]}`; a count holds for each.
+    On(Vec<String>),
 }
 
 /// Damping of body rates with thrusters.

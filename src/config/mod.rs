@@ -50,7 +50,7 @@ pub use render::{render_all, sort, to_json};
 pub use source::{Place, Source};
 pub use spacecraft::{
     Blowdown, Engine, Material, NetForceChoice, OneTank, Plume, PressureLaw, PressurePoint, Propulsion, PulsePerformance, Shaded,
-    Spacecraft, Surface, Tank, Thruster, Wheel, Wheels,
+    SmallUnload, Spacecraft, Surface, Tank, Thruster, Wheel, Wheels,
 };
 pub use spec::{Spec, read, schema};
 pub use walk::{Leaf, check_structure};

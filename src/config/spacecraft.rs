@@ -107,6 +107,9 @@ pub struct Propulsion {
     /// Whether an unload may leave a net force: `zero` fires couples only, `any` takes the least propellant. Default: `zero`.
     #[serde(default)]
     pub net_force: NetForceChoice,
+    /// What happens where an unload that is due asks a thruster for less than its shortest pulse. Default: `carry`.
+    #[serde(default)]
+    pub small_unload: SmallUnload,
     /// Pulses that one thruster is qualified for. Default: not stated, not checked.
     pub qualified_pulses: Option<Quantity<kind::Number>>,
     /// Propellant that one thruster is qualified to pass, such as `60 kg`. Default: not stated, not checked.
@@ -134,6 +137,17 @@ pub enum NetForceChoice {
     Zero,
     /// Whatever takes the least propellant.
     Any,
+}
+
+/// What happens where an unload that is due asks a thruster for less than its shortest pulse.
+#[derive(Debug, Clone, Copy, Default, PartialEq, Eq, Deserialize, JsonSchema)]
+#[serde(rename_all = "snake_case")]
+pub enum SmallUnload {
+    /// What is left over stays in the wheels and is carried on until a whole pulse is due.
+    #[default]
+    Carry,
+    /// The unload waits for as many intervals as it takes until every thruster makes a whole pulse.
+    Wait,
 }
 
 /// One point of the pulse performance: at this on-time, this share of the steady exhaust speed.

@@ -59,6 +59,7 @@ impl Plan {
         let end = self.basis.offsets.get(stratum + 1).map_or(rows.len(), |next| next.0);
         let excursions = vectors(rows, excursions, (end - excursions) / 3);
         let rate = unload_rate(phase.unload, at, phase.cycle_s(), self.filling.as_ref(), &windows, excursions);
+        let rate = rate.map(|rate| self.waited(stratum, &windows, rate));
         (windows, rate)
     }
 

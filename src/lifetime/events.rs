@@ -4,8 +4,8 @@ use nalgebra::Vector3;
 
 use super::flight::{Flight, Place};
 use super::{TooLarge, What};
-use crate::config::{Hold, When};
-use crate::mission::{Band, BurnSource, Event, EventKind};
+use crate::config::Hold;
+use crate::mission::{Band, BurnSource, Event, EventKind, When};
 use crate::propellant::{Burn, DeadbandAxis, Row, axis_turn_momentum, damping_momentum, propellant_of_burn, slew_momentum, spin_momentum};
 use crate::uncertain::Uncertain;
 
@@ -34,7 +34,15 @@ impl Flight<'_> {
     /// Share of a phase's events of this kind that falls in a stratum.
     fn share(&self, event: &Event, place: &Place) -> f64 {
         let stratum = &self.plan.strata()[place.stratum];
-        match event.when {
+        match &event.when {
+            When::At(times) => {
+                // The last stratum of a phase has its end too.
+                let within = |time: &&f64| {
+                    **time >= stratum.start_s
+                        && (**time < self.plan.strata().get(place.stratum + 1).map_or(f64::INFINITY, |next| next.start_s) || place.last)
+                };
+                times.iter().filter(within).count() as f64
+            }
             When::Start => f64::from(u8::from(place.first)),
             When::End => f64::from(u8::from(place.last)),
             When::Spread => {
@@ -43,8 +51,7 @@ impl Flight<'_> {
                     return stratum.duration_s / phase.duration_s;
                 }
                 // In a short phase little changes: all at its middle.
-                let middle_s = phase.start_s + phase.duration_s / 2.0;
-                f64::from(u8::from((stratum.start_s..stratum.start_s + stratum.duration_s).contains(&middle_s)))
+                f64::from(u8::from(self.plan.middle_of(stratum.phase) == place.stratum))
             }
         }
     }
@@ -86,8 +93,8 @@ impl Flight<'_> {
                 self.fire(Row::Spin, stratum, &(across * momentum), count.in_draw(self.draw) * share);
             }
             EventKind::SafeMode { days_per_year, band } => {
-                let duration_s = self.plan.strata()[stratum].duration_s;
-                self.hold_band(Row::SafeMode, stratum, band, days_per_year.in_draw(self.draw) / YEAR_DAYS * duration_s);
+                let duration_s = self.plan.scenario().mission.phases[self.plan.strata()[stratum].phase].duration_s;
+                self.hold_band(Row::SafeMode, stratum, band, days_per_year.in_draw(self.draw) / YEAR_DAYS * duration_s * share);
             }
         }
     }

@@ -14,6 +14,7 @@ mod policy;
 mod push;
 mod summary;
 mod timing;
+mod waiting;
 
 pub use audit::{Imbalance, audit_momentum, audit_propellant};
 pub use outcome::{Entry, Outcome, TooLarge, What};

@@ -56,6 +56,8 @@ pub struct Plan {
     /// Layouts about the centres of mass that matter, and which of them each stratum takes.
     pub(super) pricers: Vec<Pricer>,
     pub(super) pricer_of: Vec<usize>,
+    /// The middle stratum of each phase.
+    middles: Vec<usize>,
     /// Shares of the time that burning thrusters are on where that holds the attitude.
     pub(super) duties: super::modulation::Duties,
     /// Margins.
@@ -87,6 +89,7 @@ impl Plan {
             pricers: Vec::new(),
             pricer_of: Vec::new(),
             duties: Vec::new(),
+            middles: middles(&strata, scenario.mission.phases.len()),
             margin,
             strata,
             raw,
@@ -186,6 +189,12 @@ impl Plan {
         &self.raw.sources
     }
 
+    /// The middle stratum of a phase.
+    #[must_use]
+    pub fn middle_of(&self, phase: usize) -> usize {
+        self.middles[phase]
+    }
+
     /// What each phase was simulated with.
     #[must_use]
     pub fn convergence(&self) -> &[Convergence] {
@@ -212,4 +221,13 @@ impl Plan {
             Price::NotServed { .. } => None,
         }
     }
+}
+
+/// Index of the middle stratum of each phase.
+fn middles(strata: &[Stratum], phases: usize) -> Vec<usize> {
+    let of = |phase: usize| {
+        let own: Vec<usize> = (0..strata.len()).filter(|k| strata[*k].phase == phase).collect();
+        own.get(own.len() / 2).copied().unwrap_or(0)
+    };
+    (0..phases).map(of).collect()
 }

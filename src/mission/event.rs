@@ -2,7 +2,8 @@
 
 use nalgebra::Vector3;
 
-use crate::config::{self, Hold, Spec, When, did_you_mean};
+use crate::config::{self, Hold, Spec, did_you_mean};
+use crate::environment::Epoch;
 use crate::uncertain::{Parameters, Spread, Uncertain};
 use crate::vehicle::{Faults, register_triple};
 
@@ -15,6 +16,19 @@ pub struct Event {
     pub when: When,
     /// What happens.
     pub kind: EventKind,
+}
+
+/// When an event happens.
+#[derive(Debug, Clone, PartialEq)]
+pub enum When {
+    /// At the start of the phase.
+    Start,
+    /// At its end.
+    End,
+    /// Spread evenly over it.
+    Spread,
+    /// At these times after the start of the mission, s.
+    At(Vec<f64>),
 }
 
 /// What pushes in a burn.
@@ -106,6 +120,10 @@ pub enum EventKind {
 /// What an event is read with.
 pub(super) struct Reading<'a> {
     pub(super) spec: &'a Spec,
+    /// Start of the mission.
+    pub(super) start: Epoch,
+    /// Start of the phase after it, and length, s.
+    pub(super) span_s: (f64, f64),
     pub(super) parameters: &'a mut Parameters,
     pub(super) faults: &'a mut Faults,
 }
@@ -135,13 +153,46 @@ pub(super) fn read(written: &config::Event, at: &str, with: &mut Reading<'_>) ->
         .or_else(|| with.axis_turn(name, at, written.axis_turn.as_ref()?))
         .or_else(|| with.safe_mode(name, at, written.safe_mode.as_ref()?))?;
     let first = matches!(kind, EventKind::RateDamping { .. } | EventKind::Spin { .. });
-    Some(Event { name: name.to_owned(), when: written.when.unwrap_or(if first { When::Start } else { When::Spread }), kind })
+    let when = match &written.when {
+        None if first => When::Start,
+        None | Some(config::When::Spread) => When::Spread,
+        Some(config::When::Start) => When::Start,
+        Some(config::When::End) => When::End,
+        Some(config::When::On(dates)) => When::At(with.dates(&format!("{at}.when.on"), dates)?),
+    };
+    Some(Event { name: name.to_owned(), when, kind })
 }
 
 impl Reading<'_> {
     fn damping(&mut self, name: &str, written: Option<&config::RateDamping>) -> Option<EventKind> {
         let rates_rad_per_s = register_triple(&format!("{name}.rates"), "rad/s", written?.rates.0, self.parameters);
         Some(EventKind::RateDamping { rates_rad_per_s })
+    }
+
+    /// Dates within the phase as times after the start of the mission, s.
+    fn dates(&mut self, at: &str, written: &[String]) -> Option<Vec<f64>> {
+        let (from_s, length_s) = self.span_s;
+        let mut times = Vec::new();
+        for (index, text) in written.iter().enumerate() {
+            let at = format!("{at}[{index}]");
+            match Epoch::parse(text) {
+                Err(error) => self.faults.push(&at, error.to_string(), "write a date such as `2030-05-01` or `2030-05-01T12:00:00Z`"),
+                Ok(epoch) => {
+                    let time_s = epoch.tt_seconds() - self.start.tt_seconds();
+                    if (from_s..=from_s + length_s).contains(&time_s) {
+                        times.push(time_s);
+                    } else {
+                        let (from, to) = (self.start.plus_seconds(from_s), self.start.plus_seconds(from_s + length_s));
+                        self.faults.push(
+                            &at,
+                            format!("{epoch} lies outside the phase, {from} to {to}"),
+                            "move the event to the phase it belongs to",
+                        );
+                    }
+                }
+            }
+        }
+        (times.len() == written.len()).then_some(times)
     }
 
     /// A count that is one unless it is given.

@@ -16,7 +16,7 @@ mod survey;
 
 pub use activity::SolarActivity;
 pub use attitude::{Attitude, Law, Moment};
-pub use event::{Band, BurnSource, Event, EventKind};
+pub use event::{Band, BurnSource, Event, EventKind, When};
 pub use phase::{Phase, UnloadPolicy};
 pub use pointing::{Direction, Pointing, Sky};
 pub use settings::{Bound, Margin, Requirement, Settings};

@@ -80,7 +80,8 @@ pub(super) fn read(spec: &Spec, start: Epoch, files: &Files<'_>, parameters: &mu
         let duration = faults.positive(&format!("{at}.duration"), written.duration.0, "a duration");
         let unload = policy(written.unload.as_ref(), &at, spec.wheels.is_some(), faults);
         let attitude = read_attitude::read(&written.attitude, &format!("{at}.attitude"), &written.name, parameters, faults);
-        let events = events(spec, written, &at, parameters, faults);
+        let span_s = (start_s, duration.unwrap_or(0.0));
+        let events = events(written, &at, &mut Reading { spec, start, span_s, parameters, faults });
         let trajectory = own.unwrap_or_else(|| shared.clone());
         let timing = written.unload.as_ref().map_or(Timing::Due, |unload| unload.timing);
         let (Some(duration_s), Some(unload), Some(attitude), Some(trajectory)) = (duration, unload, attitude, trajectory) else { continue };
@@ -114,10 +115,9 @@ fn check_timing(timing: Timing, trajectory: &Trajectory, attitude: &Attitude, at
     }
 }
 
-fn events(spec: &Spec, written: &config::Phase, at: &str, parameters: &mut Parameters, faults: &mut Faults) -> Vec<Event> {
+fn events(written: &config::Phase, at: &str, with: &mut Reading<'_>) -> Vec<Event> {
     let listed = written.events.iter().enumerate();
-    let mut with = Reading { spec, parameters, faults };
-    listed.filter_map(|(k, event)| event::read(event, &format!("{at}.events[{k}]"), &mut with)).collect()
+    listed.filter_map(|(k, event)| event::read(event, &format!("{at}.events[{k}]"), with)).collect()
 }
 
 fn policy(written: Option<&config::Unload>, at: &str, has_wheels: bool, faults: &mut Faults) -> Option<UnloadPolicy> {

@@ -36,12 +36,14 @@ pub(super) fn warnings(plan: &Plan, budget: &Budget) -> Vec<String> {
             list.push(format!("thruster {} makes {cycles:.0} pulses at P95, over the {limit:.0} it is qualified for", name(thruster)));
         }
     }
+    list.extend(of_pulses(plan));
     if let Some(limit) = plan.vehicle().propulsion.qualified_throughput_kg {
         let over = budget.throughput.iter().enumerate().filter_map(|(k, d)| Some((k, d.at(0.95)?.value))).filter(|(_, kg)| *kg > limit);
         for (thruster, kg) in over {
             list.push(format!("thruster {} passes {kg:.2} kg at P95, over the {limit:.2} kg it is qualified for", name(thruster)));
         }
     }
+    list.extend(runs_dry(plan, budget));
     if budget.needed.nominal > budget.loaded_kg {
         list.push(format!(
             "the propellant loaded, {:.2} kg, does not cover the nominal need of {:.2} kg",
@@ -83,4 +85,41 @@ fn of_models(plan: &Plan) -> Vec<String> {
         ));
     }
     list
+}
+
+/// Warnings about what valves and wheels can do in an unload.
+fn of_pulses(plan: &Plan) -> Vec<String> {
+    let mut list = Vec::new();
+    let small = plan.small_unloads();
+    if small > 0.005 {
+        list.push(format!(
+            "{:.0} % of the unloads ask some thruster for less than its shortest pulse; what is left over is carried on until a whole pulse is due (`propulsion.small_unload: wait` waits instead)",
+            small * 100.0
+        ));
+    }
+    let shortest_s = plan.summary().iter().filter_map(|phase| phase.unload_interval_s).reduce(f64::min);
+    if let (Some(Ok(unload)), Some(interval_s)) = (plan.largest_unload(), shortest_s)
+        && unload.command.duration_s > interval_s
+    {
+        list.push(format!(
+            "the wheels' torque makes the largest unload last {:.1} h, longer than the {:.1} h between unloads: take wheels with more torque, or unload less often",
+            unload.command.duration_s / 3600.0,
+            interval_s / 3600.0
+        ));
+    }
+    list
+}
+
+/// When the tank is empty before the mission ends, in the largest share of lifetimes that is told.
+fn runs_dry(plan: &Plan, budget: &Budget) -> Option<String> {
+    let mission_s = plan.scenario().mission.duration_s();
+    if let Some((p, Some(life_s))) = budget.life_s.iter().rev().find(|(_, life)| life.is_some_and(|life| life < mission_s)) {
+        return Some(format!(
+            "the usable propellant is gone by month {:.0} of {:.0} in {:.0} % of the lifetimes",
+            life_s / SECONDS_PER_YEAR * 12.0,
+            mission_s / SECONDS_PER_YEAR * 12.0,
+            (1.0 - p) * 100.0
+        ));
+    }
+    None
 }

@@ -174,6 +174,17 @@ impl Pricer {
         Some(total_kg)
     }
 
+    /// Shortest pulses that the thruster which does least makes for an angular impulse, a fraction where it is asked for less
+    /// than one; shares under a fiftieth of the largest leave next to nothing in the wheels and do not count. `None` if the layout cannot give it.
+    #[must_use]
+    pub fn least_pulses(&self, impulse_n_m_s: &Vector3<f64>) -> Option<f64> {
+        let firings: Vec<(usize, f64)> =
+            self.capability.price.firings(impulse_n_m_s)?.filter(|(k, _)| *k < self.generators.len()).collect();
+        let most = firings.iter().map(|(_, impulse)| *impulse).fold(0.0, f64::max);
+        let counted = firings.iter().filter(|(_, impulse)| *impulse > 0.02 * most);
+        counted.map(|(index, impulse)| impulse / (self.generators[*index].most * self.limits.shortest_s)).reduce(f64::min)
+    }
+
     /// The smallest firing along a unit direction: the thruster that does least makes its shortest pulse, the others as much
     /// as the direction asks. `None` if the layout cannot give it.
     #[must_use]

@@ -3,7 +3,7 @@
 use nalgebra::{Unit, UnitVector3, Vector3};
 
 use super::{Faults, PressureLaw, STANDARD_GRAVITY};
-use crate::config::{self, NetForceChoice, Spec, SpreadQuantity};
+use crate::config::{self, NetForceChoice, SmallUnload, Spec, SpreadQuantity};
 use crate::uncertain::{Draw, Parameters, Spread, Uncertain};
 use crate::units::{Kind, kind};
 
@@ -122,6 +122,8 @@ pub struct Propulsion {
     pub plume: Option<(f64, f64)>,
     /// Whether an unload may leave a net force.
     pub net_force: NetForceChoice,
+    /// What happens where an unload asks for less than a shortest pulse.
+    pub small_unload: SmallUnload,
     /// Pulses that one thruster is qualified for.
     pub qualified_pulses: Option<f64>,
     /// Propellant that one thruster is qualified to pass, kg.
@@ -172,6 +174,7 @@ impl Propulsion {
             thrust_tolerance: tolerance?,
             plume,
             net_force,
+            small_unload: spec.propulsion.small_unload,
             qualified_pulses,
             qualified_throughput_kg: spec.propulsion.qualified_throughput.map(|mass| mass.0),
             pressure_law: pressure_law(spec, faults)?,
