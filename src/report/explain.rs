@@ -8,6 +8,8 @@ use crate::lifetime::{Entry, Outcome, Plan, What};
 use crate::propellant::{ROWS, Row};
 
 const DAY_S: f64 = 86_400.0;
+/// Entries that the text shows; a mission has hundreds.
+const SHOWN: usize = 45;
 
 /// The row of a name as the machine-readable output writes it.
 #[must_use]
@@ -87,8 +89,11 @@ pub fn explain_text(plan: &Plan, row: Row, nominal: &Outcome) -> String {
         }
     };
     let title = format!("{}: {} kg nominally. {sentence} Day: where the stretch begins.", plain(row.key()), number(nominal.row(row), 6));
-    let table = explain_table(plan, row);
-    let body =
-        if matches!(row, Row::Residual | Row::LoadingError | Row::Margin) { String::new() } else { format!("\n{}", table.to_text()) };
-    format!("{}{body}", paragraph("", "", &title))
+    if matches!(row, Row::Residual | Row::LoadingError | Row::Margin) {
+        return paragraph("", "", &title);
+    }
+    let (table, more) = explain_table(plan, row).clipped(SHOWN);
+    let note =
+        if more == 0 { String::new() } else { paragraph("  ", "  ", &format!("… and {more} entries more: `--format csv` writes all.")) };
+    format!("{}\n{}{note}", paragraph("", "", &title), table.to_text())
 }

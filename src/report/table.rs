@@ -21,6 +21,14 @@ impl Table {
         self.rows.push(row);
     }
 
+    /// The first rows, and how many are left out.
+    #[must_use]
+    pub fn clipped(mut self, most: usize) -> (Self, usize) {
+        let more = self.rows.len().saturating_sub(most);
+        self.rows.truncate(most);
+        (self, more)
+    }
+
     /// Aligned text, indented by two spaces: words left, numbers right.
     #[must_use]
     pub fn to_text(&self) -> String {
