@@ -244,6 +244,10 @@ fn events_and_tanks_that_cannot_be() {
         "expected one of",
     );
     refused(&event("safe_mode: {days_per_year: 400, half_width: 1 deg}"), "expected a number of days from 0 to 365.25");
+    let two = |start: &str| format!("mission.phases=[{{name: a, duration: 30 d}}, {{name: b, start: {start}, duration: 30 d}}]");
+    refused(&two("2029-05-01"), "leaves a gap of 12.0 d: the phases before it end at 2029-04-19T00:00:00Z");
+    refused(&two("2029-04-09"), "overlaps by 10.0 d");
+    assert!(Plan::new(scenario(SMALL, &[&two("2029-04-19")]), Resolution::Default, Margin::NONE).is_ok());
     refused("tank={loaded: 5 kg}", "expected one tank with `loaded` and `position`, or a list of `tanks`");
     refused("tank.blowdown={pressure: 22 bar, volume: 0.004 m3, propellant_density: 1000 kg/m3}", "do not hold the propellant");
     refused("tank.blowdown={pressure: 22 bar, ratio: 1, propellant_density: 1000 kg/m3}", "expected a ratio above 1");

@@ -27,6 +27,8 @@ pub struct Mission {
 pub struct Phase {
     /// Name, such as `science`.
     pub name: String,
+    /// Date on which it begins, ISO 8601, as a check: it must be where the phases before it end, to a day. Default: not checked.
+    pub start: Option<String>,
     /// How long it lasts, such as `7 yr`.
     pub duration: Quantity<kind::Time>,
     /// Orbit of this phase. Default: `mission.orbit`.

@@ -78,6 +78,7 @@ pub(super) fn read(spec: &Spec, start: Epoch, files: &Files<'_>, parameters: &mu
         let own = written.orbit.as_ref().map(|own| orbit::read(own, &format!("{at}.orbit"), start, files, faults));
         let orbit_at = if own.is_some() { format!("{at}.orbit") } else { "mission.orbit".to_owned() };
         let duration = faults.positive(&format!("{at}.duration"), written.duration.0, "a duration");
+        check_start(written.start.as_deref(), &at, start.plus_seconds(start_s), faults);
         let unload = policy(written.unload.as_ref(), &at, spec.wheels.is_some(), faults);
         let attitude = read_attitude::read(&written.attitude, &format!("{at}.attitude"), &written.name, parameters, faults);
         let span_s = (start_s, duration.unwrap_or(0.0));
@@ -102,6 +103,23 @@ pub(super) fn read(spec: &Spec, start: Epoch, files: &Files<'_>, parameters: &mu
         start_s += duration_s;
     }
     phases
+}
+
+/// Checks the stated start of a phase against where the ones before it end.
+fn check_start(written: Option<&str>, at: &str, expected: Epoch, faults: &mut Faults) {
+    let Some(text) = written else { return };
+    let at = format!("{at}.start");
+    match Epoch::parse(text) {
+        Err(error) => faults.push(&at, error.to_string(), "write a date such as `2029-04-01`"),
+        Ok(stated) => {
+            let gap_d = (stated.tt_seconds() - expected.tt_seconds()) / DAY_S;
+            let what = if gap_d > 0.0 { "leaves a gap of" } else { "overlaps by" };
+            if gap_d.abs() > 1.0 {
+                let message = format!("this {what} {:.1} d: the phases before it end at {expected}", gap_d.abs());
+                faults.push(&at, message, "correct this date, or the duration of the phase before it");
+            }
+        }
+    }
 }
 
 /// Waiting for the cheapest point of an orbit needs an orbit in which the attitude comes back.
