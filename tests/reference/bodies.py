@@ -78,7 +78,7 @@ def suns():
 def poles():
     """North poles at J2000 (T = 0) by the report of the IAU Working Group on Cartographic Coordinates and Rotational
     Elements 2015: Archinal et al., Celest. Mech. Dyn. Astr. 130:22 (2018), tables 1 and 2. The report itself was not at
-    hand: from memory, and equal to several public transcriptions. The Moon's is the mean pole (without the terms in E1 to
+    hand: from memory, and equal to several public copies. The Moon's is the mean pole (without the terms in E1 to
     E13); that of Mars needs its terms in sines and cosines, of which the longest is a turn in 71 000 years."""
     sin = lambda terms: sum(a * np.sin(np.radians(x)) for a, x in terms)
     cos = lambda terms: sum(a * np.cos(np.radians(x)) for a, x in terms)
