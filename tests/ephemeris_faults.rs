@@ -48,7 +48,10 @@ fn what_cannot_be_read_is_told_with_its_line() {
             one_fault(&with_line(15, &format!("2029-01-01T00:02:00 {line}")), &format!("line 15: `{number}` is no finite number"));
         }
     }
-    one_fault(&with_line(15, "2029-01-01T00:02:00 1e306 0 0 0 0 0"), "line 15: `1e306` is beyond 1e12 km or km/s");
+    for number in ["1e306", "-1.1e12"] {
+        let expected = format!("line 15: `{number}` is beyond 1e12 km or km/s");
+        one_fault(&with_line(15, &format!("2029-01-01T00:02:00 {number} 0 0 0 0 0")), &expected);
+    }
     for (columns, words) in [("", 1), (" 1 2 3", 4), (" 1 2 3 4 5", 6), (" 1 2 3 4 5 6 7", 8), (" 1 2 3 4 5 6 7 8 9 10", 11)] {
         let expected = format!("line 15: expected an epoch and 6 numbers (or 9 with accelerations), got {words} words");
         one_fault(&with_line(15, &format!("2029-01-01T00:02:00{columns}")), &expected);
