@@ -15,7 +15,7 @@ const TT_MINUS_TAI_S: f64 = 32.184;
 /// Characters of `YYYY-MM-DD`.
 const DATE_LENGTH: usize = 10;
 /// Years, UTC, for which the models of the sky are any good. A year outside is most likely a slip.
-const YEARS: RangeInclusive<i16> = 1900..=2200;
+pub(super) const YEARS: RangeInclusive<i16> = 1900..=2200;
 
 /// Unix second from which TAI − UTC takes each value. Source: IERS Bulletin C; the last leap second announced up to
 /// 2026-12 is that of 2017-01-01, so later instants use 37 s. Before 1972 the first value is used.
@@ -217,6 +217,12 @@ fn starts_with_date(text: &str) -> bool {
 
 fn leap_seconds_at_utc(unix_s: f64) -> f64 {
     LEAP_SECONDS.iter().rev().find(|(from, _)| unix_s >= *from).map_or(LEAP_SECONDS[0].1, |entry| entry.1)
+}
+
+/// Whether the day of UTC that begins at `midnight` (Unix time) ends with a second of its own, 23:59:60.
+pub(super) fn day_has_leap_second(midnight: f64) -> bool {
+    // The first entry is the offset with which the table begins, not a step.
+    LEAP_SECONDS.iter().skip(1).any(|(from, _)| (from - midnight - DAY_S).abs() < 0.5)
 }
 
 fn day_and_second(utc: DateTime, unix_s: f64) -> (f64, f64) {

@@ -8,6 +8,7 @@ mod calendar;
 mod earth_rotation;
 mod ephemeris;
 mod epoch;
+mod hermite;
 mod magnetic;
 mod moon;
 mod oem;
