@@ -22,4 +22,4 @@ mod tariff;
 pub use cases::{Capability, Case, cases, single_failures, without};
 pub use envelope::{Authority, HalfSpace};
 pub use generator::{Generator, NetForce};
-pub use price::{Basis, Price, PriceMap, Vertex};
+pub use price::{Basis, PlainBasis, Price, PriceMap, Vertex};

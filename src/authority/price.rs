@@ -14,6 +14,9 @@ const OUTSIDE: f64 = 1e-10;
 /// An impulse below zero by less than this part of all impulses is rounding on the border between two bases.
 const IMPULSE_IS_ROUNDING: f64 = 1e-9;
 
+/// Impulse per angular impulse, over that of a thruster on the longest arm, up to which a plain product keeps 1e-12.
+const PLAIN_ENOUGH: f64 = 1e3;
+
 /// A basis is taken without asking others if no impulse is below zero by more than this part of all.
 const BORDER: f64 = 1e-12;
 
@@ -38,6 +41,15 @@ pub struct Vertex {
     pub bases: Vec<Basis>,
     /// `lambda` in reduced coordinates.
     pub(super) reduced: [f64; 3],
+}
+
+/// A basis as a plain linear map, for many impulses at once.
+#[derive(Debug, Clone, PartialEq)]
+pub struct PlainBasis {
+    /// The basis with the largest `select · h` fires.
+    pub select: [f64; 3],
+    /// Thrusters that fire, and the impulse of each (N·s) per angular impulse about x, y, z (N·m·s).
+    pub firing: Vec<(usize, [f64; 3])>,
 }
 
 /// What one angular impulse costs.
@@ -83,6 +95,7 @@ pub struct PriceMap {
     reduced_rays: Vec<[f64; 3]>,
     direction: Direction,
     generators: usize,
+    plain: Option<Vec<PlainBasis>>,
 }
 
 impl PriceMap {
@@ -101,7 +114,7 @@ impl PriceMap {
             || vertices.iter().enumerate().flat_map(|(v, vertex)| vertex.bases.iter().enumerate().map(move |(b, basis)| (v, b, basis)));
         let (selects, places) = bases().map(|(v, b, basis)| (basis.select, (v, b))).unzip();
         let taken = |certificate: &Certificate| certificate.reduced;
-        Self {
+        let mut map = Self {
             lambdas: vertices.iter().map(|v| v.reduced).collect(),
             selects,
             places,
@@ -111,7 +124,10 @@ impl PriceMap {
             reduced_rays: certificates.iter().map_while(taken).collect(),
             direction: reduced.direction(),
             generators: generators.len(),
-        }
+            plain: None,
+        };
+        map.plain = map.as_products();
+        map
     }
 
     /// Least propellant for the angular impulse `h` (N·m·s), kg; homogeneous of degree 1.
@@ -166,18 +182,66 @@ impl PriceMap {
 
     /// As [`PriceMap::allocate`], but only the thrusters that fire: index and impulse, N·s. Allocates nothing.
     #[must_use]
-    pub fn firings(&self, h: &Vector3<f64>) -> Option<impl Iterator<Item = (usize, f64)> + '_> {
+    pub fn firings(&self, h: &Vector3<f64>) -> Option<impl Iterator<Item = (usize, f64)> + use<>> {
+        let fired = match self.plainly(h) {
+            Some(fired) => fired,
+            None => self.carefully(h)?,
+        };
+        Some(fired.into_iter().flatten().map(|(index, impulse): (usize, f64)| (index, impulse.max(0.0))))
+    }
+
+    /// The firing by a plain product, unless it lies so near a border between two bases that others must be asked.
+    fn plainly(&self, h: &Vector3<f64>) -> Option<Fired> {
+        let plain = self.plain.as_deref()?;
+        let (best, _) = largest(plain.iter().map(|basis| product(&basis.select, h)))?;
+        let mut fired = Fired::default();
+        let (mut lowest, mut sum) = (0.0_f64, 0.0);
+        for (place, (index, row)) in fired.iter_mut().zip(&plain.get(best)?.firing) {
+            let impulse = product(row, h);
+            (lowest, sum) = (lowest.min(impulse), sum + impulse.abs());
+            *place = Some((*index, impulse));
+        }
+        (lowest >= -BORDER * sum).then_some(fired)
+    }
+
+    fn carefully(&self, h: &Vector3<f64>) -> Option<Fired> {
         let s = self.direction.of(h)?;
         if self.violated(h, Some(&s)).is_some() {
             return None;
         }
-        let (indices, fired) = if norm(&s) > 0.0 {
+        let mut all = Fired::default();
+        if norm(&s) > 0.0 {
             let (way, fired) = self.way(&s)?;
-            (way.indices.as_slice(), fired)
-        } else {
-            ([].as_slice(), Vec6::default())
+            for ((place, index), impulse) in all.iter_mut().zip(&way.indices).zip(fired) {
+                *place = Some((*index, impulse));
+            }
+        }
+        Some(all)
+    }
+
+    /// The bases as plain linear maps, for many impulses at once; `None` where some direction cannot be served, or where the
+    /// arms are so nearly in a plane that a plain product would lose digits.
+    #[must_use]
+    pub fn plain(&self) -> Option<&[PlainBasis]> {
+        self.plain.as_deref()
+    }
+
+    fn as_products(&self) -> Option<Vec<PlainBasis>> {
+        if !self.rays.is_empty() {
+            return None;
+        }
+        let unit = |axis: usize| self.direction.of(&Vector3::ith(axis, 1.0));
+        let axes = [unit(0)?, unit(1)?, unit(2)?];
+        let one = |(vertex, basis): &(usize, usize)| {
+            let basis = self.vertices.get(*vertex)?.bases.get(*basis)?;
+            let select = axes.map(|s| along(&basis.select, &s));
+            let fired = axes.map(|s| basis.way.fire(&s));
+            let rows = (0..basis.way.indices.len()).map(|k| (basis.way.indices[k], [fired[0][k], fired[1][k], fired[2][k]]));
+            let firing: Vec<_> = rows.filter(|(_, row)| row.iter().any(|x| x.abs() > 0.0)).collect();
+            let largest = firing.iter().flat_map(|(_, row)| row).fold(0.0, |most: f64, x| most.max(x.abs()));
+            (largest * self.direction.arm() < PLAIN_ENOUGH).then_some(PlainBasis { select, firing })
         };
-        Some(indices.iter().copied().zip(fired).map(|(index, impulse)| (index, impulse.max(0.0))))
+        self.places.iter().map(one).collect()
     }
 
     /// The way to fire for the reduced coordinates `s`, and its impulses. The raised costs leave one, which has no
@@ -206,6 +270,13 @@ impl PriceMap {
         let longest = self.vertices.iter().map(|v| v.lambda).reduce(|a, b| if b.norm() > a.norm() { b } else { a })?;
         Some((longest.try_normalize(0.0)?, longest.norm()))
     }
+}
+
+/// The thrusters that fire, and the impulse of each, N·s; at most six.
+type Fired = [Option<(usize, f64)>; 6];
+
+fn product(row: &[f64; 3], h: &Vector3<f64>) -> f64 {
+    row[0] * h.x + row[1] * h.y + row[2] * h.z
 }
 
 /// Index and value of the largest, the first of equals.

@@ -85,6 +85,11 @@ pub(super) struct Direction {
 }
 
 impl Direction {
+    /// The longest arm, m.
+    pub(super) fn arm(&self) -> f64 {
+        self.arm
+    }
+
     /// The reduced coordinates of a torque, or `None` if it leaves the attainable span.
     pub(super) fn of(&self, torque: &Vector3<f64>) -> Option<Vec6> {
         let outside = OUTSIDE * torque.norm();

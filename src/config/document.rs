@@ -95,6 +95,7 @@ impl Document {
                 faults.extend(found);
             }
         }
+        super::sample::read_samples(&mut root, &mut faults);
         let value = root.to_value();
         if faults.is_empty() { Ok(Self { root, value }) } else { Err(faults) }
     }

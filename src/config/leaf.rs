@@ -20,11 +20,11 @@ pub struct Quantity<K>(pub f64, PhantomData<K>);
 pub struct Triple<K>(pub [f64; 3], PhantomData<K>);
 
 /// A quantity that may have a spread, SI.
-#[derive(Debug, Clone, Copy, PartialEq)]
+#[derive(Debug, Clone, PartialEq)]
 pub struct SpreadQuantity<K>(pub Spread, PhantomData<K>);
 
 /// Three components of a vector in the body frame, each of which may have a spread, SI.
-#[derive(Debug, Clone, Copy, PartialEq)]
+#[derive(Debug, Clone, PartialEq)]
 pub struct SpreadTriple<K>(pub [Spread; 3], PhantomData<K>);
 
 /// How the value of a quantity may be written.
@@ -95,16 +95,21 @@ fn text_of(value: &Value) -> Result<Cow<'_, str>, QuantityError> {
 /// Reads a quantity in any form into three spreads (a single number fills the first).
 pub(crate) fn read(value: &Value, words: KindWords, form: Form) -> Result<[Spread; 3], QuantityError> {
     if let (Value::Mapping(map), Form::OneSpread) = (value, form) {
-        return long_form::read(map, words).map(|spread| [spread; 3]);
+        return long_form::read(map, words).map(threefold);
     }
     let text = text_of(value)?;
     let (dimension, name, example) = (words.dimension, words.name, words.example);
     match form {
-        Form::One => units::parse(&text, dimension, name, example).map(|x| [Spread::Fixed(x); 3]),
-        Form::OneSpread => parse_spread(&text, dimension, name, example).map(|spread| [spread; 3]),
+        Form::One => units::parse(&text, dimension, name, example).map(|x| threefold(Spread::Fixed(x))),
+        Form::OneSpread => parse_spread(&text, dimension, name, example).map(threefold),
         Form::Three => parse_triple(&text, dimension, name, example).map(|xyz| xyz.map(Spread::Fixed)),
         Form::ThreeSpread => parse_spread_triple(&text, dimension, name, example),
     }
+}
+
+/// A single value fills all three places.
+fn threefold(spread: Spread) -> [Spread; 3] {
+    [spread.clone(), spread.clone(), spread]
 }
 
 fn schema_of<K: Kind>(form: Form) -> Schema {

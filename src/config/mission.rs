@@ -73,6 +73,13 @@ pub enum Timing {
 pub struct Budget {
     /// Lifetimes drawn. Default: 10000.
     pub lifetimes: Option<Quantity<kind::Number>>,
+    /// Draw on until a quantile is known this well, in place of a fixed number. Default: `lifetimes` are drawn.
+    pub precision: Option<Precision>,
+    /// How the draws are spread. Default: `plain`.
+    #[serde(default)]
+    pub sampling: Sampling,
+    /// Independent Latin hypercubes that limits are estimated from, 5 to 100. Default: 20.
+    pub replicates: Option<Quantity<kind::Number>>,
     /// Seed of the draws, a whole number. Default: 1.
     pub seed: Option<u64>,
     /// Margin on attitude-control propellant, such as `100 %`. Default: that of `margin_rule`, else none.
@@ -89,6 +96,29 @@ pub struct Budget {
     pub resolution: ResolutionChoice,
     /// How far steps and strata of the default resolution may put secular and cyclic momentum off, `0.1 %` to `20 %`. Default: `1 %`.
     pub tolerance: Option<Quantity<kind::Number>>,
+}
+
+/// How well a quantile of attitude-control propellant must be known.
+#[derive(Debug, Clone, Deserialize, JsonSchema)]
+#[serde(deny_unknown_fields)]
+pub struct Precision {
+    /// The quantile, such as `95 %`. Default: `95 %`.
+    pub quantile: Option<Quantity<kind::Number>>,
+    /// Widest interval between its two limits, as a share of it, such as `1 %`.
+    pub width: Quantity<kind::Number>,
+    /// Most lifetimes drawn. Default: 1000000.
+    pub at_most: Option<Quantity<kind::Number>>,
+}
+
+/// How the draws are spread.
+#[derive(Debug, Clone, Copy, Default, PartialEq, Eq, Deserialize, JsonSchema)]
+#[serde(rename_all = "snake_case")]
+pub enum Sampling {
+    /// Independent draws: limits assume nothing.
+    #[default]
+    Plain,
+    /// Latin hypercubes: each quantity covers its distribution evenly. Quantiles scatter less where single quantities drive them; limits are estimated from replicates.
+    LatinHypercube,
 }
 
 /// A rule that gives margins.

@@ -25,6 +25,7 @@ mod path;
 mod reference;
 mod refuse;
 mod render;
+mod sample;
 mod schema;
 mod setting;
 mod source;
@@ -32,6 +33,7 @@ mod spacecraft;
 mod spans;
 mod spec;
 mod syntax;
+mod uncertainty;
 mod walk;
 
 pub use attitude::{Attitude, Direction, Mix, Part, Sky, Survey};
@@ -41,7 +43,7 @@ pub use document::Document;
 pub use environment::{Accommodation, ActivityLevel, Atmosphere, BodyLight, Cycle, Environment, SolarActivity, Wind};
 pub use event::{AxisTurn, Burn, Deadband, Event, Hold, RateDamping, SafeMode, Slews, SpinChange, When};
 pub use leaf::{Quantity, SpreadQuantity, SpreadTriple, Triple};
-pub use mission::{Axis, Budget, Figure, MarginRule, Mission, Phase, Requirement, ResolutionChoice, Timing, Unload};
+pub use mission::{Axis, Budget, Figure, MarginRule, Mission, Phase, Precision, Requirement, ResolutionChoice, Sampling, Timing, Unload};
 pub use nearest::{did_you_mean, known, nearest};
 pub use orbit::{About, LagrangePoint, Orbit, OwnBody, Stationary};
 pub use path::{Path, Segment};
@@ -49,8 +51,9 @@ pub use reference::reference;
 pub use render::{render_all, sort, to_json};
 pub use source::{Place, Source};
 pub use spacecraft::{
-    Blowdown, Engine, Material, NetForceChoice, OneTank, Plume, PressureLaw, PressurePoint, Propulsion, PulsePerformance, Shaded,
+    Blowdown, Engine, Failure, Material, NetForceChoice, OneTank, Plume, PressureLaw, PressurePoint, Propulsion, PulsePerformance, Shaded,
     SmallUnload, Spacecraft, Surface, Tank, Thruster, Wheel, Wheels,
 };
 pub use spec::{Spec, read, schema};
+pub use uncertainty::{Correlation, DriverGroup, DrawnAnew, Each, Uncertainty};
 pub use walk::{Leaf, check_structure};

@@ -116,6 +116,25 @@ pub struct Propulsion {
     pub qualified_throughput: Option<Quantity<kind::Mass>>,
     /// How thrust and exhaust speed of thrusters and engines follow the feed pressure. Default: thrust in proportion, exhaust speed not at all.
     pub pressure_law: Option<PressureLaw>,
+    /// Thrusters and strings that may be lost. Default: none.
+    #[serde(default)]
+    pub failures: Vec<Failure>,
+}
+
+/// A thruster or a string that may be lost during the mission.
+#[derive(Debug, Clone, Deserialize, JsonSchema)]
+#[serde(deny_unknown_fields)]
+pub struct Failure {
+    /// Name, such as `valve of string A`.
+    pub name: String,
+    /// Name of the thruster or the string that is lost.
+    pub out: String,
+    /// Probability that it happens at all, such as `2 %`.
+    pub probability: Quantity<kind::Number>,
+    /// Time after the start of the mission from which on it is lost, such as `3 yr` or `0 .. 7 yr`. Default: from the start.
+    pub from: Option<SpreadQuantity<kind::Time>>,
+    /// Whether unloads may leave a net force from then on. Default: `propulsion.net_force`.
+    pub net_force: Option<NetForceChoice>,
 }
 
 /// A plume as a cone.

@@ -7,7 +7,7 @@ use serde_yaml::Value;
 use super::leaf::{self, Form};
 use super::{
     Budget, Diagnostic, Document, Engine, Environment, Material, Mission, Path, Propulsion, Requirement, Spacecraft, Surface, Tank,
-    Thruster, Wheels, check_structure, decode,
+    Thruster, Uncertainty, Wheels, check_structure, decode,
 };
 
 /// A spacecraft, its mission and what is asked of it.
@@ -38,6 +38,9 @@ pub struct Spec {
     /// Surroundings, and how well they are known.
     #[serde(default)]
     pub environment: Environment,
+    /// How uncertain quantities hang together, and how often they are drawn.
+    #[serde(default)]
+    pub uncertainty: Uncertainty,
     /// How the budget is made.
     #[serde(default)]
     pub budget: Budget,

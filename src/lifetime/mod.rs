@@ -4,9 +4,11 @@
 //! [`Outcome`]. Flying is pure, and flying many draws at once gives the same outcomes.
 
 mod audit;
+mod block;
 mod engine;
 mod events;
 mod flight;
+mod layouts;
 mod modulation;
 mod outcome;
 mod plan;
@@ -24,5 +26,5 @@ pub use push::UnloadDeltaV;
 pub use summary::{PhaseSummary, Transient, TypicalUnload};
 pub use timing::TimingGain;
 
-/// Lifetimes flown together: one matrix product of this width.
-pub const BLOCK: usize = 64;
+/// Lifetimes flown together: side by side.
+pub const BLOCK: usize = crate::uncertain::LANES;

@@ -3,13 +3,14 @@
 use crate::authority::{Authority, Price};
 use crate::mission::{Margin, Scenario, UnloadPolicy};
 use crate::momentum::{
-    Convergence, FoldedBasis, MassHistory, PhaseMomentum, RawBasis, Resolution, Stratum, phase_momentum, simulate, wheel_envelope,
+    Convergence, FoldedBasis, MassHistory, Panels, PhaseMomentum, RawBasis, Resolution, Stratum, phase_momentum, simulate, wheel_envelope,
     wheel_torque,
 };
 use crate::pulses::Pricer;
 use crate::uncertain::Draw;
 use crate::vehicle::Vehicle;
 
+use super::layouts::Layouts;
 use super::policy::Filling;
 
 /// Why a mission cannot be flown.
@@ -53,9 +54,10 @@ pub struct Plan {
     pub(super) nominal_rows: Vec<f64>,
     pub(super) filling: Option<Filling>,
     wheel_torque: Option<Authority>,
-    /// Layouts about the centres of mass that matter, and which of them each stratum takes.
-    pub(super) pricers: Vec<Pricer>,
-    pub(super) pricer_of: Vec<usize>,
+    /// The basis by windows, for many lifetimes at once.
+    pub(super) panels: Panels,
+    /// The layout with all thrusters working, then with every set of failures.
+    pub(super) layouts: Vec<Layouts>,
     /// The middle stratum of each phase.
     middles: Vec<usize>,
     /// Shares of the time that burning thrusters are on where that holds the attitude.
@@ -86,8 +88,8 @@ impl Plan {
             nominal_rows: Vec::new(),
             filling,
             wheel_torque: scenario.vehicle.wheels.as_ref().map(wheel_torque),
-            pricers: Vec::new(),
-            pricer_of: Vec::new(),
+            panels: Panels::default(),
+            layouts: Vec::new(),
             duties: Vec::new(),
             middles: middles(&strata, scenario.mission.phases.len()),
             margin,
@@ -102,6 +104,7 @@ impl Plan {
         plan.basis = FoldedBasis::new(&plan.scenario, &plan.strata, &plan.raw, &history);
         plan.duties = plan.find_duties();
         plan.nominal_rows = plan.rows_in(&plan.nominal);
+        plan.panels = Panels::new(&plan.basis, &plan.strata, plan.scenario.mission.phases.len());
         plan.price_layout()?;
         Ok(plan)
     }
@@ -120,24 +123,7 @@ impl Plan {
         Ok(MassHistory::new(std::iter::once((0.0, loaded)).chain(points).collect()))
     }
 
-    fn price_layout(&mut self) -> Result<(), PlanError> {
-        let propulsion = &self.scenario.vehicle.propulsion;
-        // A couple has no reference point: without net force one centre of mass serves all strata.
-        let pure = propulsion.net_force == crate::config::NetForceChoice::Zero;
-        let centres = self.basis.masses.iter().map(|mass| mass.centre_of_mass_m).take(if pure { 1 } else { usize::MAX });
-        self.pricers = centres.map(|centre| Pricer::new(propulsion, &centre)).collect();
-        self.pricer_of = (0..self.strata.len()).map(|k| k.min(self.pricers.len() - 1)).collect();
-        if !self.needs_thrusters() {
-            return Ok(());
-        }
-        let refused = self.pricers.iter().find_map(|pricer| pricer.price_map().rays.first());
-        match refused {
-            Some(ray) => Err(PlanError::NotServed { along: (*ray).into(), net_force: if pure { "zero" } else { "any" } }),
-            None => Ok(()),
-        }
-    }
-
-    fn needs_thrusters(&self) -> bool {
+    pub(super) fn needs_thrusters(&self) -> bool {
         self.scenario.mission.phases.iter().any(|phase| phase.unload != UnloadPolicy::Never || !phase.events.is_empty())
     }
 
@@ -210,7 +196,7 @@ impl Plan {
     /// The layout about the centre of mass of a stratum.
     #[must_use]
     pub fn pricer(&self, stratum: usize) -> &Pricer {
-        &self.pricers[self.pricer_of[stratum]]
+        self.layouts[0].pricer(stratum)
     }
 
     /// Least propellant for an angular impulse in a stratum, kg, or `None` if no firing gives it.

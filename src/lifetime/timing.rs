@@ -4,7 +4,8 @@ use nalgebra::Vector3;
 
 use super::Plan;
 use crate::config::Timing;
-use crate::pulses::{Performance, Wear};
+use crate::authority::Price;
+use crate::pulses::{Performance, Pricer, Wear};
 
 /// Propellant of the nominal unloads that may wait for the cheapest point of the orbit, kg.
 #[derive(Debug, Clone, Copy, PartialEq)]
@@ -23,8 +24,12 @@ impl Plan {
 
     /// The angular impulse (N·m·s, body frame) of least price: the windows of a stratum hold about the same momentum, met
     /// by the body at nine points of the orbit. One that cannot be given is taken only if none can.
-    pub(super) fn cheapest(&self, stratum: usize, impulses: &[Vector3<f64>]) -> Option<Vector3<f64>> {
-        let priced = impulses.iter().map(|impulse| (self.price(stratum, impulse).unwrap_or(f64::INFINITY), *impulse));
+    pub(super) fn cheapest(&self, pricer: &Pricer, impulses: &[Vector3<f64>]) -> Option<Vector3<f64>> {
+        let price = |impulse: &Vector3<f64>| match pricer.price_map().price(impulse) {
+            Price::Served { kg } => kg,
+            Price::NotServed { .. } => f64::INFINITY,
+        };
+        let priced = impulses.iter().map(|impulse| (price(impulse), *impulse));
         priced.reduce(|best, next| if next.0 < best.0 { next } else { best }).map(|(_, impulse)| impulse)
     }
 
@@ -44,7 +49,7 @@ impl Plan {
             let mut cost =
                 |impulse: &Vector3<f64>, times: f64| self.pricer(stratum).cost(impulse, times, &performance, &mut wear).unwrap_or(f64::NAN);
             gain.as_due_kg += impulses.iter().map(|impulse| cost(impulse, rate.count / impulses.len() as f64)).sum::<f64>();
-            gain.cheapest_kg += self.cheapest(stratum, &impulses).map_or(0.0, |impulse| cost(&impulse, rate.count));
+            gain.cheapest_kg += self.cheapest(self.pricer(stratum), &impulses).map_or(0.0, |impulse| cost(&impulse, rate.count));
         }
         Some(gain)
     }

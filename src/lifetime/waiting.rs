@@ -9,10 +9,15 @@ use crate::config::SmallUnload;
 const MOST_INTERVALS: f64 = 1000.0;
 
 impl Plan {
+    /// Whether small unloads wait.
+    pub(super) fn waits(&self) -> bool {
+        self.vehicle().propulsion.small_unload == SmallUnload::Wait
+    }
+
     /// The rate of unloads, with as many intervals between them as it takes until the thruster that does least makes a whole
     /// pulse, if the configuration says to wait. The momentum is taken to grow steadily over them.
     pub(super) fn waited(&self, stratum: usize, windows: &[Vector3<f64>], rate: UnloadRate) -> UnloadRate {
-        if self.vehicle().propulsion.small_unload == SmallUnload::Carry {
+        if !self.waits() {
             return rate;
         }
         let pricer = self.pricer(stratum);

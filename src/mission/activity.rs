@@ -40,7 +40,7 @@ impl SolarActivity {
             let nominal = Spread::Fixed(Activity::MODERATE.f107);
             return Some(Self::spread(Uncertain::fixed(nominal.nominal()), nominal, Course::Level(Activity::MODERATE)));
         };
-        match (written.level, written.f107, &written.cycle) {
+        match (written.level, written.f107.clone(), &written.cycle) {
             (Some(level), None, None) => {
                 let activity = match level {
                     ActivityLevel::Low => Activity::LOW,
@@ -48,19 +48,19 @@ impl SolarActivity {
                     ActivityLevel::High => Activity::HIGH,
                 };
                 let fixed = Spread::Fixed(activity.f107);
-                Some(Self::spread(parameters.register(KEY, "sfu", fixed), fixed, Course::Level(activity)))
+                Some(Self::spread(parameters.register(KEY, "sfu", fixed.clone()), fixed, Course::Level(activity)))
             }
             (None, Some(f107), None) => {
                 let key = format!("{KEY}.f107");
                 let spread = flux(&key, f107.0, faults)?;
-                Some(Self::spread(parameters.register(key, "sfu", spread), spread, Course::Constant))
+                Some(Self::spread(parameters.register(key, "sfu", spread.clone()), spread, Course::Constant))
             }
             (None, None, Some(cycle)) => {
                 let course = course(cycle, faults);
                 let key = format!("{KEY}.cycle.amplitude");
-                let amplitude = cycle.amplitude.map_or(Spread::Fixed(1.0), |amplitude| amplitude.0);
+                let amplitude = cycle.amplitude.clone().map_or(Spread::Fixed(1.0), |amplitude| amplitude.0);
                 let amplitude = faults.spread(&key, amplitude, 0.0, 3.0, "a factor on the rise of a cycle")?;
-                Some(Self::spread(parameters.register(key, "", amplitude), amplitude, course?))
+                Some(Self::spread(parameters.register(key, "", amplitude.clone()), amplitude, course?))
             }
             _ => {
                 let help = "keep one: `level: moderate`, `f107: 90 .. 190`, or `cycle: {start: …, period: …, low: …, high: …}`";

@@ -117,9 +117,22 @@ pub enum EventKind {
     },
 }
 
+impl EventKind {
+    /// How often it happens in the phase, for those that are counted.
+    #[must_use]
+    pub const fn count(&self) -> Option<&Uncertain> {
+        match self {
+            Self::Slews { count, .. } | Self::Burn { count, .. } | Self::Spin { count, .. } | Self::AxisTurn { count, .. } => Some(count),
+            Self::RateDamping { .. } | Self::Deadband { .. } | Self::SafeMode { .. } => None,
+        }
+    }
+}
+
 /// What an event is read with.
 pub(super) struct Reading<'a> {
     pub(super) spec: &'a Spec,
+    /// Name of the phase.
+    pub(super) phase: &'a str,
     /// Start of the mission.
     pub(super) start: Epoch,
     /// Start of the phase after it, and length, s.
@@ -143,7 +156,8 @@ pub(super) fn read(written: &config::Event, at: &str, with: &mut Reading<'_>) ->
         with.faults.push(at, message, "keep one of them, and write a second event for the other");
         return None;
     }
-    let name = written.name.as_str();
+    // With the phase: events of two phases may share a name, and must not share their draws.
+    let name = &format!("{}.{}", with.phase, written.name);
     let kind = with
         .damping(name, written.rate_damping.as_ref())
         .or_else(|| with.slews(name, at, written.slews.as_ref()?))
@@ -160,12 +174,12 @@ pub(super) fn read(written: &config::Event, at: &str, with: &mut Reading<'_>) ->
         Some(config::When::End) => When::End,
         Some(config::When::On(dates)) => When::At(with.dates(&format!("{at}.when.on"), dates)?),
     };
-    Some(Event { name: name.to_owned(), when, kind })
+    Some(Event { name: written.name.clone(), when, kind })
 }
 
 impl Reading<'_> {
     fn damping(&mut self, name: &str, written: Option<&config::RateDamping>) -> Option<EventKind> {
-        let rates_rad_per_s = register_triple(&format!("{name}.rates"), "rad/s", written?.rates.0, self.parameters);
+        let rates_rad_per_s = register_triple(&format!("{name}.rates"), "rad/s", written?.rates.0.clone(), self.parameters);
         Some(EventKind::RateDamping { rates_rad_per_s })
     }
 
@@ -207,15 +221,15 @@ impl Reading<'_> {
         let axis = self.faults.direction(&format!("{at}.axis"), written.axis.0);
         let angle = self.faults.positive(&format!("{at}.angle"), written.angle.0, "an angle");
         let rate = self.faults.positive(&format!("{at}.rate"), written.rate.0, "a rate");
-        let count = self.count(name, &at, Some(written.count.0));
+        let count = self.count(name, &at, Some(written.count.0.clone()));
         Some(EventKind::Slews { axis: axis?, angle_rad: angle?, rate_rad_per_s: rate?, count: count? })
     }
 
     fn burn(&mut self, name: &str, at: &str, written: &config::Burn) -> Option<EventKind> {
         let at = format!("{at}.burn");
         let source = self.source(&at, written);
-        let delta_v = self.faults.spread(&format!("{at}.delta_v"), written.delta_v.0, 0.0, f64::INFINITY, "a Δv");
-        let count = self.count(name, &at, written.count.map(|count| count.0));
+        let delta_v = self.faults.spread(&format!("{at}.delta_v"), written.delta_v.0.clone(), 0.0, f64::INFINITY, "a Δv");
+        let count = self.count(name, &at, written.count.clone().map(|count| count.0));
         let source = source?;
         if written.hold == Hold::OffModulation && matches!(source, BurnSource::Engine(_)) {
             let help = "name the `thrusters` that burn, or hold with `thrusters`";
@@ -269,21 +283,21 @@ impl Reading<'_> {
 
     fn band(&mut self, name: &str, at: &str, half_width: f64, disturbance: Option<[Spread; 3]>) -> Option<Band> {
         let half_width_rad = self.faults.positive(&format!("{at}.half_width"), half_width, "half the width of a band")?;
-        let torque = disturbance.unwrap_or([Spread::Fixed(0.0); 3]);
+        let torque = disturbance.unwrap_or([const { Spread::Fixed(0.0) }; 3]);
         Some(Band { half_width_rad, disturbance_n_m: register_triple(&format!("{name}.disturbance"), "N m", torque, self.parameters) })
     }
 
     fn deadband(&mut self, name: &str, at: &str, written: &config::Deadband) -> Option<EventKind> {
         let at = format!("{at}.deadband");
-        let time = self.faults.spread(&format!("{at}.time"), written.time.0, 0.0, f64::INFINITY, "a time");
-        let band = self.band(name, &at, written.half_width.0, written.disturbance.as_ref().map(|torque| torque.0));
+        let time = self.faults.spread(&format!("{at}.time"), written.time.0.clone(), 0.0, f64::INFINITY, "a time");
+        let band = self.band(name, &at, written.half_width.0, written.disturbance.as_ref().map(|torque| torque.0.clone()));
         Some(EventKind::Deadband { time_s: self.parameters.register(format!("{name}.time"), "s", time?), band: band? })
     }
 
     fn spin(&mut self, name: &str, at: &str, written: &config::SpinChange) -> Option<EventKind> {
         let at = format!("{at}.spin");
         let axis = self.faults.direction(&format!("{at}.axis"), written.axis.0);
-        let count = self.count(name, &at, written.count.map(|count| count.0));
+        let count = self.count(name, &at, written.count.clone().map(|count| count.0));
         let rates_rad_per_s = [written.from.map_or(0.0, |rate| rate.0), written.to.0];
         Some(EventKind::Spin { axis: axis?, rates_rad_per_s, count: count? })
     }
@@ -295,14 +309,14 @@ impl Reading<'_> {
         let angle = self.faults.positive(&format!("{at}.angle"), written.angle.0, "an angle");
         let arc = written.arc.map_or(0.0, |arc| arc.0);
         let arc = self.faults.within(&format!("{at}.arc"), arc, 0.0, std::f64::consts::PI, "an angle in rad");
-        let count = self.count(name, &at, Some(written.count.0));
+        let count = self.count(name, &at, Some(written.count.0.clone()));
         Some(EventKind::AxisTurn { axis: axis?, rate_rad_per_s: rate?, angle_rad: angle?, arc_rad: arc?, count: count? })
     }
 
     fn safe_mode(&mut self, name: &str, at: &str, written: &config::SafeMode) -> Option<EventKind> {
         let at = format!("{at}.safe_mode");
-        let days = self.faults.spread(&format!("{at}.days_per_year"), written.days_per_year.0, 0.0, 365.25, "a number of days");
-        let band = self.band(name, &at, written.half_width.0, written.disturbance.as_ref().map(|torque| torque.0));
+        let days = self.faults.spread(&format!("{at}.days_per_year"), written.days_per_year.0.clone(), 0.0, 365.25, "a number of days");
+        let band = self.band(name, &at, written.half_width.0, written.disturbance.as_ref().map(|torque| torque.0.clone()));
         Some(EventKind::SafeMode { days_per_year: self.parameters.register(format!("{name}.days_per_year"), "", days?), band: band? })
     }
 }

@@ -6,6 +6,7 @@ mod activity;
 mod attitude;
 mod event;
 mod files;
+mod joint;
 mod orbit;
 mod phase;
 mod pointing;
@@ -17,9 +18,10 @@ mod survey;
 pub use activity::SolarActivity;
 pub use attitude::{Attitude, Law, Moment};
 pub use event::{Band, BurnSource, Event, EventKind, When};
+pub use joint::DriverGroup;
 pub use phase::{Phase, UnloadPolicy};
 pub use pointing::{Direction, Pointing, Sky};
-pub use settings::{Bound, Margin, Requirement, Settings};
+pub use settings::{Bound, Margin, Precision, Requirement, Sampling, Settings};
 pub use surroundings::{Accommodation, BodyLightShares};
 pub use survey::Survey;
 
@@ -69,9 +71,9 @@ impl Mission {
             .map_err(|error| faults.push("mission.start", error.to_string(), "write a date such as `2029-04-01` or `2029-04-01T12:00:00Z`"))
             .ok();
         let activity = SolarActivity::new(spec.environment.solar_activity.as_ref(), parameters, faults);
-        let factor = spec.environment.density_factor.map_or(Spread::Fixed(1.0), |factor| factor.0);
+        let factor = spec.environment.density_factor.clone().map_or(Spread::Fixed(1.0), |factor| factor.0);
         let factor = faults.positive_spread("environment.density_factor", factor, "a factor");
-        let drag = spec.environment.drag_coefficient.map_or(Spread::Fixed(USUAL_DRAG_COEFFICIENT), |drag| drag.0);
+        let drag = spec.environment.drag_coefficient.clone().map_or(Spread::Fixed(USUAL_DRAG_COEFFICIENT), |drag| drag.0);
         let drag = faults.positive_spread("environment.drag_coefficient", drag, "a drag coefficient");
         let density_factor = factor.map(|factor| parameters.register("environment.density_factor", "", factor));
         let drag_coefficient = drag.map(|drag| parameters.register("environment.drag_coefficient", "", drag));
@@ -138,6 +140,8 @@ pub struct Scenario {
     pub settings: Settings,
     /// What must hold.
     pub requirements: Vec<Requirement>,
+    /// Quantities that count as one driver.
+    pub driver_groups: Vec<DriverGroup>,
 }
 
 impl Scenario {
@@ -157,11 +161,16 @@ impl Scenario {
         let (mut parameters, mut faults) = (Parameters::default(), Faults::new());
         let vehicle = Vehicle::new(spec, &mut parameters, &mut faults);
         let mission = Mission::new(spec, folder, &mut parameters, &mut faults);
+        let events = spec.mission.phases.iter().flat_map(|phase| phase.events.iter().map(|event| format!("{}.{}.", phase.name, event.name)));
+        let events: Vec<String> = events.collect();
+        // A quantity with a fault of its own is not registered: asking for it would only say so again.
+        let driver_groups =
+            if faults.count() == 0 { joint::apply(&spec.uncertainty, &events, &mut parameters, &mut faults) } else { Vec::new() };
         let settings = settings::settings(&spec.budget, &mut faults);
         let requirements = settings::requirements(spec, &mut faults);
         match (vehicle, mission, settings) {
             (Some(vehicle), Some(mission), Some(settings)) if faults.count() == 0 => {
-                Ok(Self { vehicle, mission, parameters, settings, requirements })
+                Ok(Self { vehicle, mission, parameters, settings, requirements, driver_groups })
             }
             _ => Err(faults.into_inner()),
         }

@@ -82,7 +82,7 @@ pub(super) fn read(spec: &Spec, start: Epoch, files: &Files<'_>, parameters: &mu
         let unload = policy(written.unload.as_ref(), &at, spec.wheels.is_some(), faults);
         let attitude = read_attitude::read(&written.attitude, &format!("{at}.attitude"), &written.name, parameters, faults);
         let span_s = (start_s, duration.unwrap_or(0.0));
-        let events = events(written, &at, &mut Reading { spec, start, span_s, parameters, faults });
+        let events = events(written, &at, &mut Reading { spec, phase: &written.name, start, span_s, parameters, faults });
         let trajectory = own.unwrap_or_else(|| shared.clone());
         let timing = written.unload.as_ref().map_or(Timing::Due, |unload| unload.timing);
         let (Some(duration_s), Some(unload), Some(attitude), Some(trajectory)) = (duration, unload, attitude, trajectory) else { continue };

@@ -62,7 +62,7 @@ pub(super) fn read(
     };
     let bias_rad = match &written.bias {
         None => [Uncertain::fixed(0.0); 3],
-        Some(bias) => register_triple(&format!("mission.phases[{phase}].attitude.bias"), "rad", bias.0, parameters),
+        Some(bias) => register_triple(&format!("mission.phases[{phase}].attitude.bias"), "rad", bias.0.clone(), parameters),
     };
     Some(Attitude { law: law?, bias_rad })
 }

@@ -10,6 +10,10 @@ use crate::vehicle::Faults;
 pub struct Settings {
     /// Lifetimes drawn.
     pub lifetimes: u64,
+    /// Draw on until a quantile is known this well.
+    pub precision: Option<Precision>,
+    /// How the draws are spread.
+    pub sampling: Sampling,
     /// Seed of the draws.
     pub seed: u64,
     /// Margins.
@@ -20,6 +24,26 @@ pub struct Settings {
     pub resolution: ResolutionChoice,
     /// How far the default resolution may put secular and cyclic momentum off, as a share.
     pub tolerance: f64,
+}
+
+/// How well a quantile of the attitude total must be known.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Precision {
+    /// The quantile, between 0 and 1.
+    pub quantile: f64,
+    /// Widest interval between its two limits, as a share of it.
+    pub width: f64,
+    /// Most lifetimes drawn.
+    pub at_most: u64,
+}
+
+/// How draws are spread.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub enum Sampling {
+    /// Independent draws.
+    Plain,
+    /// This many independent Latin hypercubes.
+    LatinHypercube(u64),
 }
 
 /// Margins, as shares of nominal rows.
@@ -119,11 +143,45 @@ pub(super) fn settings(written: &config::Budget, faults: &mut Faults) -> Option<
     let burns = faults.within("budget.burn_margin", written.burn_margin.map_or(burns, |margin| margin.0), 0.0, 100.0, "a margin");
     let confidence = faults.within("budget.confidence", written.confidence.map_or(0.95, |c| c.0), 0.5, 0.999_999, "a confidence");
     let tolerance = faults.within("budget.tolerance", written.tolerance.map_or(0.01, |share| share.0), 1e-3, 0.2, "a tolerance");
-    #[expect(clippy::cast_possible_truncation, clippy::cast_sign_loss, reason = "checked to lie from 1 to 1e8")]
-    let lifetimes = lifetimes?.round() as u64;
+    let precision = precision(written.precision.as_ref(), faults);
+    let sampling = sampling(written, faults);
+    let lifetimes = whole(lifetimes?);
     let (seed, resolution) = (written.seed.unwrap_or(1), written.resolution);
     let margin = Margin { rule: written.margin_rule, attitude: attitude?, burns: burns? };
-    Some(Settings { lifetimes, seed, margin, confidence: confidence?, resolution, tolerance: tolerance? })
+    Some(Settings { lifetimes, precision, sampling: sampling?, seed, margin, confidence: confidence?, resolution, tolerance: tolerance? })
+}
+
+/// A number checked to lie from 1 to [`MOST_LIFETIMES`].
+#[expect(clippy::cast_possible_truncation, clippy::cast_sign_loss, reason = "checked to lie from 1 to 1e8")]
+fn whole(number: f64) -> u64 {
+    number.round() as u64
+}
+
+fn precision(written: Option<&config::Precision>, faults: &mut Faults) -> Option<Precision> {
+    const AT: &str = "budget.precision";
+    let written = written?;
+    let quantile = faults.within(&format!("{AT}.quantile"), written.quantile.map_or(0.95, |p| p.0), 1e-3, 0.99999, "a probability");
+    let width = faults.within(&format!("{AT}.width"), written.width.0, 1e-4, 1.0, "a share");
+    let at_most = written.at_most.map_or(1e6, |n| n.0);
+    let at_most = faults.within(&format!("{AT}.at_most"), at_most, 1.0, MOST_LIFETIMES, "a number of lifetimes");
+    Some(Precision { quantile: quantile?, width: width?, at_most: whole(at_most?) })
+}
+
+fn sampling(written: &config::Budget, faults: &mut Faults) -> Option<Sampling> {
+    if written.sampling == config::Sampling::Plain {
+        if written.replicates.is_some() {
+            faults.push("budget.replicates", "goes with Latin hypercubes only", "add `sampling: latin_hypercube`, or leave it out");
+            return None;
+        }
+        return Some(Sampling::Plain);
+    }
+    if written.precision.is_some() {
+        let help = "keep one: a hypercube has its size from the start";
+        faults.push("budget.precision", "does not go with `sampling: latin_hypercube`", help);
+        return None;
+    }
+    let replicates = faults.within("budget.replicates", written.replicates.map_or(20.0, |n| n.0), 5.0, 100.0, "a number of replicates")?;
+    Some(Sampling::LatinHypercube(whole(replicates)))
 }
 
 pub(super) fn requirements(spec: &Spec, faults: &mut Faults) -> Vec<Requirement> {

@@ -35,7 +35,7 @@ pub(super) fn accommodation(written: &config::Environment, parameters: &mut Para
         let spread = faults.spread(&at(key), spread, 0.0, 1.0, "an accommodation")?;
         Some(parameters.register(at(key), "", spread))
     };
-    let (normal, tangential) = (share("normal", own.normal.0), share("tangential", own.tangential.0));
+    let (normal, tangential) = (share("normal", own.normal.0.clone()), share("tangential", own.tangential.0.clone()));
     let wall_k = faults.positive(&at("wall_temperature"), own.wall_temperature.map_or(300.0, |wall| wall.0), "a temperature");
     Some(Accommodation { normal: normal?, tangential: tangential?, wall_k: wall_k? })
 }
@@ -45,7 +45,7 @@ pub(super) fn wind(written: &config::Environment, parameters: &mut Parameters) -
     let mut one = |key: &str, spread: Option<Spread>| {
         parameters.register(format!("environment.wind.{key}"), "m/s", spread.unwrap_or(Spread::Fixed(0.0)))
     };
-    [one("east", wind.east.map(|east| east.0)), one("north", wind.north.map(|north| north.0))]
+    [one("east", wind.east.clone().map(|east| east.0)), one("north", wind.north.clone().map(|north| north.0))]
 }
 
 pub(super) fn atmosphere(written: &config::Environment, faults: &mut Faults) -> Option<Exponential> {
@@ -66,7 +66,7 @@ pub(super) fn body_light(written: &config::Environment, parameters: &mut Paramet
         Some(parameters.register(key, unit, spread))
     };
     BodyLightShares {
-        albedo: read("albedo", "", written.albedo.map(|albedo| albedo.0), 1.0, "a share of light"),
-        infrared_w_per_m2: read("infrared", "W/m2", written.infrared.map(|flux| flux.0), 1e5, "an irradiance"),
+        albedo: read("albedo", "", written.albedo.clone().map(|albedo| albedo.0), 1.0, "a share of light"),
+        infrared_w_per_m2: read("infrared", "W/m2", written.infrared.clone().map(|flux| flux.0), 1e5, "an irradiance"),
     }
 }

@@ -7,12 +7,14 @@
 mod converge;
 mod fold;
 mod nominal;
+mod panel;
 mod simulate;
 mod strata;
 
 pub use converge::{Convergence, simulate};
 pub use fold::{FeatureValues, FoldedBasis, MassHistory, PlanFactor};
 pub use nominal::{PhaseMomentum, phase_momentum};
+pub use panel::{Panels, least_propellant};
 pub use simulate::{RawBasis, SourceFeature, SpanBasis};
 pub use strata::{Grid, Resolution, Span, Stratum, strata};
 

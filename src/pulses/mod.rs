@@ -4,9 +4,11 @@
 //! thruster, their propellant, what is left over. Knows nothing of orbits or of the mission.
 
 mod firing;
+mod lanes;
 mod pricer;
 mod unload;
 
 pub use firing::{Firing, fire};
+pub use lanes::{LanePerformance, LaneTariff, LaneWear};
 pub use pricer::{ForceChoice, Performance, Pricer, SmallestFiring, Wear};
 pub use unload::{ThrusterPulses, UnloadCommand, UnloadError, unload};

@@ -127,6 +127,42 @@ impl Pricer {
         Self { generators, capability, limits: propulsion.pulses.clone() }
     }
 
+    /// The layout about a centre of mass with some thrusters lost; their indices stay.
+    #[must_use]
+    pub fn with_loss(propulsion: &Propulsion, centre_of_mass_m: &Vector3<f64>, choice: NetForceChoice, lost: &[usize]) -> Self {
+        let mut generators = Self::generators(propulsion, centre_of_mass_m);
+        lost.iter().for_each(|index| {
+            if let Some(generator) = generators.get_mut(*index) {
+                generator.most = 0.0;
+            }
+        });
+        let net = match choice {
+            NetForceChoice::Zero => NetForce::Zero,
+            NetForceChoice::Any => NetForce::Any,
+        };
+        Self { capability: Capability::new(&generators, net), generators, limits: propulsion.pulses.clone() }
+    }
+
+    /// What to ask of the layout so that it gives `wanted` (N·m·s) where the centre of mass lies `shift` (m) off the one it
+    /// was made for; `None` if no such impulse is found.
+    ///
+    /// The choice of thrusters follows the centre that is known, as on board; the wheels tell what was missed, and the next
+    /// firings make up for it, so that what is given in the end is what was wanted. Arms fall short by `shift` × push.
+    #[must_use]
+    pub fn aimed(&self, wanted: &Vector3<f64>, shift: &Vector3<f64>) -> Option<Vector3<f64>> {
+        let mut asked = *wanted;
+        for _ in 0..60 {
+            let firings = self.capability.price.firings(&asked)?.filter(|(index, _)| *index < self.generators.len());
+            let push: Vector3<f64> = firings.map(|(index, impulse)| self.generators[index].force * impulse).sum();
+            let missed = wanted - (asked - shift.cross(&push));
+            if missed.norm() <= 1e-12 * wanted.norm() {
+                return Some(asked);
+            }
+            asked += missed;
+        }
+        None
+    }
+
     /// The thrusters as generators of torque about a centre of mass, nominal performance.
     #[must_use]
     pub fn generators(propulsion: &Propulsion, centre_of_mass_m: &Vector3<f64>) -> Vec<Generator> {

@@ -1,6 +1,9 @@
 //! Named uncertain parameters and one draw of all of them.
 
-use super::Spread;
+use std::borrow::Cow;
+
+use super::joint::another;
+use super::{Anew, Correlated, Spread};
 
 /// Place of a parameter in [`Parameters`] and in a [`Draw`].
 #[derive(Debug, Clone, Copy, PartialEq, Eq, PartialOrd, Ord, Hash)]
@@ -23,12 +26,15 @@ pub struct Parameter {
     pub unit: &'static str,
     /// Its distribution; never [`Spread::Fixed`].
     pub spread: Spread,
+    /// How often it is drawn.
+    pub anew: Anew,
 }
 
 /// All uncertain quantities, in the order of the configuration.
 #[derive(Debug, Clone, Default, PartialEq)]
 pub struct Parameters {
     list: Vec<Parameter>,
+    correlated: Vec<Correlated>,
 }
 
 impl Parameters {
@@ -38,8 +44,27 @@ impl Parameters {
             return Uncertain::fixed(spread.nominal());
         }
         let id = ParameterId(self.list.len());
-        self.list.push(Parameter { name: name.into(), unit, spread });
-        Uncertain { nominal: spread.nominal(), parameter: Some(id) }
+        let nominal = spread.nominal();
+        self.list.push(Parameter { name: name.into(), unit, spread, anew: Anew::Lifetime });
+        Uncertain { nominal, parameter: Some(id) }
+    }
+
+    /// Says how often the parameter at a place is drawn.
+    pub fn draw_anew(&mut self, place: usize, anew: Anew) {
+        if let Some(parameter) = self.list.get_mut(place) {
+            parameter.anew = anew;
+        }
+    }
+
+    /// Correlates parameters, none of which is correlated yet; those of one group are drawn equally often.
+    pub fn correlate(&mut self, group: Correlated) {
+        self.correlated.push(group);
+    }
+
+    /// The groups of correlated parameters.
+    #[must_use]
+    pub fn correlated(&self) -> &[Correlated] {
+        &self.correlated
     }
 
     /// The parameters in order.
@@ -63,21 +88,61 @@ impl Parameters {
     /// Every parameter at its nominal value.
     #[must_use]
     pub fn nominal(&self) -> Draw {
-        Draw { values: self.list.iter().map(|p| p.spread.nominal()).collect() }
+        Draw { values: self.list.iter().map(|p| p.spread.nominal()).collect(), uniforms: Vec::new() }
     }
 
-    /// The draw in which parameter k stands at its quantile `uniforms[k]`, each in (0, 1).
+    /// The draw that independent uniforms in (0, 1) give, one a parameter: its quantile there, after the correlation.
     ///
     /// Parameters without a uniform stay nominal.
     #[must_use]
     pub fn at_quantiles(&self, uniforms: &[f64]) -> Draw {
-        let values = self
-            .list
-            .iter()
-            .enumerate()
-            .map(|(k, p)| uniforms.get(k).map_or_else(|| p.spread.nominal(), |u| p.spread.quantile(*u)))
-            .collect();
-        Draw { values }
+        let mut joint = Cow::Borrowed(uniforms);
+        for group in &self.correlated {
+            group.apply(joint.to_mut());
+        }
+        let value = |(k, p): (usize, &Parameter)| joint.get(k).map_or_else(|| p.spread.nominal(), |u| p.spread.quantile(*u));
+        let values = self.list.iter().enumerate().map(value).collect();
+        // Kept only for those that are drawn again.
+        let again = self.list.iter().any(|p| p.anew != Anew::Lifetime);
+        Draw { values, uniforms: if again { uniforms.to_vec() } else { Vec::new() } }
+    }
+
+    /// Whether something is drawn anew as often as this.
+    #[must_use]
+    pub fn any(&self, anew: Anew) -> bool {
+        self.list.iter().any(|p| p.anew == anew)
+    }
+
+    /// The draw of a lifetime with what is drawn for each phase as it is in one of them; the nominal draw stays nominal.
+    #[must_use]
+    pub fn in_phase<'a>(&self, draw: &'a Draw, phase: usize) -> Cow<'a, Draw> {
+        self.again(draw, Anew::Phase, phase as u64)
+    }
+
+    /// The draw of a phase with what is drawn for each event as it is in one occurrence of one of them.
+    #[must_use]
+    pub fn in_event<'a>(&self, draw: &'a Draw, place: (usize, usize), occurrence: u64) -> Cow<'a, Draw> {
+        // Phases and events by the thousand stay apart, and occurrences by the billion.
+        let key = (place.0 as u64) << 48 | (place.1 as u64) << 36 | occurrence;
+        self.again(draw, Anew::Event, key)
+    }
+
+    fn again<'a>(&self, draw: &'a Draw, anew: Anew, key: u64) -> Cow<'a, Draw> {
+        if draw.uniforms.is_empty() || !self.any(anew) {
+            return Cow::Borrowed(draw);
+        }
+        let drawn = self.list.iter().zip(&draw.uniforms);
+        let mut uniforms: Vec<f64> = drawn.map(|(p, u)| if p.anew == anew { another(*u, key) } else { *u }).collect();
+        for group in &self.correlated {
+            group.apply(&mut uniforms);
+        }
+        let mut next = draw.clone();
+        for ((value, p), u) in next.values.iter_mut().zip(&self.list).zip(&uniforms) {
+            if p.anew == anew {
+                *value = p.spread.quantile(*u);
+            }
+        }
+        Cow::Owned(next)
     }
 }
 
@@ -118,6 +183,8 @@ impl Uncertain {
 #[derive(Debug, Clone, PartialEq)]
 pub struct Draw {
     values: Vec<f64>,
+    /// Independent uniforms behind them; empty where nothing is drawn again.
+    uniforms: Vec<f64>,
 }
 
 impl Draw {

@@ -1,9 +1,13 @@
 //! The distributions that a configuration may give a number.
 
+use std::sync::Arc;
+
 use statrs::distribution::{ContinuousCDF, Normal};
 
+use super::Table;
+
 /// A number as the user knows it: fixed, or with a distribution. All parameters in SI.
-#[derive(Debug, Clone, Copy, PartialEq)]
+#[derive(Debug, Clone, PartialEq)]
 pub enum Spread {
     /// Known exactly.
     Fixed(f64),
@@ -48,6 +52,8 @@ pub enum Spread {
         /// Upper limit.
         high: f64,
     },
+    /// Some values with their probabilities, or a sample.
+    Table(Arc<Table>),
 }
 
 /// Parameters that make no distribution.
@@ -135,6 +141,34 @@ impl Spread {
         )
     }
 
+    /// Values with their probabilities, which must add up to one.
+    ///
+    /// # Errors
+    /// No values, a probability that is not above zero, or a sum other than one.
+    pub fn discrete(pairs: &[(f64, f64)]) -> Result<Self, SpreadError> {
+        let sum: f64 = pairs.iter().map(|(_, probability)| probability).sum();
+        let help = "give each value a `probability`, together 100 %";
+        // Users round probabilities to some digits: thirds must pass.
+        if (sum - 1.0).abs() > 1e-3 {
+            return refuse(format!("expected probabilities that add up to 100 %, got {:.4} %", sum * 100.0), help);
+        }
+        match Table::weighted(pairs) {
+            Some(table) => Ok(Self::Table(Arc::new(table))),
+            None => refuse("expected probabilities above zero".to_owned(), help),
+        }
+    }
+
+    /// The values of a sample, each as probable as the others.
+    ///
+    /// # Errors
+    /// No values.
+    pub fn empirical(values: &[f64]) -> Result<Self, SpreadError> {
+        match Table::sample(values) {
+            Some(table) => Ok(Self::Table(Arc::new(table))),
+            None => refuse("expected a sample of at least one number".to_owned(), "give numbers"),
+        }
+    }
+
     /// Probabilities of the normal at the limits of a truncated one.
     fn cut(&self) -> (f64, f64) {
         match *self {
@@ -146,7 +180,8 @@ impl Spread {
     }
 
     /// Value of the nominal case: the mean of a normal, the middle of a uniform, the median of a
-    /// lognormal, the mode of a triangular, the mean within the limits of a truncated normal.
+    /// lognormal, the mode of a triangular, the mean within the limits of a truncated normal, the most probable of some
+    /// values, the median of a sample.
     #[must_use]
     pub fn nominal(&self) -> f64 {
         match *self {
@@ -156,13 +191,19 @@ impl Spread {
             Self::Lognormal { median, .. } => median,
             Self::Triangular { mode, .. } => mode,
             Self::TruncatedNormal { mean, low, high, .. } => mean.clamp(low, high),
+            Self::Table(ref table) => table.nominal(),
         }
     }
 
     /// Whether it is known exactly.
     #[must_use]
     pub fn is_fixed(&self) -> bool {
-        matches!(self, Self::Fixed(_))
+        match self {
+            Self::Fixed(_) => true,
+            // One value alone, however often it stands there.
+            Self::Table(table) => table.support().0.total_cmp(&table.support().1).is_eq(),
+            _ => false,
+        }
     }
 
     /// Value below which a draw falls with probability `u`, in (0, 1).
@@ -184,6 +225,7 @@ impl Spread {
                 let (below, above) = self.cut();
                 (mean + sigma * standard().inverse_cdf(below + (above - below) * u)).clamp(low, high)
             }
+            Self::Table(ref table) => table.quantile(u),
         }
     }
 
@@ -194,6 +236,7 @@ impl Spread {
             Self::Fixed(value) => (value, value),
             Self::Normal { .. } | Self::Lognormal { .. } => (self.quantile(TAIL), self.quantile(1.0 - TAIL)),
             Self::Uniform { low, high } | Self::Triangular { low, high, .. } | Self::TruncatedNormal { low, high, .. } => (low, high),
+            Self::Table(ref table) => table.support(),
         }
     }
 
@@ -210,6 +253,7 @@ impl Spread {
             Self::TruncatedNormal { mean, sigma, low, high } => {
                 Self::TruncatedNormal { mean: by(mean), sigma: by(sigma), low: by(low), high: by(high) }
             }
+            Self::Table(ref table) => Self::Table(Arc::new(table.scaled(factor))),
         }
     }
 }

@@ -46,14 +46,14 @@ pub(super) fn read(spec: &Spec, parameters: &mut Parameters, faults: &mut Faults
 fn engine(written: &config::Engine, index: usize, parameters: &mut Parameters, faults: &mut Faults) -> Option<Engine> {
     let at = format!("engines[{index}]");
     let name = format!("engines[{}]", written.name);
-    let thrust = faults.positive_spread(&format!("{at}.thrust"), written.thrust.0, "a thrust");
+    let thrust = faults.positive_spread(&format!("{at}.thrust"), written.thrust.0.clone(), "a thrust");
     let speed = exhaust_speed(&at, &name, (written.isp.as_ref(), written.exhaust_speed.as_ref()), parameters, faults);
     if written.isp.is_none() && written.exhaust_speed.is_none() {
         faults.push(&at, "expected `isp` or `exhaust_speed`", "add `isp: 225 s`");
     }
     let push = faults.direction(&format!("{at}.push"), written.push.0);
-    let off = written.misalignment.map_or(Spread::Fixed(0.0), |angle| angle.0);
-    let misalignment_rad = ["a", "b"].map(|axis| parameters.register(format!("{name}.misalignment.{axis}"), kind::Angle::UNIT, off));
+    let off = written.misalignment.clone().map_or(Spread::Fixed(0.0), |angle| angle.0);
+    let misalignment_rad = ["a", "b"].map(|axis| parameters.register(format!("{name}.misalignment.{axis}"), kind::Angle::UNIT, off.clone()));
     Some(Engine {
         name: written.name.clone(),
         thrust_n: parameters.register(format!("{name}.thrust"), kind::Force::UNIT, thrust?),

@@ -46,13 +46,13 @@ pub fn symmetric(elements: [f64; 6]) -> Matrix3<f64> {
 
 impl MassProperties {
     pub(super) fn new(written: &config::Spacecraft, parameters: &mut Parameters, faults: &mut Faults) -> Option<Self> {
-        let mass = faults.positive_spread("spacecraft.dry_mass", written.dry_mass.0, "a mass");
-        for (axis, spread) in ["xx", "yy", "zz"].into_iter().zip(written.inertia.0) {
+        let mass = faults.positive_spread("spacecraft.dry_mass", written.dry_mass.0.clone(), "a mass");
+        for (axis, spread) in ["xx", "yy", "zz"].into_iter().zip(written.inertia.0.clone()) {
             faults.positive_spread("spacecraft.inertia", spread, &format!("a moment of inertia {axis}"))?;
         }
-        let diagonal = register_triple("spacecraft.inertia", "kg m2", written.inertia.0, parameters);
+        let diagonal = register_triple("spacecraft.inertia", "kg m2", written.inertia.0.clone(), parameters);
         let products = match &written.products_of_inertia {
-            Some(xyz) => register_triple("spacecraft.products_of_inertia", "kg m2", xyz.0, parameters),
+            Some(xyz) => register_triple("spacecraft.products_of_inertia", "kg m2", xyz.0.clone(), parameters),
             None => [Uncertain::fixed(0.0); 3],
         };
         let [xx, yy, zz] = diagonal;
@@ -61,7 +61,7 @@ impl MassProperties {
         check_inertia(&symmetric(inertia_kg_m2.map(|element| element.nominal())), faults)?;
         Some(Self {
             mass_kg: parameters.register("spacecraft.dry_mass", "kg", mass?),
-            centre_of_mass_m: register_triple("spacecraft.centre_of_mass", "m", written.centre_of_mass.0, parameters),
+            centre_of_mass_m: register_triple("spacecraft.centre_of_mass", "m", written.centre_of_mass.0.clone(), parameters),
             centre_of_mass_box_m: written.centre_of_mass_box.map(|half| Vector3::from(half.0.map(f64::abs))),
             inertia_kg_m2,
         })

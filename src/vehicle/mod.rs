@@ -4,6 +4,7 @@
 //! the registry of its uncertain parameters. Knows nothing of orbits or disturbances.
 
 mod engine;
+mod failure;
 mod faults;
 mod feed;
 mod mass;
@@ -12,6 +13,7 @@ mod surface;
 mod tank;
 mod wheels;
 
+pub use failure::Failure;
 pub use engine::Engine;
 pub use faults::Faults;
 pub use feed::{Feed, PressureLaw};
@@ -60,11 +62,11 @@ impl Vehicle {
         let before = faults.count();
         let dry = MassProperties::new(&spec.spacecraft, parameters, faults);
         let residual_dipole_a_m2 = match &spec.spacecraft.residual_dipole {
-            Some(written) => register_triple("spacecraft.residual_dipole", "A m2", written.0, parameters),
+            Some(written) => register_triple("spacecraft.residual_dipole", "A m2", written.0.clone(), parameters),
             None => [Uncertain::fixed(0.0); 3],
         };
         let body_torque_n_m = match &spec.spacecraft.body_torque {
-            Some(written) => register_triple("spacecraft.body_torque", "N m", written.0, parameters),
+            Some(written) => register_triple("spacecraft.body_torque", "N m", written.0.clone(), parameters),
             None => [Uncertain::fixed(0.0); 3],
         };
         let (materials, surfaces) = surface::read(spec, parameters, faults);

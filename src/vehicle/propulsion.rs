@@ -2,7 +2,7 @@
 
 use nalgebra::{Unit, UnitVector3, Vector3};
 
-use super::{Faults, PressureLaw, STANDARD_GRAVITY};
+use super::{Failure, Faults, PressureLaw, STANDARD_GRAVITY};
 use crate::config::{self, NetForceChoice, SmallUnload, Spec, SpreadQuantity};
 use crate::uncertain::{Draw, Parameters, Spread, Uncertain};
 use crate::units::{Kind, kind};
@@ -130,6 +130,8 @@ pub struct Propulsion {
     pub qualified_throughput_kg: Option<f64>,
     /// How thrust and exhaust speed follow the feed pressure.
     pub pressure_law: PressureLaw,
+    /// Thrusters that may be lost.
+    pub failures: Vec<Failure>,
 }
 
 impl Propulsion {
@@ -142,7 +144,7 @@ impl Propulsion {
         let shared_written = &spec.propulsion;
         let shared_thrust = match &shared_written.thrust {
             Some(thrust) => faults
-                .positive_spread("propulsion.thrust", thrust.0, "a thrust")
+                .positive_spread("propulsion.thrust", thrust.0.clone(), "a thrust")
                 .map(|spread| parameters.register("propulsion.thrust", kind::Force::UNIT, spread)),
             None => None,
         };
@@ -178,6 +180,7 @@ impl Propulsion {
             qualified_pulses,
             qualified_throughput_kg: spec.propulsion.qualified_throughput.map(|mass| mass.0),
             pressure_law: pressure_law(spec, faults)?,
+            failures: super::failure::read(spec, parameters, faults)?,
         })
     }
 }
@@ -265,8 +268,8 @@ pub(super) fn exhaust_speed(
     faults: &mut Faults,
 ) -> Option<ExhaustSpeed> {
     let (key, spread, factor, unit): (&str, Spread, f64, &'static str) = match written {
-        (Some(isp), None) => ("isp", isp.0, STANDARD_GRAVITY, kind::Time::UNIT),
-        (None, Some(speed)) => ("exhaust_speed", speed.0, 1.0, kind::Speed::UNIT),
+        (Some(isp), None) => ("isp", isp.0.clone(), STANDARD_GRAVITY, kind::Time::UNIT),
+        (None, Some(speed)) => ("exhaust_speed", speed.0.clone(), 1.0, kind::Speed::UNIT),
         (None, None) => return None,
         (Some(_), Some(_)) => {
             let other = format!("{at}.isp");
@@ -292,7 +295,7 @@ fn thruster(
     let push = push_direction(&at, written, faults);
     let thrust_n = match &written.thrust {
         Some(thrust) => faults
-            .positive_spread(&format!("{at}.thrust"), thrust.0, "a thrust")
+            .positive_spread(&format!("{at}.thrust"), thrust.0.clone(), "a thrust")
             .map(|spread| parameters.register(format!("{name}.thrust"), kind::Force::UNIT, spread)),
         None => shared_thrust,
     };

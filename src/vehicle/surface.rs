@@ -78,9 +78,9 @@ pub(super) fn read(spec: &Spec, parameters: &mut Parameters, faults: &mut Faults
 fn material(spec: &Spec, index: usize, parameters: &mut Parameters, faults: &mut Faults) -> Option<Material> {
     let written = spec.materials.get(index)?;
     let at = format!("materials[{index}]");
-    let specular = faults.spread(&format!("{at}.specular"), written.specular.0, 0.0, 1.0, "a share of light");
-    let diffuse = faults.spread(&format!("{at}.diffuse"), written.diffuse.0, 0.0, 1.0, "a share of light");
-    let drag = match written.drag_coefficient {
+    let specular = faults.spread(&format!("{at}.specular"), written.specular.0.clone(), 0.0, 1.0, "a share of light");
+    let diffuse = faults.spread(&format!("{at}.diffuse"), written.diffuse.0.clone(), 0.0, 1.0, "a share of light");
+    let drag = match written.drag_coefficient.clone() {
         Some(drag) => Some(faults.positive_spread(&format!("{at}.drag_coefficient"), drag.0, "a drag coefficient")?),
         None => None,
     };

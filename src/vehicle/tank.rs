@@ -37,16 +37,16 @@ impl Tank {
         let written = &spec.tank;
         let tanks = tanks(written, faults);
         let loaded_kg = tanks.as_ref().map(|tanks| tanks.iter().map(|tank| tank.loaded_kg).sum());
-        let residual = written.residual.map_or(Spread::Fixed(usual_residual(spec)), |share| share.0);
+        let residual = written.residual.clone().map_or(Spread::Fixed(usual_residual(spec)), |share| share.0);
         let residual = faults.spread("tank.residual", residual, 0.0, 1.0, "a share of the load");
-        let leakage = written.leakage.map_or(Spread::Fixed(0.0), |rate| rate.0);
+        let leakage = written.leakage.clone().map_or(Spread::Fixed(0.0), |rate| rate.0);
         let leakage = faults.spread("tank.leakage", leakage, 0.0, f64::INFINITY, "a loss");
         let feed = match (&written.blowdown, loaded_kg) {
             (None, _) => Some(Feed::Regulated),
             (Some(blowdown), Some(loaded_kg)) => self::feed(blowdown, loaded_kg, faults),
             (Some(_), None) => None,
         };
-        let error = written.loading_error.map_or(Spread::Fixed(0.0), |error| error.0);
+        let error = written.loading_error.clone().map_or(Spread::Fixed(0.0), |error| error.0);
         let loading_error_kg = parameters.register("tank.loading_error", "kg", error);
         Some(Self {
             loaded_kg: loaded_kg?,
