@@ -9,7 +9,7 @@ use couplet::config::{Document, read};
 use couplet::lifetime::Plan;
 use couplet::mission::{Margin, Scenario};
 use couplet::momentum::Resolution;
-use couplet::montecarlo::run;
+use couplet::montecarlo::{Design, Watch, sample};
 
 const LIFETIMES: u64 = 10_000;
 
@@ -48,7 +48,9 @@ fn main() {
         let plan = Plan::new(scenario, Resolution::Default, Margin::NONE).expect("can be flown");
         let basis_s = start.elapsed().as_secs_f64();
         let start = Instant::now();
-        run(&plan, 1, LIFETIMES, &|_| {}).expect("a temporary file");
+        let design = Design { lifetimes: LIFETIMES, ..Design::of(&plan.scenario().settings) };
+        let stop = std::sync::atomic::AtomicBool::new(false);
+        sample(&plan, design, &Watch { progress: &|_, _, _| {}, stop: &stop }).expect("a temporary file");
         let flown_s = start.elapsed().as_secs_f64();
         let per_lifetime_us = flown_s * 1e6 / LIFETIMES as f64;
         writeln!(out, "{name:32} basis {basis_s:6.2} s, {:4} strata, {per_lifetime_us:8.1} µs a lifetime", plan.strata().len())

@@ -10,7 +10,9 @@ use couplet::config::{Document, read};
 use couplet::lifetime::Plan;
 use couplet::mission::{Margin, Scenario};
 use couplet::momentum::Resolution;
-use couplet::montecarlo::{Figure, Wanted, draws, run};
+use std::sync::atomic::AtomicBool;
+
+use couplet::montecarlo::{Design, Figure, Watch, draws, sample};
 
 const LIFETIMES: u64 = 10_000;
 const ONE_BY_ONE: usize = 512;
@@ -29,15 +31,18 @@ fn main() {
     writeln!(out, "basis              {basis_s:8.3} s   ({strata} strata, {features} features, {rows} rows)").expect("standard output");
 
     let start = Instant::now();
-    let mut store = run(&plan, 1, LIFETIMES, &|_| {}).expect("a temporary file");
+    let design = Design { lifetimes: LIFETIMES, ..Design::of(&plan.scenario().settings) };
+    let stop = AtomicBool::new(false);
+    let watch = Watch { progress: &|_, _, _| {}, stop: &stop };
+    let mut flown = sample(&plan, design, &watch).expect("a temporary file");
     let flown_s = start.elapsed().as_secs_f64();
     let per_second = LIFETIMES as f64 / flown_s;
     let threads = rayon::current_num_threads();
     writeln!(out, "{LIFETIMES} lifetimes   {flown_s:8.3} s   ({per_second:.0} lifetimes/s on {threads} threads)").expect("standard output");
-    let p95 = store.select(&[Wanted { column: Figure::AttitudeTotal.column(), rank: 9500 }]).expect("the temporary file");
+    let p95 = flown.store.select(Figure::AttitudeTotal.column(), &[9500]).expect("the temporary file");
     writeln!(out, "P95 of the total   {:8.3} kg", p95.first().copied().unwrap_or(f64::NAN)).expect("standard output");
 
-    let some = draws(&plan, 1, 0, ONE_BY_ONE);
+    let some = draws(&plan, &design, 0, ONE_BY_ONE);
     let start = Instant::now();
     let single: f64 = some.iter().map(|draw| plan.fly(draw).attitude_total_kg()).sum();
     let single_s = start.elapsed().as_secs_f64();

@@ -58,7 +58,8 @@ fn fastest(mut work: impl FnMut() -> f64) -> (f64, f64) {
 fn peak() -> f64 {
     let size = 512;
     let threads = rayon::current_num_threads();
-    let mut all: Vec<_> = (0..threads).map(|_| (DMatrix::<f64>::from_element(size, size, 0.5), DMatrix::<f64>::zeros(size, size))).collect();
+    let mut all: Vec<_> =
+        (0..threads).map(|_| (DMatrix::<f64>::from_element(size, size, 0.5), DMatrix::<f64>::zeros(size, size))).collect();
     let (seconds, _) = fastest(|| {
         all.par_iter_mut().for_each(|(a, out)| (0..8).for_each(|_| out.gemm(1.0, a, a, 0.0)));
         0.0
@@ -86,12 +87,25 @@ fn main() {
     let (seconds, _) = fastest(|| fly(&all));
     let per_second = LIFETIMES as f64 / seconds;
     let operations = UNLOADS as f64 * (2.0 * 3.0 * FEATURES as f64 + lambdas.len() as f64 * 6.0 + 1.0);
-    writeln!(out, "{UNLOADS} unloads, {FEATURES} features, {} thrusters, {} vertices of the price; {} threads, {}", pricer.layout().len(), lambdas.len(), rayon::current_num_threads(), match Arch::new() {
-        Arch::Scalar => "no wide vectors",
-        Arch::V3(_) => "AVX2",
-        _ => "AVX-512",
-    }).expect("standard output");
-    writeln!(out, "fused              {per_second:10.0} lifetimes/s   {operations:.0} floating-point operations each, {:.1} Gflop/s", operations * per_second / 1e9).expect("standard output");
+    writeln!(
+        out,
+        "{UNLOADS} unloads, {FEATURES} features, {} thrusters, {} vertices of the price; {} threads, {}",
+        pricer.layout().len(),
+        lambdas.len(),
+        rayon::current_num_threads(),
+        match Arch::new() {
+            Arch::Scalar => "no wide vectors",
+            Arch::V3(_) => "AVX2",
+            _ => "AVX-512",
+        }
+    )
+    .expect("standard output");
+    writeln!(
+        out,
+        "fused              {per_second:10.0} lifetimes/s   {operations:.0} floating-point operations each, {:.1} Gflop/s",
+        operations * per_second / 1e9
+    )
+    .expect("standard output");
 
     let some = blocks(&draws[..PLAIN * FEATURES]);
     let own_sum = fly(&some);
@@ -103,7 +117,9 @@ fn main() {
     write("prices", bytes(lambdas.iter().flatten().copied()));
     write("draws", bytes(draws[..PLAIN * FEATURES].iter().copied()));
     let layout = pricer.layout();
-    let wrench = (0..3).flat_map(|axis| layout.iter().map(move |g| g.torque[axis])).chain((0..3).flat_map(|axis| layout.iter().map(move |g| g.force[axis])));
+    let wrench = (0..3)
+        .flat_map(|axis| layout.iter().map(move |g| g.torque[axis]))
+        .chain((0..3).flat_map(|axis| layout.iter().map(move |g| g.force[axis])));
     write("wrench", bytes(wrench));
     write("cost", bytes(layout.iter().map(|g| g.cost)));
     let python = std::env::var("COUPLET_PYTHON").unwrap_or_else(|_| "python3".to_owned());
@@ -112,17 +128,34 @@ fn main() {
     let text = String::from_utf8_lossy(&answer.stdout);
     let value = |name: &str| text.lines().find_map(|line| line.strip_prefix(name)?.strip_prefix(' ')?.parse::<f64>().ok());
     best_peak = best_peak.max(value("peak").unwrap_or(0.0));
-    writeln!(out, "peak of a matrix product {:.1} Gflop/s: the fused kernel reaches {:.0} % of it", best_peak / 1e9, operations * per_second / best_peak * 100.0).expect("standard output");
+    writeln!(
+        out,
+        "peak of a matrix product {:.1} Gflop/s: the fused kernel reaches {:.0} % of it",
+        best_peak / 1e9,
+        operations * per_second / best_peak * 100.0
+    )
+    .expect("standard output");
     let mut line = |name: &str, words: &str, reference: f64| {
         if let (Some(rate), Some(sum)) = (value(name), value(&format!("{name}_sum"))) {
-            writeln!(out, "{words}   {rate:10.3} lifetimes/s   fused is {:.0} times as fast; sums differ by {:.1e} of themselves", per_second / rate, (sum - reference).abs() / reference).expect("standard output");
+            writeln!(
+                out,
+                "{words}   {rate:10.3} lifetimes/s   fused is {:.0} times as fast; sums differ by {:.1e} of themselves",
+                per_second / rate,
+                (sum - reference).abs() / reference
+            )
+            .expect("standard output");
         }
     };
     line("straightforward", "NumPy, straightforward      ", own_sum);
     line("rearranged", "NumPy, lifetimes along rows ", own_sum);
-    let solved: f64 = (0..2).map(|k| least_propellant(Arch::new(), &rows[..SOLVED * FEATURES], &blocks(&draws[k * FEATURES..(k + 1) * FEATURES])[0], &lambdas)[0]).sum();
+    let solved: f64 = (0..2)
+        .map(|k| {
+            least_propellant(Arch::new(), &rows[..SOLVED * FEATURES], &blocks(&draws[k * FEATURES..(k + 1) * FEATURES])[0], &lambdas)[0]
+        })
+        .sum();
     line("program", "linear program each unload  ", solved);
     if value("straightforward").is_none() {
-        writeln!(out, "the scripts did not run: set COUPLET_PYTHON as benches/plain.py says\n{}", String::from_utf8_lossy(&answer.stderr)).expect("standard output");
+        writeln!(out, "the scripts did not run: set COUPLET_PYTHON as benches/plain.py says\n{}", String::from_utf8_lossy(&answer.stderr))
+            .expect("standard output");
     }
 }

@@ -11,7 +11,7 @@ use couplet::layout::intact;
 use couplet::lifetime::Plan;
 use couplet::mission::{Margin, Scenario};
 use couplet::momentum::Resolution;
-use couplet::montecarlo::draws;
+use couplet::montecarlo::{Design, draws};
 use couplet::propellant::{burn_propellant, slew_momentum};
 use couplet::pulses::{ForceChoice, Performance, Pricer, Wear, fire, unload};
 use couplet::vehicle::MassState;
@@ -250,7 +250,7 @@ fn default_resolution_agrees_with_full() {
 #[test]
 fn blocks_give_what_single_flights_give() {
     let plan = plan(heron(&[]));
-    let draws = draws(&plan, 7, 1000, 20);
+    let draws = draws(&plan, &Design { seed: 7, ..Design::of(&plan.scenario().settings) }, 1000, 20);
     for (draw, outcome) in draws.iter().zip(plan.fly_block(&draws)) {
         let single = plan.fly(draw);
         for (a, b) in single.rows_kg.iter().zip(outcome.rows_kg) {
@@ -264,7 +264,7 @@ fn blocks_give_what_single_flights_give() {
 fn nothing_is_lost_between_timeline_and_ledger() {
     use couplet::propellant::Row;
     let plan = plan(heron(&[]));
-    for draw in draws(&plan, 3, 0, 10) {
+    for draw in draws(&plan, &Design { seed: 3, ..Design::of(&plan.scenario().settings) }, 0, 10) {
         let outcome = plan.fly(&draw);
         close(
             *outcome.used_kg.last().unwrap(),

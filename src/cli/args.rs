@@ -17,6 +17,8 @@ pub(super) struct Cli {
 pub(super) enum Command {
     /// The whole budget: layout, momentum, unloads, propellant with confidence, drivers, requirements.
     Budget(BudgetArgs),
+    /// Put the parts of a budget together that `budget --part` computed.
+    Join(JoinArgs),
     /// Torque of the thruster layout on every axis and in every direction, in every failure case.
     Layout(Common),
     /// Disturbance torques by source, secular and cyclic momentum, wheels, unload interval.
@@ -92,6 +94,32 @@ pub(super) struct BudgetArgs {
     /// Only how one row of the ledger comes about in the nominal mission, such as `wheel_unloading`.
     #[arg(long, value_name = "ROW")]
     pub(super) explain: Option<String>,
+
+    /// Draw on until the interval of P95 is this narrow, such as "1 %"; --lifetimes then is the most. Default: budget.precision.
+    #[arg(long, value_name = "WIDTH")]
+    pub(super) precision: Option<String>,
+
+    /// Compute only this share of the lifetimes and write it to --out, for `couplet join`; such as 3/8.
+    #[arg(long, value_name = "K/N")]
+    pub(super) part: Option<String>,
+
+    /// Write one row a lifetime (draws, ledger, total) to this .parquet or .csv file.
+    #[arg(long, value_name = "FILE")]
+    pub(super) lifetimes_out: Option<PathBuf>,
+}
+
+#[derive(Debug, Args)]
+pub(super) struct JoinArgs {
+    #[command(flatten)]
+    pub(super) common: Common,
+
+    /// All parts of the run, in any order.
+    #[arg(required = true, value_name = "PART")]
+    pub(super) parts: Vec<PathBuf>,
+
+    /// Write one row a lifetime (draws, ledger, total) to this .parquet or .csv file.
+    #[arg(long, value_name = "FILE")]
+    pub(super) lifetimes_out: Option<PathBuf>,
 }
 
 #[derive(Debug, Args)]

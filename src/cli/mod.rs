@@ -5,6 +5,7 @@
 mod args;
 mod budget;
 mod check;
+mod interrupt;
 mod layout;
 mod momentum;
 mod output;
@@ -22,7 +23,7 @@ use output::Failure;
 type Outcome = Result<bool, Failure>;
 
 /// Runs the command line of this process; the status is 0 done, 1 a requirement is not met, 2 the input
-/// or the call is wrong, 3 a fault of the program or the machine.
+/// or the call is wrong, 3 a fault of the program or the machine, 130 stopped by the user.
 #[must_use]
 pub fn main() -> ExitCode {
     let cli = match Cli::try_parse() {
@@ -40,6 +41,7 @@ pub fn main() -> ExitCode {
     };
     let outcome = match &cli.command {
         Command::Budget(run) => budget::run(run),
+        Command::Join(run) => budget::run_join(run),
         Command::Layout(run) => layout::run(run),
         Command::Momentum(run) => momentum::run(run),
         Command::Unload(run) => unload::run(run),

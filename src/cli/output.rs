@@ -17,12 +17,14 @@ pub(super) enum Failure {
     Input(String),
     /// The program or the machine is at fault.
     Machine(String),
+    /// The user stopped it; what was complete by then has been reported.
+    Stopped(String),
 }
 
 impl Failure {
     pub(super) fn message(&self) -> &str {
         match self {
-            Self::Input(message) | Self::Machine(message) => message,
+            Self::Input(message) | Self::Machine(message) | Self::Stopped(message) => message,
         }
     }
 
@@ -30,6 +32,7 @@ impl Failure {
         match self {
             Self::Input(_) => 2,
             Self::Machine(_) => 3,
+            Self::Stopped(_) => super::interrupt::STATUS,
         }
     }
 }
@@ -44,8 +47,9 @@ pub(super) enum Target {
         path: PathBuf,
     },
     File {
-        draft: NamedTempFile,
         path: PathBuf,
+        /// Those of the file that is there.
+        permissions: Option<Permissions>,
     },
 }
 
@@ -91,34 +95,64 @@ impl Target {
         Ok(Self::Stream { file, path: path.to_path_buf() })
     }
 
+    /// Makes sure that a file can be made, and leaves nothing behind until there is something to write.
     fn draft(path: PathBuf, permissions: Option<Permissions>) -> Result<Self, Failure> {
-        let refused = |error| unwritable(&path, format!("no file can be made in its folder: {error}"), NAME_ANOTHER);
-        let mut builder = tempfile::Builder::new();
-        #[cfg(unix)]
-        {
-            use std::os::unix::fs::PermissionsExt;
-            // The default is private; a result is an ordinary file (the umask still applies).
-            builder.permissions(Permissions::from_mode(0o666));
-        }
-        let draft = builder.prefix(".couplet-").tempfile_in(folder(&path)).map_err(refused)?;
-        if let Some(permissions) = permissions {
-            draft.as_file().set_permissions(permissions).map_err(refused)?;
-        }
-        Ok(Self::File { draft, path })
+        drafted(&path, permissions.as_ref())?;
+        Ok(Self::File { path, permissions })
     }
 
     /// Writes the whole result.
     pub(super) fn finish(self, text: &str) -> Result<(), Failure> {
+        self.finish_with(|out| out.write_all(text.as_bytes()))
+    }
+
+    /// Writes what `write` gives; a file appears whole or not at all.
+    pub(super) fn finish_with(self, write: impl FnOnce(&mut Out<'_>) -> std::io::Result<()>) -> Result<(), Failure> {
+        let through = |to: &mut (dyn Write + Send)| {
+            let mut out = Out(std::io::BufWriter::with_capacity(1 << 16, to));
+            write(&mut out).and_then(|()| out.flush())
+        };
         match self {
-            Self::Standard => written(write_to(&mut std::io::stdout().lock(), text), "the result"),
-            Self::Stream { mut file, path } => written(write_to(&mut file, text), path.display()),
-            Self::File { mut draft, path } => {
-                let synced = write_to(&mut draft, text).and_then(|()| draft.as_file().sync_all());
+            Self::Standard => written(through(&mut std::io::stdout()), "the result"),
+            Self::Stream { mut file, path } => written(through(&mut file), path.display()),
+            Self::File { path, permissions } => {
+                let mut draft = drafted(&path, permissions.as_ref())?;
+                let synced = through(draft.as_file_mut()).and_then(|()| draft.as_file().sync_all());
                 let kept = synced.and_then(|()| draft.persist(&path).map_err(|error| error.error));
                 kept.map(drop).map_err(|error| Failure::Machine(format!("error: cannot write {}: {error}", path.display())))
             }
         }
     }
+}
+
+/// What a result is written to.
+pub(super) struct Out<'a>(std::io::BufWriter<&'a mut (dyn Write + Send)>);
+
+impl Write for Out<'_> {
+    fn write(&mut self, bytes: &[u8]) -> std::io::Result<usize> {
+        self.0.write(bytes)
+    }
+
+    fn flush(&mut self) -> std::io::Result<()> {
+        self.0.flush()
+    }
+}
+
+/// A file beside the final place, which the system or this program removes unless it is renamed.
+fn drafted(path: &Path, permissions: Option<&Permissions>) -> Result<NamedTempFile, Failure> {
+    let refused = |error| unwritable(path, format!("no file can be made in its folder: {error}"), NAME_ANOTHER);
+    let mut builder = tempfile::Builder::new();
+    #[cfg(unix)]
+    {
+        use std::os::unix::fs::PermissionsExt;
+        // The default is private; a result is an ordinary file (the umask still applies).
+        builder.permissions(Permissions::from_mode(0o666));
+    }
+    let draft = builder.prefix(".couplet-").tempfile_in(folder(path)).map_err(refused)?;
+    if let Some(permissions) = permissions {
+        draft.as_file().set_permissions(permissions.clone()).map_err(refused)?;
+    }
+    Ok(draft)
 }
 
 const NAME_ANOTHER: &str = "name a file in a folder that you may write to";
@@ -165,10 +199,6 @@ fn check_folder(path: &Path) -> Result<(), Failure> {
         return Err(unwritable(path, "it names a folder", NAME_ANOTHER));
     }
     Ok(())
-}
-
-fn write_to(to: &mut impl Write, text: &str) -> std::io::Result<()> {
-    to.write_all(text.as_bytes()).and_then(|()| to.flush())
 }
 
 /// What came of writing to a stream.

@@ -79,8 +79,11 @@ fn empirical(parts: &Mapping, words: KindWords) -> Result<Spread, QuantityError>
         return Err(fault("expected `file` with `column`, or a list of `values`, in `empirical`".to_owned()));
     };
     let unit = parts.get("unit").and_then(Value::as_str).unwrap_or_default();
-    let size = expect_unit(unit, words.dimension, words.name, words.example)
-        .map_err(|error| QuantityError { range: 0..0, message: format!("{} in `unit`", error.message), help: error.help })?;
+    let size = expect_unit(unit, words.dimension, words.name, words.example).map_err(|error| QuantityError {
+        range: 0..0,
+        message: format!("{} in `unit`", error.message),
+        help: error.help,
+    })?;
     let number = |value: &Value| match value.as_f64() {
         Some(number) if (number * size).is_finite() => Ok(number * size),
         _ => Err(fault("expected plain numbers in `values`, their unit in `unit`".to_owned())),

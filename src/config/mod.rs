@@ -55,5 +55,5 @@ pub use spacecraft::{
     SmallUnload, Spacecraft, Surface, Tank, Thruster, Wheel, Wheels,
 };
 pub use spec::{Spec, read, schema};
-pub use uncertainty::{Correlation, DriverGroup, DrawnAnew, Each, Uncertainty};
+pub use uncertainty::{Correlation, DrawnAnew, DriverGroup, Each, Uncertainty};
 pub use walk::{Leaf, check_structure};

@@ -119,8 +119,7 @@ impl<'a> Block<'a> {
         let windows = self.plan.strata()[stratum].span.windows.len();
         // Lanes with all thrusters go together, the others one by one.
         let tariff = self.plan.layouts[0].tariff(stratum);
-        let together: Vec<bool> =
-            self.flights.iter().map(|flight| tariff.is_some() && flight.lost == 0).collect();
+        let together: Vec<bool> = self.flights.iter().map(|flight| tariff.is_some() && flight.lost == 0).collect();
         for lane in 0..self.flights.len() {
             let Some(rate) = &rates[lane] else { continue };
             self.flights[lane].count(rate);
@@ -140,7 +139,6 @@ impl<'a> Block<'a> {
         self.give(stratum, tariff, &repeat, &count);
         for (lane, flight) in self.flights.iter_mut().enumerate().filter(|(lane, _)| together[*lane]) {
             flight.take(Row::WheelUnloading, self.wear.kg[lane]);
-            flight.books.outcome.unserved += self.wear.unserved[lane];
             self.wear.add_to(lane, &mut flight.books.outcome.wear);
         }
     }
@@ -166,12 +164,20 @@ impl<'a> Block<'a> {
                     }
                 }
             }
-            tariff.fire(&cheapest, shift.as_ref(), count, &self.performance, &mut self.wear);
+            self.fire(stratum, tariff, &cheapest, shift.as_ref(), count);
             return;
         }
         let each = count.map(|count| count / windows as f64);
         for impulse in &impulses {
-            tariff.fire(impulse, shift.as_ref(), &each, &self.performance, &mut self.wear);
+            self.fire(stratum, tariff, impulse, shift.as_ref(), &each);
+        }
+    }
+
+    /// Fires in all lanes, and with more care where lanes leave it.
+    fn fire(&mut self, stratum: usize, tariff: &LaneTariff, impulse: &[Lane; 3], shift: Option<&[Lane; 3]>, times: &Lane) {
+        let left = tariff.fire(impulse, shift, times, &self.performance, &mut self.wear);
+        for (lane, flight) in self.flights.iter_mut().enumerate().filter(|(lane, _)| left[*lane] > 0.0) {
+            flight.fire(Row::WheelUnloading, stratum, &Vector3::from(impulse.each_ref().map(|part| part[lane])), left[lane]);
         }
     }
 }

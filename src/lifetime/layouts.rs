@@ -29,7 +29,8 @@ impl Layouts {
         let failures = &vehicle.propulsion.failures;
         (0..1_usize << failures.len())
             .map(|set| {
-                let happened: Vec<_> = failures.iter().enumerate().filter(|(bit, _)| set >> bit & 1 == 1).map(|(_, failure)| failure).collect();
+                let happened: Vec<_> =
+                    failures.iter().enumerate().filter(|(bit, _)| set >> bit & 1 == 1).map(|(_, failure)| failure).collect();
                 let lost: Vec<usize> = happened.iter().flat_map(|failure| failure.thrusters.iter().copied()).collect();
                 let any = |choice: NetForceChoice| choice == NetForceChoice::Any;
                 let any_force = any(vehicle.propulsion.net_force) || happened.iter().any(|failure| any(failure.net_force));

@@ -3,8 +3,8 @@
 use nalgebra::Vector3;
 
 use super::Plan;
-use crate::config::Timing;
 use crate::authority::Price;
+use crate::config::Timing;
 use crate::pulses::{Performance, Pricer, Wear};
 
 /// Propellant of the nominal unloads that may wait for the cheapest point of the orbit, kg.

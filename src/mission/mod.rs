@@ -161,7 +161,8 @@ impl Scenario {
         let (mut parameters, mut faults) = (Parameters::default(), Faults::new());
         let vehicle = Vehicle::new(spec, &mut parameters, &mut faults);
         let mission = Mission::new(spec, folder, &mut parameters, &mut faults);
-        let events = spec.mission.phases.iter().flat_map(|phase| phase.events.iter().map(|event| format!("{}.{}.", phase.name, event.name)));
+        let events =
+            spec.mission.phases.iter().flat_map(|phase| phase.events.iter().map(|event| format!("{}.{}.", phase.name, event.name)));
         let events: Vec<String> = events.collect();
         // A quantity with a fault of its own is not registered: asking for it would only say so again.
         let driver_groups =

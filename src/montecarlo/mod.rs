@@ -6,22 +6,34 @@
 
 mod accumulate;
 mod budget;
+mod distribution;
 mod drivers;
+mod export;
+mod figures;
+mod part;
 mod probability;
 mod quantiles;
+mod requirement;
 mod run;
 mod sobol;
 mod store;
 mod streams;
+mod swing;
 mod warnings;
 mod wheels;
 
 pub use accumulate::Moments;
-pub use budget::{Budget, Checked, Distribution, Progress, QUANTILES, check_layout};
+pub use budget::{Budget, FAN_LINES, FanPoint};
+pub use distribution::{Distribution, Histogram, QUANTILES};
 pub use drivers::{BASE, Driver, drivers};
+pub use export::{export_csv, export_parquet};
+pub use figures::{FAN, Figure, fan_time_s, figure_names};
+pub use part::{JoinError, PartHeader, join, write_part};
 pub use probability::{Proportion, proportion};
 pub use quantiles::{QuantileEstimate, lower_limit_rank, quantile, upper_limit_rank, wilks_sample_size};
-pub use run::{Figure, draws, run};
+pub use requirement::{Checked, check_layout};
+pub use run::{Design, Ended, Sample, Watch, draws, sample, sample_part};
 pub use sobol::{Indices, indices};
-pub use store::{Store, Wanted};
-pub use streams::uniforms;
+pub use store::Store;
+pub use streams::{stratified, uniforms};
+pub use swing::{Swing, swings};

@@ -15,7 +15,9 @@ pub struct QuantileEstimate {
     /// The limit that the quantile stays below with the stated confidence, if the sample supports
     /// one.
     pub upper: Option<f64>,
-    /// The confidence of each limit taken alone.
+    /// Both limits together: the quantile lies between them with the stated confidence, if the sample supports them.
+    pub two_sided: Option<(f64, f64)>,
+    /// The confidence of each one-sided limit taken alone.
     pub confidence: f64,
     /// The sample size that would support an upper limit, where this sample does not.
     pub needed: Option<usize>,
@@ -73,12 +75,15 @@ pub fn wilks_sample_size(p: f64, confidence: f64, rank_from_top: usize) -> usize
 pub fn quantile(sorted: &[f64], p: f64, confidence: f64) -> QuantileEstimate {
     let n = sorted.len();
     let at = |rank: usize| rank.checked_sub(1).and_then(|index| sorted.get(index)).copied();
+    // Each of two limits may fail half as often.
+    let each = 0.5 * (1.0 + confidence);
     let upper = upper_limit_rank(n, p, confidence).and_then(at);
     QuantileEstimate {
         p,
         value: at(point_rank(n, p)).unwrap_or(f64::NAN),
         lower: lower_limit_rank(n, p, confidence).and_then(at),
         upper,
+        two_sided: lower_limit_rank(n, p, each).and_then(at).zip(upper_limit_rank(n, p, each).and_then(at)),
         confidence,
         needed: upper.is_none().then(|| wilks_sample_size(p, confidence, 1)),
     }
@@ -90,7 +95,7 @@ pub fn quantile(sorted: &[f64], p: f64, confidence: f64) -> QuantileEstimate {
     clippy::cast_sign_loss,
     reason = "the cast saturates, and the result is clamped to the ranks that exist"
 )]
-fn point_rank(n: usize, p: f64) -> usize {
+pub(super) fn point_rank(n: usize, p: f64) -> usize {
     // A product that should be whole may round up a little (100 × 0.07): that must not add a rank.
     let exact = n as f64 * p * (1.0 - 4.0 * f64::EPSILON);
     (exact.ceil() as usize).clamp(1, n.max(1))

@@ -24,6 +24,44 @@ pub fn uniforms(seed: u64, name: &str, first: u64, out: &mut [f64]) {
     }
 }
 
+/// As [`uniforms`], of independent Latin hypercubes of `size` lifetimes each, one after the other: in each, every one of
+/// `size` equal parts of (0, 1) holds one value (M. D. `McKay`, R. J. Beckman, W. J. Conover, Technometrics 21 (1979) 239).
+///
+/// A value depends on the seed, the name, the size and the lifetime's number alone: which part a lifetime takes is told by a
+/// permutation that can be asked anywhere.
+pub fn stratified(seed: u64, name: &str, size: u64, first: u64, out: &mut [f64]) {
+    uniforms(seed, name, first, out);
+    let size = size.max(1);
+    for (lifetime, value) in (first..).zip(out) {
+        let (cube, place) = (lifetime / size, lifetime % size);
+        let digest = Sha256::new().chain_update(key(seed, name)).chain_update(cube.to_le_bytes()).finalize();
+        let words: [u64; 4] =
+            std::array::from_fn(|k| digest[8 * k..8 * k + 8].iter().rev().fold(0, |word, byte| word << 8 | u64::from(*byte)));
+        // The sum rounds at most to the edge of the part; the open interval is kept.
+        *value = ((permuted(place, size, words) as f64 + *value) / size as f64).clamp(f64::MIN_POSITIVE, 1.0 - f64::EPSILON / 2.0);
+    }
+}
+
+/// Where a permutation of 0..size takes `place`: a Feistel network on the next larger power of four, asked again until it
+/// stays within (J. Black, P. Rogaway, CT-RSA 2002: cycle walking).
+fn permuted(place: u64, size: u64, words: [u64; 4]) -> u64 {
+    let half = (64 - size.saturating_sub(1).leading_zeros()).div_ceil(2).max(1);
+    let mask = (1_u64 << half) - 1;
+    let mut at = place;
+    loop {
+        let (mut left, mut right) = (at >> half, at & mask);
+        for word in words {
+            let mut mixed = (right ^ word).wrapping_mul(0x9E37_79B9_7F4A_7C15);
+            mixed = (mixed ^ (mixed >> 29)).wrapping_mul(0xBF58_476D_1CE4_E5B9) ^ word.rotate_left(32);
+            (left, right) = (right, left ^ (mixed >> 32) & mask);
+        }
+        at = left << half | right;
+        if at < size {
+            return at;
+        }
+    }
+}
+
 fn key(seed: u64, name: &str) -> [u8; 32] {
     // The seed has a fixed width, so no two pairs of seed and name share an encoding.
     Sha256::new().chain_update(seed.to_le_bytes()).chain_update(name.as_bytes()).finalize().into()

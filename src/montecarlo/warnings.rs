@@ -24,6 +24,12 @@ pub(super) fn warnings(plan: &Plan, budget: &Budget) -> Vec<String> {
             budget.nominal.unserved
         ));
     }
+    if budget.served.share < 1.0 && budget.nominal.unserved <= 0.0 {
+        list.push(format!(
+            "in {:.2} % of the lifetimes the thrusters that are left cannot make every torque asked for; the propellant of those torques is missing from the ledger (`net_force: any` in `propulsion.failures` allows more)",
+            (1.0 - budget.served.share) * 100.0
+        ));
+    }
     if let Some(fill) = budget.wheel_fill.filter(|fill| *fill > 1.0) {
         list.push(format!(
             "the wheels overflow: {:.0} % of their envelope is asked for; unload more often, or take larger wheels",

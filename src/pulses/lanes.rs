@@ -12,6 +12,9 @@ use crate::uncertain::{LANES, Lane};
 /// Most thrusters that fit.
 const MOST_THRUSTERS: usize = 32;
 
+/// An impulse below zero by no more than this part of all is rounding.
+const BORDER: f64 = 1e-12;
+
 /// 2^52: adding and taking it away rounds a smaller number to a whole one.
 const WHOLE: f64 = 4_503_599_627_370_496.0;
 
@@ -41,8 +44,6 @@ pub struct LanePerformance {
 pub struct LaneWear {
     /// Propellant of all thrusters, kg.
     pub kg: Lane,
-    /// Angular impulses that could not be given.
-    pub unserved: Lane,
     cycles: Vec<Lane>,
     throughput_kg: Vec<Lane>,
 }
@@ -67,13 +68,12 @@ impl LaneWear {
     /// Nothing yet.
     #[must_use]
     pub fn none(thrusters: usize) -> Self {
-        Self { kg: [0.0; LANES], unserved: [0.0; LANES], cycles: vec![[0.0; LANES]; thrusters], throughput_kg: vec![[0.0; LANES]; thrusters] }
+        Self { kg: [0.0; LANES], cycles: vec![[0.0; LANES]; thrusters], throughput_kg: vec![[0.0; LANES]; thrusters] }
     }
 
     /// Back to nothing.
     pub fn clear(&mut self) {
         self.kg = [0.0; LANES];
-        self.unserved = [0.0; LANES];
         self.cycles.iter_mut().chain(&mut self.throughput_kg).for_each(|lane| *lane = [0.0; LANES]);
     }
 
@@ -122,7 +122,9 @@ impl LaneTariff {
     /// Fires an angular impulse (N·m·s, body frame) in each lane as often as `times` says, as [`Pricer::cost`] does in one.
     ///
     /// Where the centre of mass lies `shift` (m) off the one that the layout was made for, the impulse asked for is corrected as
-    /// [`Pricer::aimed`] does it.
+    /// [`Pricer::aimed`] does it. How often each lane's impulse is left undone comes back: those so near a border between two
+    /// choices of thrusters that more care is needed.
+    #[must_use]
     pub fn fire(
         &self,
         impulse: &[Lane; 3],
@@ -130,8 +132,10 @@ impl LaneTariff {
         times: &Lane,
         performance: &LanePerformance,
         wear: &mut LaneWear,
-    ) {
-        Arch::new().dispatch(FireLanes { tariff: self, impulse, shift, times, performance, wear });
+    ) -> Lane {
+        let mut left = [0.0; LANES];
+        Arch::new().dispatch(FireLanes { tariff: self, impulse, shift, times, performance, wear, left: &mut left });
+        left
     }
 }
 
@@ -178,6 +182,7 @@ struct FireLanes<'a> {
     times: &'a Lane,
     performance: &'a LanePerformance,
     wear: &'a mut LaneWear,
+    left: &'a mut Lane,
 }
 
 impl WithSimd for FireLanes<'_> {
@@ -187,27 +192,30 @@ impl WithSimd for FireLanes<'_> {
     fn with_simd<S: Simd>(self, simd: S) {
         for group in 0..LANES / S::F64_LANES {
             let h = [at::<S>(&self.impulse[0], group), at::<S>(&self.impulse[1], group), at::<S>(&self.impulse[2], group)];
-            let mut times = at::<S>(self.times, group);
-            let impulses = match self.shift {
-                None => self.tariff.impulses(simd, &h),
+            let (zero, times) = (simd.splat_f64s(0.0), at::<S>(self.times, group));
+            let (impulses, left) = match self.shift {
+                None => {
+                    let (impulses, border) = self.tariff.impulses(simd, &h);
+                    (impulses, simd.select_f64s(border, times, zero))
+                }
                 Some(shift) => {
                     let shift = [at::<S>(&shift[0], group), at::<S>(&shift[1], group), at::<S>(&shift[2], group)];
                     let (asked, missed) = self.tariff.aimed(simd, &h, &shift);
-                    let unserved = &mut S::as_mut_simd_f64s(self.wear.unserved.as_mut_slice()).0[group];
-                    *unserved = simd.add_f64s(*unserved, simd.mul_f64s(times, missed));
-                    times = simd.sub_f64s(times, simd.mul_f64s(times, missed));
-                    self.tariff.impulses(simd, &asked)
+                    let (impulses, border) = self.tariff.impulses(simd, &asked);
+                    (impulses, simd.select_f64s(border, times, simd.mul_f64s(missed, times)))
                 }
             };
+            S::as_mut_simd_f64s(self.left.as_mut_slice()).0[group] = left;
+            let times = simd.sub_f64s(times, left);
             self.tariff.pulses(simd, group, &impulses, times, self.performance, self.wear);
         }
     }
 }
 
 impl LaneTariff {
-    /// Impulse of every thruster, N·s.
+    /// Impulse of every thruster, N·s, and where one is so far below zero that another choice must be asked.
     #[inline(always)]
-    fn impulses<S: Simd>(&self, simd: S, h: &[S::f64s; 3]) -> [S::f64s; MOST_THRUSTERS] {
+    fn impulses<S: Simd>(&self, simd: S, h: &[S::f64s; 3]) -> ([S::f64s; MOST_THRUSTERS], S::m64s) {
         let zero = simd.splat_f64s(0.0);
         let (mut best, mut chosen) = (simd.splat_f64s(f64::NEG_INFINITY), zero);
         for (index, basis) in self.bases.iter().enumerate() {
@@ -220,12 +228,16 @@ impl LaneTariff {
         for (index, basis) in self.bases.iter().enumerate() {
             let own = simd.equal_f64s(chosen, simd.splat_f64s(index as f64));
             for (thruster, row) in &basis.firing {
-                // An impulse below zero is rounding on the border between two bases.
-                let impulse = simd.max_f64s(dot(simd, row, h), zero);
-                impulses[*thruster] = simd.select_f64s(own, impulse, impulses[*thruster]);
+                impulses[*thruster] = simd.select_f64s(own, dot(simd, row, h), impulses[*thruster]);
             }
         }
-        impulses
+        let (mut lowest, mut sum) = (zero, zero);
+        for impulse in impulses.iter_mut().take(self.pushes.len()) {
+            lowest = simd.min_f64s(lowest, *impulse);
+            sum = simd.add_f64s(sum, simd.abs_f64s(*impulse));
+            *impulse = simd.max_f64s(*impulse, zero);
+        }
+        (impulses, simd.less_than_f64s(lowest, simd.mul_f64s(sum, simd.splat_f64s(-BORDER))))
     }
 
     /// What to ask for so that `wanted` is given in the end, and 1 where nothing was found. A lane that is done stays as it is,
@@ -238,7 +250,7 @@ impl LaneTariff {
         let mut asked = *wanted;
         let mut open = one;
         for _ in 0..60 {
-            let impulses = self.impulses(simd, &asked);
+            let (impulses, _) = self.impulses(simd, &asked);
             let mut push = [zero; 3];
             for (impulse, direction) in impulses.iter().zip(&self.pushes) {
                 for (push, direction) in push.iter_mut().zip(direction) {
@@ -247,8 +259,7 @@ impl LaneTariff {
             }
             let lost = |a: usize, b: usize| simd.sub_f64s(simd.mul_f64s(shift[a], push[b]), simd.mul_f64s(shift[b], push[a]));
             let cross = [lost(1, 2), lost(2, 0), lost(0, 1)];
-            let missed: [S::f64s; 3] =
-                std::array::from_fn(|k| simd.add_f64s(simd.sub_f64s(wanted[k], asked[k]), cross[k]));
+            let missed: [S::f64s; 3] = std::array::from_fn(|k| simd.add_f64s(simd.sub_f64s(wanted[k], asked[k]), cross[k]));
             let far = simd.greater_than_f64s(square(&missed), enough);
             open = simd.select_f64s(far, open, zero);
             if simd.reduce_max_f64s(open) <= 0.0 {

@@ -11,7 +11,7 @@ use crate::config::MarginRule;
 use crate::layout::TravelEnd;
 use crate::lifetime::{PhaseSummary, TimingGain, TypicalUnload};
 use crate::mission::{Bound, Margin, Scenario};
-use crate::montecarlo::{Budget, Checked, Distribution};
+use crate::montecarlo::{Budget, Checked, Distribution, Ended};
 use crate::propellant::ROWS;
 
 const SECONDS_PER_YEAR: f64 = 31_557_600.0;
@@ -86,12 +86,44 @@ fn ledger(budget: &Budget, margin: &Margin) -> String {
     let mut bounds = Table::new(&["attitude total, kg", "lower limit", "estimate", "upper limit"]);
     limits.for_each(|row| bounds.push(row));
     let note = format!(
-        "Needed on board adds orbit burns, leakage, residual and what is loaded too little to the total, not the margin. Limits are one-sided, each with {:.0} % confidence, free of any assumption on the distribution.",
-        budget.confidence * 100.0
+        "Needed on board adds orbit burns, leakage, residual and what is loaded too little to the total, not the margin. Limits are one-sided, each with {:.0} % confidence, {}.",
+        budget.confidence * 100.0,
+        match budget.design.replicates() {
+            Some((_, replicates)) => format!("estimated from the scatter of {replicates} replicates, taken as normal"),
+            None => "free of any assumption on the distribution".to_owned(),
+        }
     );
     let blanket = blanket_text(budget, margin);
     let timing = budget.timing.map_or_else(String::new, |gain| paragraph("  ", "  ", &timing_text(&gain)));
     format!("{}{}\n{}{blanket}{timing}", table.to_text(), paragraph("  ", "  ", &note), bounds.to_text())
+}
+
+/// How many lifetimes were drawn, and what ended it.
+fn drawn(budget: &Budget) -> String {
+    let (count, seed) = (budget.lifetimes, budget.design.seed);
+    let width = |width: f64| format!("{:.2} %", width * 100.0);
+    let asked = budget.design.precision.map_or((0.95, 0.0), |precision| (precision.quantile, precision.width));
+    let quantile = format!("P{}", asked.0 * 100.0);
+    match (budget.ended, budget.design.replicates()) {
+        (Ended::Stopped, _) => {
+            let most = budget.design.precision.map_or(budget.design.lifetimes, |precision| precision.at_most);
+            format!(
+                "STOPPED BY THE USER after {count} of {most} lifetimes, seed {seed}: every figure below is of those alone, without drivers"
+            )
+        }
+        (Ended::Precise(reached), _) => format!(
+            "{count} lifetimes, seed {seed}, drawn until the interval of {quantile} was narrower than {} ({} reached)",
+            width(asked.1),
+            width(reached)
+        ),
+        (Ended::Cap(reached), _) => format!(
+            "{count} lifetimes, seed {seed}, the most allowed: the interval of {quantile} is {}, not within {} as asked",
+            reached.map_or_else(|| "still open".to_owned(), width),
+            width(asked.1)
+        ),
+        (Ended::Number, Some((size, replicates))) => format!("{replicates} Latin hypercubes of {size} lifetimes, seed {seed}"),
+        (Ended::Number, None) => format!("{count} lifetimes, seed {seed}"),
+    }
 }
 
 /// What the margin rule amounts to, beside the limit that the lifetimes give.
@@ -133,6 +165,9 @@ fn timing_text(gain: &TimingGain) -> String {
 }
 
 fn drivers(budget: &Budget) -> String {
+    if budget.ended == Ended::Stopped {
+        return paragraph("  ", "  ", "Not computed: the run was stopped.");
+    }
     if budget.drivers.is_empty() {
         return paragraph("  ", "  ", "Nothing in the configuration is uncertain.");
     }
@@ -144,7 +179,23 @@ fn drivers(budget: &Budget) -> String {
         table.push(vec![driver.parameter.clone(), share(driver.first_order), share(driver.total)]);
     }
     let note = "Shares of the variance (Sobol' indices) with 95 % bootstrap intervals; vectors count as one.";
-    format!("{}{}", table.to_text(), paragraph("  ", "  ", note))
+    format!("{}{}\n{}", table.to_text(), paragraph("  ", "  ", note), swing_table(budget))
+}
+
+/// The widest swings.
+fn swing_table(budget: &Budget) -> String {
+    let mut table = Table::new(&["one at a time", "its P5", "its P95", "kg at P5", "kg at P95"]);
+    let kg = |x: f64| format!("{x:.3}");
+    for swing in budget.swings.iter().take(8) {
+        let value = |x: f64| if swing.unit.is_empty() { number(x, 3) } else { format!("{} {}", number(x, 3), swing.unit) };
+        let ((low, high), (at_low, at_high)) = (swing.values, swing.totals_kg);
+        table.push(vec![swing.parameter.clone(), value(low), value(high), kg(at_low), kg(at_high)]);
+    }
+    let note = format!(
+        "The nominal attitude total of {} kg with one quantity at its P5 and its P95, all others nominal.",
+        kg(budget.attitude.nominal)
+    );
+    format!("{}{}", table.to_text(), paragraph("  ", "  ", &note))
 }
 
 /// A figure in the unit of its requirement.
@@ -200,14 +251,14 @@ const CAUTIONS: [&str; 3] = [
 
 /// The budget on one page.
 #[must_use]
-pub fn budget_text(scenario: &Scenario, budget: &Budget, phases: &[PhaseSummary], unload: Option<&TypicalUnload>, seed: u64) -> String {
+pub fn budget_text(scenario: &Scenario, budget: &Budget, phases: &[PhaseSummary], unload: Option<&TypicalUnload>) -> String {
     let years = scenario.mission.duration_s() / SECONDS_PER_YEAR;
     let title = format!(
-        "{}: attitude-control budget over {} years from {}; {} lifetimes, seed {seed}.",
+        "{}: attitude-control budget over {} years from {}; {}.",
         scenario.vehicle.name,
         number(years, 3),
         scenario.mission.start,
-        budget.lifetimes
+        drawn(budget)
     );
     let mut text = paragraph("", "", &title);
     let mut section = |title: &str, body: String| {

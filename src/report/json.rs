@@ -5,16 +5,12 @@ use serde::Serialize;
 use serde_json::{Map, Value, json};
 
 use crate::authority::NetForce;
-use crate::config::MarginRule;
 use crate::layout::{Advice, LayoutCase, OutBecause, Study, TravelEnd, Verdict};
 use crate::lifetime::{PhaseSummary, TypicalUnload};
-use crate::mission::{Bound, Scenario};
+use crate::mission::Bound;
 use crate::momentum::Convergence;
-use crate::montecarlo::{Budget, Checked, Distribution};
-use crate::propellant::ROWS;
-use crate::vehicle::{Propulsion, Thruster};
-
-const SECONDS_PER_YEAR: f64 = 31_557_600.0;
+use crate::montecarlo::Checked;
+use crate::vehicle::Thruster;
 
 /// Where a result came from.
 #[derive(Debug, Clone, PartialEq, Eq, Serialize)]
@@ -46,14 +42,14 @@ pub fn document(name: &str, provenance: &Provenance, body: Value) -> Value {
     Value::Object(body)
 }
 
-fn object(value: Value) -> Map<String, Value> {
+pub(super) fn object(value: Value) -> Map<String, Value> {
     match value {
         Value::Object(map) => map,
         _ => Map::new(),
     }
 }
 
-fn xyz(v: &Vector3<f64>) -> Value {
+pub(super) fn xyz(v: &Vector3<f64>) -> Value {
     json!([v.x, v.y, v.z])
 }
 
@@ -77,7 +73,7 @@ fn verdict(verdict: &Verdict) -> Value {
     })
 }
 
-fn cases(cases: &[LayoutCase]) -> Value {
+pub(super) fn cases(cases: &[LayoutCase]) -> Value {
     let one = |case: &LayoutCase| {
         json!({
             "thrusters_out": case.thrusters_out,
@@ -170,7 +166,7 @@ pub fn layout_json(study: &Study, checked: &[Checked], provenance: &Provenance) 
     document("layout", provenance, body)
 }
 
-fn phases(list: &[PhaseSummary]) -> Value {
+pub(super) fn phases(list: &[PhaseSummary]) -> Value {
     let one = |phase: &PhaseSummary| {
         let peaks: Map<String, Value> = phase.sources.iter().map(|(name, peak, _)| ((*name).to_owned(), json!(peak))).collect();
         let mut secular: Map<String, Value> = phase.sources.iter().map(|(name, _, h)| ((*name).to_owned(), xyz(h))).collect();
@@ -208,7 +204,7 @@ pub fn momentum_json(list: &[PhaseSummary], provenance: &Provenance) -> Value {
     document("momentum", provenance, json!({ "phases": phases(list) }))
 }
 
-fn unload(unload: &TypicalUnload, thrusters: &[Thruster]) -> Value {
+pub(super) fn unload(unload: &TypicalUnload, thrusters: &[Thruster]) -> Value {
     let command = &unload.command;
     let firings: Value = command
         .thrusters
@@ -244,61 +240,7 @@ pub fn unload_json(typical: &TypicalUnload, thrusters: &[Thruster], provenance: 
     document("unload", provenance, unload(typical, thrusters))
 }
 
-fn quantile(distribution: &Distribution, p: f64) -> Option<f64> {
-    distribution.at(p).map(|estimate| estimate.value)
-}
-
-fn ledger(budget: &Budget) -> Value {
-    let one = |(row, distribution): (&crate::propellant::Row, &Distribution)| {
-        json!({
-            "row": row.key(),
-            "nominal_kg": distribution.nominal,
-            "mean_kg": distribution.mean,
-            "p50_kg": quantile(distribution, 0.50),
-            "p95_kg": quantile(distribution, 0.95),
-            "p99_kg": quantile(distribution, 0.99),
-        })
-    };
-    ROWS.iter().zip(&budget.rows).map(one).collect()
-}
-
-fn margin_rule(rule: MarginRule) -> &'static str {
-    match rule {
-        MarginRule::Own => "own",
-        MarginRule::EsaAssessment => "esa_assessment",
-        MarginRule::P95 => "p95",
-    }
-}
-
-fn margin(scenario: &Scenario, budget: &Budget) -> Value {
-    let margin = &scenario.settings.margin;
-    json!({
-        "rule": margin_rule(margin.rule),
-        "attitude": margin.attitude,
-        "burns": margin.burns,
-        "attitude_with_margin_kg": budget.attitude.nominal * (1.0 + margin.attitude),
-        "probability_within": budget.within_margin.share,
-        "probability_within_interval": [budget.within_margin.lower, budget.within_margin.upper],
-    })
-}
-
-fn throughput(propulsion: &Propulsion, budget: &Budget) -> Value {
-    let each = propulsion.thrusters.iter().zip(&budget.throughput);
-    let qualified = propulsion.qualified_throughput_kg;
-    each.map(|(t, d)| json!({ "thruster": t.name, "nominal": d.nominal, "p95": quantile(d, 0.95), "qualified": qualified })).collect()
-}
-
-fn attitude_total(budget: &Budget) -> Value {
-    let total = &budget.attitude;
-    let quantiles: Value = total
-        .quantiles
-        .iter()
-        .map(|q| json!({ "p": q.p, "kg": q.value, "lower_kg": q.lower, "upper_kg": q.upper, "confidence": q.confidence, "lifetimes_needed": q.needed }))
-        .collect();
-    json!({ "nominal": total.nominal, "mean": total.mean, "sd": total.sd, "quantiles": quantiles })
-}
-
-fn requirements(list: &[Checked]) -> Value {
+pub(super) fn requirements(list: &[Checked]) -> Value {
     let one = |checked: &Checked| {
         let (bound, limit) = match checked.requirement.bound {
             Bound::AtMost(limit) => ("at_most", limit),
@@ -315,63 +257,4 @@ fn requirements(list: &[Checked]) -> Value {
         })
     };
     list.iter().map(one).collect()
-}
-
-/// `couplet/budget/1`.
-#[must_use]
-pub fn budget_json(
-    scenario: &Scenario,
-    budget: &Budget,
-    momentum: &[PhaseSummary],
-    typical: Option<&TypicalUnload>,
-    provenance: &Provenance,
-) -> Value {
-    let propulsion = &scenario.vehicle.propulsion;
-    let life: Value = budget.life_s.iter().map(|(p, life)| json!({ "p": p, "years": life.map(|s| s / SECONDS_PER_YEAR) })).collect();
-    let cycles: Value = propulsion
-        .thrusters
-        .iter()
-        .zip(&budget.cycles)
-        .map(|(thruster, d)| json!({ "thruster": thruster.name, "nominal": d.nominal, "p95": quantile(d, 0.95), "qualified": propulsion.qualified_pulses }))
-        .collect();
-    let drivers: Value = budget
-        .drivers
-        .iter()
-        .map(|d| {
-            let interval = |(low, high): (f64, f64)| json!([low, high]);
-            json!({
-                "parameter": d.parameter,
-                "first_order": d.first_order.0,
-                "first_order_interval": interval(d.first_order.1),
-                "total": d.total.0,
-                "total_interval": interval(d.total.1),
-            })
-        })
-        .collect();
-    let body = json!({
-        "ledger": ledger(budget),
-        "attitude_total_kg": attitude_total(budget),
-        "propellant_loaded_kg": budget.loaded_kg,
-        "probability_enough": budget.enough.share,
-        "probability_enough_interval": [budget.enough.lower, budget.enough.upper],
-        "life_years": life,
-        "unloads": { "nominal": budget.unloads.nominal, "p95": quantile(&budget.unloads, 0.95) },
-        "valve_cycles": cycles,
-        "drivers": drivers,
-        "throughput_kg": throughput(propulsion, budget),
-        "margin": margin(scenario, budget),
-        "unload_delta_v": budget.unload_delta_v.map(|push| json!({
-            "each_m_per_s": push.each_m_per_s,
-            "per_day_m_per_s": push.per_day_m_per_s,
-            "per_year_m_per_s": xyz(&push.per_year_m_per_s),
-        })),
-        "wheel_fill": budget.wheel_fill,
-        "unload_timing": budget.timing.map(|gain| json!({ "as_due_kg": gain.as_due_kg, "cheapest_kg": gain.cheapest_kg })),
-        "requirements": requirements(&budget.requirements),
-        "warnings": budget.warnings,
-        "layout": { "cases": cases(&budget.layout) },
-        "momentum": { "phases": phases(momentum) },
-        "unload": typical.map(|typical| unload(typical, &propulsion.thrusters)),
-    });
-    document("budget", provenance, body)
 }

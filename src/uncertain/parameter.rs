@@ -73,6 +73,11 @@ impl Parameters {
         &self.list
     }
 
+    /// Their places in order.
+    pub fn ids(&self) -> impl Iterator<Item = ParameterId> + use<> {
+        (0..self.list.len()).map(ParameterId)
+    }
+
     /// How many there are.
     #[must_use]
     pub fn len(&self) -> usize {

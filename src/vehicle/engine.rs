@@ -53,7 +53,8 @@ fn engine(written: &config::Engine, index: usize, parameters: &mut Parameters, f
     }
     let push = faults.direction(&format!("{at}.push"), written.push.0);
     let off = written.misalignment.clone().map_or(Spread::Fixed(0.0), |angle| angle.0);
-    let misalignment_rad = ["a", "b"].map(|axis| parameters.register(format!("{name}.misalignment.{axis}"), kind::Angle::UNIT, off.clone()));
+    let misalignment_rad =
+        ["a", "b"].map(|axis| parameters.register(format!("{name}.misalignment.{axis}"), kind::Angle::UNIT, off.clone()));
     Some(Engine {
         name: written.name.clone(),
         thrust_n: parameters.register(format!("{name}.thrust"), kind::Force::UNIT, thrust?),

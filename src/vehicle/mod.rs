@@ -13,8 +13,8 @@ mod surface;
 mod tank;
 mod wheels;
 
-pub use failure::Failure;
 pub use engine::Engine;
+pub use failure::Failure;
 pub use faults::Faults;
 pub use feed::{Feed, PressureLaw};
 pub use mass::{INERTIA_ELEMENTS, MassProperties, MassState, symmetric};
