@@ -8,7 +8,7 @@ use std::sync::Arc;
 
 use super::diagnostic::Diagnostic;
 use super::nearest::nearest;
-use super::node::{Body, Entry, Node};
+use super::node::{Body, Entry, Map, Node};
 use super::path::{Part, parts, short};
 use super::source::{Place, Source};
 
@@ -88,6 +88,7 @@ fn put(root: &mut Node, steps: &[Step<'_>], node: Node) -> Result<(), Box<Diagno
     };
     let mut holder = root;
     for step in way {
+        begin(holder, step);
         holder = enter(holder, step)?;
     }
     if let Body::Map(map) = &mut holder.body {
@@ -97,6 +98,19 @@ fn put(root: &mut Node, steps: &[Step<'_>], node: Node) -> Result<(), Box<Diagno
     }
     *enter(holder, last)? = node;
     Ok(())
+}
+
+/// Makes an empty map for a section that is not there yet. A name close to one that is there is a slip, and is told as such;
+/// one that the configuration does not know is told when its keys are checked.
+fn begin(holder: &mut Node, step: &Step<'_>) {
+    let word = step.part.text;
+    if let Body::Map(map) = &mut holder.body
+        && map.get(word).is_none()
+        && nearest(word, map.keys()).is_none()
+    {
+        let node = Node { place: step.place.clone(), body: Body::Map(Map::default()) };
+        map.set(Entry { key: word.to_owned(), key_place: step.place.clone(), node });
+    }
 }
 
 /// The value one step down.
