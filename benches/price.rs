@@ -1,4 +1,4 @@
-//! The fused kernel, features × basis, price, maximum, against plain NumPy and a linear-program solver: `cargo bench --bench price`.
+//! The fused kernel, features × basis, price, maximum, against plain `NumPy` and a linear-program solver: `cargo bench --bench price`.
 //!
 //! A mission of 15 years with one unload a day, 12 thrusters, 15 features, double precision, two cores, all in one run.
 //! `COUPLET_PYTHON` names a Python with the packages that benches/plain.py pins; without them only our own side is measured.
@@ -8,7 +8,6 @@ use std::path::Path;
 use std::process::Command;
 use std::time::Instant;
 
-use couplet::authority::PriceMap;
 use couplet::config::{Document, read};
 use couplet::mission::Scenario;
 use couplet::momentum::least_propellant;
@@ -67,95 +66,109 @@ fn peak() -> f64 {
     8.0 * threads as f64 * 2.0 * (size as f64).powi(3) / seconds
 }
 
+/// What is flown: a random basis, random draws, and the layout of heron.
+struct Problem {
+    pricer: Pricer,
+    lambdas: Vec<[f64; 3]>,
+    rows: Vec<[f64; 3]>,
+    draws: Vec<f64>,
+}
+
+impl Problem {
+    fn new() -> Self {
+        let file = Path::new(env!("CARGO_MANIFEST_DIR")).join("configs/heron.yaml");
+        let none: &[&str] = &[];
+        let document = Document::load(&file, none, none).expect("heron is valid YAML");
+        let scenario = Scenario::new(&read(&document).expect("heron has the right keys")).expect("heron is possible");
+        let pricer = Pricer::new(&scenario.vehicle.propulsion, &Vector3::new(0.01, 0.0, 0.74));
+        Self {
+            lambdas: pricer.price_map().vertices.iter().map(|v| v.lambda.into()).collect(),
+            rows: numbers("basis", UNLOADS * FEATURES * 3).chunks(3).map(|v| [v[0], v[1], v[2]]).collect(),
+            draws: numbers("draws", LIFETIMES * FEATURES),
+            pricer,
+        }
+    }
+
+    fn fly(&self, blocks: &[Vec<Lane>]) -> f64 {
+        let one = |block: &Vec<Lane>| least_propellant(Arch::new(), &self.rows, block, &self.lambdas);
+        let totals: Vec<Lane> = blocks.par_iter().map(one).collect();
+        totals.iter().flatten().sum()
+    }
+
+    /// Floating-point operations of one lifetime.
+    fn operations(&self) -> f64 {
+        UNLOADS as f64 * (6.0 * FEATURES as f64 + self.lambdas.len() as f64 * 6.0 + 1.0)
+    }
+
+    /// Propellant of the first unloads of the first two lifetimes, which the linear programs solve.
+    fn solved(&self) -> f64 {
+        let one = |k: usize| {
+            let block = &blocks(&self.draws[k * FEATURES..(k + 1) * FEATURES])[0];
+            least_propellant(Arch::new(), &self.rows[..SOLVED * FEATURES], block, &self.lambdas)[0]
+        };
+        one(0) + one(1)
+    }
+
+    /// Runs the scripts; what they print.
+    fn scripts(&self) -> (String, String) {
+        let folder = tempfile::tempdir().expect("a temporary folder");
+        let write = |name: &str, content: Vec<u8>| std::fs::write(folder.path().join(name), content).expect("a temporary file");
+        let layout = self.pricer.layout();
+        write("shape", format!("{UNLOADS} {FEATURES} {} {} {PLAIN}", self.lambdas.len(), layout.len()).into_bytes());
+        write("basis", bytes(self.rows.iter().flatten().copied()));
+        write("prices", bytes(self.lambdas.iter().flatten().copied()));
+        write("draws", bytes(self.draws[..PLAIN * FEATURES].iter().copied()));
+        let torques = (0..3).flat_map(|axis| layout.iter().map(move |g| g.torque[axis]));
+        let forces = (0..3).flat_map(|axis| layout.iter().map(move |g| g.force[axis]));
+        write("wrench", bytes(torques.chain(forces)));
+        write("cost", bytes(layout.iter().map(|g| g.cost)));
+        let python = std::env::var("COUPLET_PYTHON").unwrap_or_else(|_| "python3".to_owned());
+        let script = Path::new(env!("CARGO_MANIFEST_DIR")).join("benches/plain.py");
+        let answer = Command::new(&python).arg(script).arg(folder.path()).output().expect("COUPLET_PYTHON can be started");
+        (String::from_utf8_lossy(&answer.stdout).into_owned(), String::from_utf8_lossy(&answer.stderr).into_owned())
+    }
+}
+
 fn main() {
     let mut out = std::io::stdout().lock();
-    let file = Path::new(env!("CARGO_MANIFEST_DIR")).join("configs/heron.yaml");
-    let none: &[&str] = &[];
-    let document = Document::load(&file, none, none).expect("heron is valid YAML");
-    let scenario = Scenario::new(&read(&document).expect("heron has the right keys")).expect("heron is possible");
-    let pricer = Pricer::new(&scenario.vehicle.propulsion, &Vector3::new(0.01, 0.0, 0.74));
-    let map: &PriceMap = pricer.price_map();
-    let lambdas: Vec<[f64; 3]> = map.vertices.iter().map(|v| v.lambda.into()).collect();
-    let rows: Vec<[f64; 3]> = numbers("basis", UNLOADS * FEATURES * 3).chunks(3).map(|v| [v[0], v[1], v[2]]).collect();
-    let draws = numbers("draws", LIFETIMES * FEATURES);
-
-    let all = blocks(&draws);
-    let fly = |blocks: &[Vec<Lane>]| -> f64 {
-        let totals: Vec<Lane> = blocks.par_iter().map(|block| least_propellant(Arch::new(), &rows, block, &lambdas)).collect();
-        totals.iter().flatten().sum()
+    let mut tell = |line: String| writeln!(out, "{line}").expect("standard output");
+    let problem = Problem::new();
+    let all = blocks(&problem.draws);
+    let (seconds, _) = fastest(|| problem.fly(&all));
+    let (per_second, operations) = (LIFETIMES as f64 / seconds, problem.operations());
+    let machine = match Arch::new() {
+        Arch::Scalar => "no wide vectors",
+        Arch::V3(_) => "AVX2",
+        _ => "AVX-512",
     };
-    let (seconds, _) = fastest(|| fly(&all));
-    let per_second = LIFETIMES as f64 / seconds;
-    let operations = UNLOADS as f64 * (2.0 * 3.0 * FEATURES as f64 + lambdas.len() as f64 * 6.0 + 1.0);
-    writeln!(
-        out,
-        "{UNLOADS} unloads, {FEATURES} features, {} thrusters, {} vertices of the price; {} threads, {}",
-        pricer.layout().len(),
-        lambdas.len(),
-        rayon::current_num_threads(),
-        match Arch::new() {
-            Arch::Scalar => "no wide vectors",
-            Arch::V3(_) => "AVX2",
-            _ => "AVX-512",
-        }
-    )
-    .expect("standard output");
-    writeln!(
-        out,
-        "fused              {per_second:10.0} lifetimes/s   {operations:.0} floating-point operations each, {:.1} Gflop/s",
-        operations * per_second / 1e9
-    )
-    .expect("standard output");
-
-    let some = blocks(&draws[..PLAIN * FEATURES]);
-    let own_sum = fly(&some);
-    let mut best_peak = peak();
-    let folder = tempfile::tempdir().expect("a temporary folder");
-    let write = |name: &str, content: Vec<u8>| std::fs::write(folder.path().join(name), content).expect("a temporary file");
-    write("shape", format!("{UNLOADS} {FEATURES} {} {} {PLAIN}", lambdas.len(), pricer.layout().len()).into_bytes());
-    write("basis", bytes(rows.iter().flatten().copied()));
-    write("prices", bytes(lambdas.iter().flatten().copied()));
-    write("draws", bytes(draws[..PLAIN * FEATURES].iter().copied()));
-    let layout = pricer.layout();
-    let wrench = (0..3)
-        .flat_map(|axis| layout.iter().map(move |g| g.torque[axis]))
-        .chain((0..3).flat_map(|axis| layout.iter().map(move |g| g.force[axis])));
-    write("wrench", bytes(wrench));
-    write("cost", bytes(layout.iter().map(|g| g.cost)));
-    let python = std::env::var("COUPLET_PYTHON").unwrap_or_else(|_| "python3".to_owned());
-    let script = Path::new(env!("CARGO_MANIFEST_DIR")).join("benches/plain.py");
-    let answer = Command::new(&python).arg(script).arg(folder.path()).output().expect("COUPLET_PYTHON can be started");
-    let text = String::from_utf8_lossy(&answer.stdout);
+    let (thrusters, vertices, threads) = (problem.pricer.layout().len(), problem.lambdas.len(), rayon::current_num_threads());
+    tell(format!(
+        "{UNLOADS} unloads, {FEATURES} features, {thrusters} thrusters, {vertices} vertices of the price; {threads} threads, {machine}"
+    ));
+    let rate = operations * per_second;
+    tell(format!(
+        "fused                       {per_second:10.0} lifetimes/s   {operations:.0} floating-point operations each, {:.0} Gflop/s",
+        rate / 1e9
+    ));
+    let own_peak = peak();
+    let (text, complaint) = problem.scripts();
     let value = |name: &str| text.lines().find_map(|line| line.strip_prefix(name)?.strip_prefix(' ')?.parse::<f64>().ok());
-    best_peak = best_peak.max(value("peak").unwrap_or(0.0));
-    writeln!(
-        out,
-        "peak of a matrix product {:.1} Gflop/s: the fused kernel reaches {:.0} % of it",
-        best_peak / 1e9,
-        operations * per_second / best_peak * 100.0
-    )
-    .expect("standard output");
-    let mut line = |name: &str, words: &str, reference: f64| {
-        if let (Some(rate), Some(sum)) = (value(name), value(&format!("{name}_sum"))) {
-            writeln!(
-                out,
-                "{words}   {rate:10.3} lifetimes/s   fused is {:.0} times as fast; sums differ by {:.1e} of themselves",
-                per_second / rate,
-                (sum - reference).abs() / reference
-            )
-            .expect("standard output");
-        }
-    };
-    line("straightforward", "NumPy, straightforward      ", own_sum);
-    line("rearranged", "NumPy, lifetimes along rows ", own_sum);
-    let solved: f64 = (0..2)
-        .map(|k| {
-            least_propellant(Arch::new(), &rows[..SOLVED * FEATURES], &blocks(&draws[k * FEATURES..(k + 1) * FEATURES])[0], &lambdas)[0]
-        })
-        .sum();
-    line("program", "linear program each unload  ", solved);
-    if value("straightforward").is_none() {
-        writeln!(out, "the scripts did not run: set COUPLET_PYTHON as benches/plain.py says\n{}", String::from_utf8_lossy(&answer.stderr))
-            .expect("standard output");
+    let peak = own_peak.max(value("peak").unwrap_or(0.0));
+    tell(format!("peak of a matrix product {:.0} Gflop/s: the fused kernel reaches {:.0} % of it", peak / 1e9, rate / peak * 100.0));
+    let own_sum = problem.fly(&blocks(&problem.draws[..PLAIN * FEATURES]));
+    for (name, words, reference) in [
+        ("straightforward", "NumPy, straightforward      ", own_sum),
+        ("rearranged", "NumPy, lifetimes along rows ", own_sum),
+        ("program", "linear program each unload  ", problem.solved()),
+    ] {
+        let (Some(other), Some(sum)) = (value(name), value(&format!("{name}_sum"))) else {
+            tell(format!("{words}did not run: set COUPLET_PYTHON as benches/plain.py says\n{complaint}"));
+            continue;
+        };
+        let off = (sum - reference).abs() / reference;
+        tell(format!(
+            "{words}{other:10.3} lifetimes/s   fused is {:.0} times as fast; sums differ by {off:.0e} of themselves",
+            per_second / other
+        ));
     }
 }

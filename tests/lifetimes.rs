@@ -88,7 +88,7 @@ fn correlation_is_recovered() {
         "uncertainty.correlations=[{quantities: [spacecraft.body_torque.x, spacecraft.body_torque.z], coefficient: -0.7}]",
     ]);
     let n = 20_000;
-    let drawn = draws(&plan, &design(&plan, n), 0, n as usize);
+    let drawn = draws(&plan, &design(&plan, 20_000), 0, n);
     let column = |name: &str| -> Vec<f64> { drawn.iter().map(|draw| draw.value(id(&plan, name))).collect() };
     let [x, y, z] = ["x", "y", "z"].map(|axis| column(&format!("spacecraft.body_torque.{axis}")));
     let root = (n as f64).sqrt();
@@ -212,7 +212,7 @@ fn discrete_and_empirical_quantities() {
         "spacecraft.dry_mass={empirical: {values: [99, 100, 100, 101, 250], unit: kg}}",
     ]);
     let n = 10_000;
-    let drawn = draws(&plan, &design(&plan, n), 0, n as usize);
+    let drawn = draws(&plan, &design(&plan, 10_000), 0, n);
     let share =
         |name: &str, value: f64| drawn.iter().filter(|draw| (draw.value(id(&plan, name)) - value).abs() < 1e-9).count() as f64 / n as f64;
     for (name, value, probability) in [
@@ -246,9 +246,9 @@ fn a_centre_of_mass_moves_the_arms_of_thrusters() {
         let exact = Pricer::new(&vehicle.propulsion, &at).price_map().price(&-torque_impulse);
         let couplet::authority::Price::Served { kg } = exact else { panic!("not served") };
         let got = outcome.row(Row::WheelUnloading);
-        // On-board software does not know the centre that was drawn: its choice may be a little dearer, by
-        // the square of 2 cm over arms of 2 m at the borders between choices, never cheaper.
-        assert!(got >= kg * (1.0 - 1e-6) && got < kg * 1.005, "{got} {kg}");
+        // On-board software does not know the centre that was drawn: its choice may be a little dearer
+        // (the arms change by 2 % to 3 % at most, the right choice gains a part of that), never cheaper.
+        assert!(got >= kg * (1.0 - 1e-6) && got < kg * 1.01, "{got} {kg}");
     }
     assert!(mean_and_sd(&totals(&free, 64)).1 > 1e-4);
     agree(&free, &drawn);
@@ -279,10 +279,11 @@ fn latin_hypercubes_cover_every_part() {
     let torque_x = id(&cubes, "spacecraft.body_torque.x");
     let spread = &cubes.scenario().parameters.as_slice()[0].spread;
     for cube in 0..10 {
-        let mut parts: Vec<usize> = draws(&cubes, &asked, cube * 200, 200)
+        let mut parts: Vec<u16> = draws(&cubes, &asked, cube * 200, 200)
             .iter()
             .map(|draw| {
-                (0..200).find(|k| draw.value(torque_x) <= spread.quantile((f64::from(*k) + 1.0) / 200.0)).map_or(199, |k| k as usize)
+                let within = |k: &u16| draw.value(torque_x) <= spread.quantile((f64::from(*k) + 1.0) / 200.0);
+                (0..200).find(within).unwrap_or(199)
             })
             .collect();
         parts.sort_unstable();

@@ -176,7 +176,7 @@ fn signal(child: &Child, name: &str) {
 
 fn ended(mut child: Child) -> Option<i32> {
     let begun = Instant::now();
-    while begun.elapsed() < Duration::from_secs(60) {
+    while begun.elapsed() < Duration::from_mins(1) {
         if let Some(status) = child.try_wait().unwrap() {
             return status.code();
         }

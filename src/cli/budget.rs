@@ -41,7 +41,7 @@ pub(super) fn run(args: &BudgetArgs) -> Outcome {
             None => sample(&plan, design, &watch),
             Some(part) => sample_part(&plan, design, part, &watch),
         }
-        .map_err(not_flown)?;
+        .map_err(|error| not_flown(&error))?;
         if let Some((path, target)) = lifetimes_out {
             let first = part.map_or(0, |(part, parts)| design.part(part, parts).start);
             export(&plan, &mut flown, first, &path, target, &provenance)?;
@@ -93,7 +93,7 @@ pub(super) fn run_join(args: &JoinArgs) -> Outcome {
     status
 }
 
-fn not_flown(error: std::io::Error) -> Failure {
+fn not_flown(error: &std::io::Error) -> Failure {
     Failure::Machine(format!("error: the lifetimes could not be flown to their end: {error}"))
 }
 
@@ -108,7 +108,7 @@ fn report(
     if sample.store.rows() == 0 {
         return Err(Failure::Stopped("stopped before the first lifetimes were complete; nothing is written".to_owned()));
     }
-    let budget = Budget::of(plan, sample, watch).map_err(not_flown)?;
+    let budget = Budget::of(plan, sample, watch).map_err(|error| not_flown(&error))?;
     provenance.lifetimes = budget.lifetimes;
     let scenario = plan.scenario();
     let momentum = plan.summary();

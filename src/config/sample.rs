@@ -27,7 +27,7 @@ pub(crate) fn read_samples(node: &mut Node, faults: &mut Vec<Diagnostic>) {
                 let Some(entry) = map.get_mut(&key) else { continue };
                 match (&mut entry.node.body, key == "empirical") {
                     (Body::Map(parts), true) if parts.get("file").is_some() => match sample(parts) {
-                        Ok(numbers) => give(parts, numbers),
+                        Ok(numbers) => give(parts, &numbers),
                         Err(fault) => faults.push(*fault),
                     },
                     _ => read_samples(&mut entry.node, faults),
@@ -38,7 +38,7 @@ pub(crate) fn read_samples(node: &mut Node, faults: &mut Vec<Diagnostic>) {
 }
 
 /// Replaces `file` and `column` by `values`.
-fn give(parts: &mut Map, numbers: Vec<f64>) {
+fn give(parts: &mut Map, numbers: &[f64]) {
     let entries = std::mem::take(parts).into_entries();
     for Entry { key, key_place, node } in entries {
         match key.as_str() {

@@ -5,6 +5,7 @@ use std::borrow::Cow;
 use nalgebra::Vector3;
 
 use super::flight::{Flight, Place};
+use super::timing::cheapest;
 use super::{TooLarge, What};
 use crate::config::Hold;
 use crate::mission::{Band, BurnSource, Event, EventKind, When};
@@ -140,7 +141,7 @@ impl Flight<'_> {
             first * c + second * s
         };
         let directions: Vec<Vector3<f64>> = (0..ACROSS).map(at).collect();
-        self.plan.cheapest(self.pricer(stratum), &directions).unwrap_or(first)
+        cheapest(self.pricer(stratum), &directions).unwrap_or(first)
     }
 
     /// Holds the attitude within a band for a time, each axis by itself.

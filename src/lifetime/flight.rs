@@ -5,6 +5,7 @@ use std::borrow::Cow;
 use nalgebra::Vector3;
 
 use super::layouts::Lost;
+use super::timing::cheapest;
 use super::{Entry, Outcome, Plan, UnloadRate, What};
 use crate::config::Timing;
 use crate::propellant::{ROWS, Row};
@@ -178,7 +179,7 @@ impl<'a> Flight<'a> {
     pub(super) fn unload(&mut self, stratum: usize, windows: &[Vector3<f64>], rate: &UnloadRate) {
         let impulses: Vec<_> = windows.iter().map(|momentum| momentum * -rate.repeat).collect();
         if self.plan.timing(stratum) == Timing::Cheapest {
-            if let Some(impulse) = self.plan.cheapest(self.pricer(stratum), &impulses) {
+            if let Some(impulse) = cheapest(self.pricer(stratum), &impulses) {
                 self.fire(Row::WheelUnloading, stratum, &impulse, rate.count);
             }
             return;

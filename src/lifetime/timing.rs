@@ -16,21 +16,21 @@ pub struct TimingGain {
     pub cheapest_kg: f64,
 }
 
+/// The angular impulse (N·m·s, body frame) of least price: the windows of a stratum hold about the same momentum, met
+/// by the body at nine points of the orbit. One that cannot be given is taken only if none can.
+pub(super) fn cheapest(pricer: &Pricer, impulses: &[Vector3<f64>]) -> Option<Vector3<f64>> {
+    let price = |impulse: &Vector3<f64>| match pricer.price_map().price(impulse) {
+        Price::Served { kg } => kg,
+        Price::NotServed { .. } => f64::INFINITY,
+    };
+    let priced = impulses.iter().map(|impulse| (price(impulse), *impulse));
+    priced.reduce(|best, next| if next.0 < best.0 { next } else { best }).map(|(_, impulse)| impulse)
+}
+
 impl Plan {
     /// Where the unloads of a stratum take place.
     pub(super) fn timing(&self, stratum: usize) -> Timing {
         self.scenario.mission.phases[self.strata[stratum].phase].timing
-    }
-
-    /// The angular impulse (N·m·s, body frame) of least price: the windows of a stratum hold about the same momentum, met
-    /// by the body at nine points of the orbit. One that cannot be given is taken only if none can.
-    pub(super) fn cheapest(&self, pricer: &Pricer, impulses: &[Vector3<f64>]) -> Option<Vector3<f64>> {
-        let price = |impulse: &Vector3<f64>| match pricer.price_map().price(impulse) {
-            Price::Served { kg } => kg,
-            Price::NotServed { .. } => f64::INFINITY,
-        };
-        let priced = impulses.iter().map(|impulse| (price(impulse), *impulse));
-        priced.reduce(|best, next| if next.0 < best.0 { next } else { best }).map(|(_, impulse)| impulse)
     }
 
     /// What waiting for the cheapest point saves in the nominal mission; `None` where no phase waits.
@@ -49,7 +49,7 @@ impl Plan {
             let mut cost =
                 |impulse: &Vector3<f64>, times: f64| self.pricer(stratum).cost(impulse, times, &performance, &mut wear).unwrap_or(f64::NAN);
             gain.as_due_kg += impulses.iter().map(|impulse| cost(impulse, rate.count / impulses.len() as f64)).sum::<f64>();
-            gain.cheapest_kg += self.cheapest(self.pricer(stratum), &impulses).map_or(0.0, |impulse| cost(&impulse, rate.count));
+            gain.cheapest_kg += cheapest(self.pricer(stratum), &impulses).map_or(0.0, |impulse| cost(&impulse, rate.count));
         }
         Some(gain)
     }

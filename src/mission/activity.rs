@@ -38,7 +38,7 @@ impl SolarActivity {
         // Not given where nothing depends on it.
         let Some(written) = written else {
             let nominal = Spread::Fixed(Activity::MODERATE.f107);
-            return Some(Self::spread(Uncertain::fixed(nominal.nominal()), nominal, Course::Level(Activity::MODERATE)));
+            return Some(Self::spread(Uncertain::fixed(nominal.nominal()), &nominal, Course::Level(Activity::MODERATE)));
         };
         match (written.level, written.f107.clone(), &written.cycle) {
             (Some(level), None, None) => {
@@ -48,19 +48,19 @@ impl SolarActivity {
                     ActivityLevel::High => Activity::HIGH,
                 };
                 let fixed = Spread::Fixed(activity.f107);
-                Some(Self::spread(parameters.register(KEY, "sfu", fixed.clone()), fixed, Course::Level(activity)))
+                Some(Self::spread(parameters.register(KEY, "sfu", fixed.clone()), &fixed, Course::Level(activity)))
             }
             (None, Some(f107), None) => {
                 let key = format!("{KEY}.f107");
                 let spread = flux(&key, f107.0, faults)?;
-                Some(Self::spread(parameters.register(key, "sfu", spread.clone()), spread, Course::Constant))
+                Some(Self::spread(parameters.register(key, "sfu", spread.clone()), &spread, Course::Constant))
             }
             (None, None, Some(cycle)) => {
                 let course = course(cycle, faults);
                 let key = format!("{KEY}.cycle.amplitude");
                 let amplitude = cycle.amplitude.clone().map_or(Spread::Fixed(1.0), |amplitude| amplitude.0);
                 let amplitude = faults.spread(&key, amplitude, 0.0, 3.0, "a factor on the rise of a cycle")?;
-                Some(Self::spread(parameters.register(key, "", amplitude.clone()), amplitude, course?))
+                Some(Self::spread(parameters.register(key, "", amplitude.clone()), &amplitude, course?))
             }
             _ => {
                 let help = "keep one: `level: moderate`, `f107: 90 .. 190`, or `cycle: {start: …, period: …, low: …, high: …}`";
@@ -70,7 +70,7 @@ impl SolarActivity {
         }
     }
 
-    fn spread(chance: Uncertain, spread: Spread, course: Course) -> Self {
+    fn spread(chance: Uncertain, spread: &Spread, course: Course) -> Self {
         let (low, high) = spread.support();
         let node = |k: usize| f64::midpoint(low, high) - (high - low) / 2.0 * (PI * (k as f64 + 0.5) / LEVELS as f64).cos();
         let levels = if spread.is_fixed() { vec![low] } else { (0..LEVELS).map(node).collect() };

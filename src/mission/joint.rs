@@ -41,7 +41,9 @@ pub(super) fn apply(written: &Uncertainty, events: &[String], parameters: &mut P
                 let help = "draw it for each `phase`, or name a quantity of an event, such as `PHASE.EVENT.delta_v`";
                 faults.push(&at, format!("`{name}` is no quantity of an event"), help);
             } else {
-                places.into_iter().for_each(|place| parameters.draw_anew(place, anew));
+                for place in places {
+                    parameters.draw_anew(place, anew);
+                }
             }
         }
     }

@@ -3,6 +3,8 @@
 //! The plain way is one matrix product into a matrix of the momentum of all windows of all lifetimes, which then goes to
 //! memory and back. Here the momentum of one window stays in registers, or at most in the nearest cache, until it is used.
 
+#![expect(clippy::inline_always, reason = "without it the code would not be compiled for the instruction set chosen")]
+
 use pulp::{Arch, Simd, WithSimd};
 
 use super::{FoldedBasis, Stratum};

@@ -163,7 +163,7 @@ pub(super) fn share_within(store: &mut Store, column: usize, most: f64, confiden
     }
     let moments = Moments::from_slice(&covered.iter().map(|count| *count as f64 / size as f64).collect::<Vec<_>>());
     let error = students(moments.count(), confidence).unwrap_or(f64::INFINITY) * moments.sd() / (moments.count() as f64).sqrt();
-    if moments.sd() > 0.0 && rows % size == 0 {
+    if moments.sd() > 0.0 && rows.is_multiple_of(size) {
         return Ok(Proportion { share: plain.share, lower: (plain.share - error).max(0.0), upper: (plain.share + error).min(1.0) });
     }
     // All replicates alike say nothing of what they missed: the limits of plain draws are then the safer ones.

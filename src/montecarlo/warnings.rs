@@ -50,12 +50,6 @@ pub(super) fn warnings(plan: &Plan, budget: &Budget) -> Vec<String> {
         }
     }
     list.extend(runs_dry(plan, budget));
-    if budget.needed.nominal > budget.loaded_kg {
-        list.push(format!(
-            "the propellant loaded, {:.2} kg, does not cover the nominal need of {:.2} kg",
-            budget.loaded_kg, budget.needed.nominal
-        ));
-    }
     list.extend(of_models(plan));
     for found in crate::layout::impingements(plan.vehicle()) {
         let angle = found.angle_rad.to_degrees();
@@ -116,16 +110,21 @@ fn of_pulses(plan: &Plan) -> Vec<String> {
     list
 }
 
-/// When the tank is empty before the mission ends, in the largest share of lifetimes that is told.
-fn runs_dry(plan: &Plan, budget: &Budget) -> Option<String> {
+/// When the tank is empty before the mission ends, in the largest share of lifetimes that is told, and in the nominal mission.
+fn runs_dry(plan: &Plan, budget: &Budget) -> Vec<String> {
+    let mut list = Vec::new();
     let mission_s = plan.scenario().mission.duration_s();
     if let Some((p, Some(life_s))) = budget.life_s.iter().rev().find(|(_, life)| life.is_some_and(|life| life < mission_s)) {
-        return Some(format!(
+        list.push(format!(
             "the usable propellant is gone by month {:.0} of {:.0} in {:.0} % of the lifetimes",
             life_s / SECONDS_PER_YEAR * 12.0,
             mission_s / SECONDS_PER_YEAR * 12.0,
             (1.0 - p) * 100.0
         ));
     }
-    None
+    let (loaded, needed) = (budget.loaded_kg, budget.needed.nominal);
+    if needed > loaded {
+        list.push(format!("the propellant loaded, {loaded:.2} kg, does not cover the nominal need of {needed:.2} kg"));
+    }
+    list
 }

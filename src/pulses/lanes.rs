@@ -3,6 +3,8 @@
 //! The instruction set is chosen when the program runs, so that one binary serves old and new machines. Every lane does the
 //! same operations whatever stands beside it.
 
+#![expect(clippy::inline_always, reason = "without it the code would not be compiled for the instruction set chosen")]
+
 use pulp::{Arch, Simd, WithSimd};
 
 use super::{Performance, Pricer, Wear};

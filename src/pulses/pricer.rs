@@ -131,11 +131,11 @@ impl Pricer {
     #[must_use]
     pub fn with_loss(propulsion: &Propulsion, centre_of_mass_m: &Vector3<f64>, choice: NetForceChoice, lost: &[usize]) -> Self {
         let mut generators = Self::generators(propulsion, centre_of_mass_m);
-        lost.iter().for_each(|index| {
+        for index in lost {
             if let Some(generator) = generators.get_mut(*index) {
                 generator.most = 0.0;
             }
-        });
+        }
         let net = match choice {
             NetForceChoice::Zero => NetForce::Zero,
             NetForceChoice::Any => NetForce::Any,
