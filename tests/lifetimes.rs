@@ -246,9 +246,10 @@ fn a_centre_of_mass_moves_the_arms_of_thrusters() {
         let exact = Pricer::new(&vehicle.propulsion, &at).price_map().price(&-torque_impulse);
         let couplet::authority::Price::Served { kg } = exact else { panic!("not served") };
         let got = outcome.row(Row::WheelUnloading);
-        // On-board software does not know the centre that was drawn: where two choices cost the same, it may take the one
-        // whose arm has become shorter, 2 m − δ, and not the one of 2 m + δ. It is never cheaper.
-        let dearest = (2.0 + at.norm()) / (2.0 - at.norm());
+        // On-board software does not know the centre that was drawn: where choices cost the same it may take arms of 2 m − δ and
+        // not of 2 m + δ, about x and about y, and the torque that these leave across takes a third firing: four times δ/2 m in
+        // all. It is never cheaper.
+        let dearest = 1.0 + 4.0 * at.norm() / 2.0;
         assert!(got >= kg * (1.0 - 1e-6) && got <= kg * dearest, "{got} {kg}");
     }
     assert!(mean_and_sd(&totals(&free, 64)).1 > 1e-4);
