@@ -6,7 +6,7 @@ use super::layout::{axes_table, verdict_text};
 use super::momentum::phase_text;
 use super::table::Table;
 use super::unload::unload_text;
-use super::words::{heading, number, paragraph, percent, plain, vector};
+use super::words::{heading, number, paragraph, percent, plain, shortened, vector};
 use crate::config::MarginRule;
 use crate::layout::TravelEnd;
 use crate::lifetime::{PhaseSummary, TimingGain, TypicalUnload};
@@ -70,7 +70,8 @@ fn answer(budget: &Budget) -> String {
 }
 
 fn ledger(budget: &Budget, margin: &Margin) -> String {
-    let kg = |x: f64| format!("{x:.3}");
+    // Without the sign of a zero that was rounded to.
+    let kg = |x: f64| format!("{:.3}", if x.abs() < 5e-4 { 0.0 } else { x });
     let mut table = Table::new(&["propellant, kg", "nominal", "mean", "P50", "P95", "P99"]);
     // Functions that the mission does not use are left out; the other formats have them all.
     let used = |d: &Distribution| d.nominal.abs() > 0.0 || d.sd > 0.0;
@@ -176,7 +177,7 @@ fn drivers(budget: &Budget) -> String {
     let whole = |share: f64| (share * 100.0).round().max(0.0).abs();
     let share = |(value, (low, high)): (f64, (f64, f64))| format!("{} % ({} to {})", whole(value), whole(low), whole(high));
     for driver in budget.drivers.iter().take(8) {
-        table.push(vec![driver.parameter.clone(), share(driver.first_order), share(driver.total)]);
+        table.push(vec![shortened(&driver.parameter, 42), share(driver.first_order), share(driver.total)]);
     }
     let note = "Shares of the variance (Sobol' indices) with 95 % bootstrap intervals; vectors count as one.";
     format!("{}{}\n{}", table.to_text(), paragraph("  ", "  ", note), swing_table(budget))
@@ -189,7 +190,7 @@ fn swing_table(budget: &Budget) -> String {
     for swing in budget.swings.iter().take(8) {
         let value = |x: f64| if swing.unit.is_empty() { number(x, 3) } else { format!("{} {}", number(x, 3), swing.unit) };
         let ((low, high), (at_low, at_high)) = (swing.values, swing.totals_kg);
-        table.push(vec![swing.parameter.clone(), value(low), value(high), kg(at_low), kg(at_high)]);
+        table.push(vec![shortened(&swing.parameter, 34), value(low), value(high), kg(at_low), kg(at_high)]);
     }
     let note = format!(
         "The nominal attitude total of {} kg with one quantity at its P5 and its P95, all others nominal.",

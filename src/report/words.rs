@@ -70,3 +70,14 @@ pub(super) fn heading(text: &str) -> String {
 pub(super) fn plain(key: &str) -> String {
     key.replace('_', " ")
 }
+
+/// A name with its middle left out if it is longer than `most` characters.
+pub(super) fn shortened(name: &str, most: usize) -> String {
+    let letters: Vec<char> = name.chars().collect();
+    if letters.len() <= most {
+        return name.to_owned();
+    }
+    let kept = most.saturating_sub(1);
+    let (front, back) = (kept.div_ceil(2), kept / 2);
+    letters.iter().take(front).chain(std::iter::once(&'…')).chain(letters.iter().skip(letters.len() - back)).collect()
+}
