@@ -186,6 +186,10 @@ impl Reading<'_> {
     /// Dates within the phase as times after the start of the mission, s.
     fn dates(&mut self, at: &str, written: &[String]) -> Option<Vec<f64>> {
         let (from_s, length_s) = self.span_s;
+        if written.is_empty() {
+            self.faults.push(at, "expected at least one date, got an empty list", "write `on: [2030-05-01]`, or leave `when` out");
+            return None;
+        }
         let mut times = Vec::new();
         for (index, text) in written.iter().enumerate() {
             let at = format!("{at}[{index}]");
@@ -261,7 +265,13 @@ impl Reading<'_> {
             (None, false) => {
                 let mut found = Vec::new();
                 for (k, wanted) in written.thrusters.iter().enumerate() {
-                    if let Some(index) = thrusters.clone().position(|name| name == wanted) {
+                    if written.thrusters.iter().take(k).any(|other| other == wanted) {
+                        self.faults.push(
+                            &format!("{at}.thrusters[{k}]"),
+                            format!("`{wanted}` stands here twice"),
+                            "name each thruster once",
+                        );
+                    } else if let Some(index) = thrusters.clone().position(|name| name == wanted) {
                         found.push(index);
                     } else {
                         let help = did_you_mean(wanted, thrusters.clone()).unwrap_or_else(|| "name one of `thrusters`".to_owned());

@@ -27,10 +27,11 @@ pub use survey::Survey;
 
 use std::path::Path;
 
+use crate::authority::{Authority, Generator, NetForce};
 use crate::config::Spec;
 use crate::environment::{Air, Body, Epoch, Exponential};
 use crate::uncertain::{Parameters, Spread, Uncertain};
-use crate::vehicle::{Faults, Vehicle};
+use crate::vehicle::{Faults, Vehicle, Wheel, Wheels};
 
 /// A validated mission.
 #[derive(Debug, Clone)]
@@ -127,6 +128,17 @@ impl Mission {
     }
 }
 
+/// Something must be left of the wheels beside what is kept free.
+fn check_reserve(wheels: &Wheels, faults: &mut Faults) {
+    let one = |wheel: &Wheel| Generator::wheel(wheel.axis.into_inner(), wheels.capacity_n_m_s);
+    let held = Authority::new(&wheels.wheels.iter().map(one).collect::<Vec<_>>(), NetForce::Any).guaranteed();
+    if wheels.reserve_n_m_s >= held {
+        let reserve = wheels.reserve_n_m_s;
+        let message = format!("nothing is left: the wheels hold {held:.3} N m s in every direction, and {reserve:.3} are to be kept free");
+        faults.push_also("wheels.reserve", message, "keep less free, or take larger wheels", "wheels.capacity", "of each wheel");
+    }
+}
+
 /// The whole input: vehicle, mission and the registry of what is uncertain.
 #[derive(Debug, Clone)]
 pub struct Scenario {
@@ -167,6 +179,9 @@ impl Scenario {
         // A quantity with a fault of its own is not registered: asking for it would only say so again.
         let driver_groups =
             if faults.count() == 0 { joint::apply(&spec.uncertainty, &events, &mut parameters, &mut faults) } else { Vec::new() };
+        if let Some(wheels) = vehicle.as_ref().and_then(|vehicle| vehicle.wheels.as_ref()) {
+            check_reserve(wheels, &mut faults);
+        }
         let settings = settings::settings(&spec.budget, &mut faults);
         let requirements = settings::requirements(spec, &mut faults);
         match (vehicle, mission, settings) {

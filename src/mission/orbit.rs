@@ -26,6 +26,18 @@ pub(super) fn read(written: &config::Orbit, at: &str, start: Epoch, files: &File
         faults.push(at, format!("`{}` goes without another way of saying where the spacecraft goes", given.join("` and `")), "keep one");
         return None;
     }
+    if let Some(way) = given.first() {
+        let plane = [
+            ("inclination", written.inclination.is_some()),
+            ("local_time", written.local_time.is_some()),
+            ("ascending_node", written.ascending_node.is_some()),
+        ];
+        if let Some((key, _)) = plane.iter().find(|(_, given)| *given) {
+            let help = format!("leave it out; an overlay takes it away with `{key}: null`");
+            faults.push(&format!("{at}.{key}"), format!("says nothing where `{way}` is given"), help);
+            return None;
+        }
+    }
     if let Some(stationary) = &written.stationary {
         return self::stationary(stationary, body, at, start, faults);
     }
@@ -177,6 +189,7 @@ fn plane(
 ) -> Option<(f64, f64)> {
     match (written.inclination, written.local_time, written.ascending_node) {
         (None, Some(local_time), None) => {
+            let hour = faults.within(&format!("{at}.local_time"), local_time.0 / 3600.0, 0.0, 24.0, "a local time in hours")?;
             let Some(inclination) = sun_synchronous_inclination(axis, eccentricity, body) else {
                 faults.push(
                     &format!("{at}.local_time"),
@@ -185,7 +198,7 @@ fn plane(
                 );
                 return None;
             };
-            Some((inclination, node_at_local_time(body, start, local_time.0 / 3600.0)))
+            Some((inclination, node_at_local_time(body, start, hour)))
         }
         (Some(inclination), None, node) => {
             let most = std::f64::consts::PI;

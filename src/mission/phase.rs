@@ -72,13 +72,18 @@ pub(super) fn read(spec: &Spec, start: Epoch, files: &Files<'_>, parameters: &mu
     faults.unique("mission.phases", spec.mission.phases.iter().map(|phase| phase.name.as_str()));
     let shared = orbit::read(&spec.mission.orbit, "mission.orbit", start, files, faults);
     let mut start_s = 0.0;
+    let mut sound = true;
     let mut phases = Vec::new();
     for (index, written) in spec.mission.phases.iter().enumerate() {
         let at = format!("mission.phases[{index}]");
         let own = written.orbit.as_ref().map(|own| orbit::read(own, &format!("{at}.orbit"), start, files, faults));
         let orbit_at = if own.is_some() { format!("{at}.orbit") } else { "mission.orbit".to_owned() };
-        let duration = faults.positive(&format!("{at}.duration"), written.duration.0, "a duration");
-        check_start(written.start.as_deref(), &at, start.plus_seconds(start_s), faults);
+        let duration = duration(written.duration.0, &at, start.plus_seconds(start_s), faults);
+        // Where a duration before is wrong, nothing is known of this start.
+        if sound {
+            check_start(written.start.as_deref(), &at, start.plus_seconds(start_s), faults);
+        }
+        sound = sound && duration.is_some();
         let unload = policy(written.unload.as_ref(), &at, spec.wheels.is_some(), faults);
         let attitude = read_attitude::read(&written.attitude, &format!("{at}.attitude"), &written.name, parameters, faults);
         let span_s = (start_s, duration.unwrap_or(0.0));
@@ -122,6 +127,19 @@ fn check_start(written: Option<&str>, at: &str, expected: Epoch, faults: &mut Fa
     }
 }
 
+/// A duration above zero that ends within the years that dates may have.
+fn duration(duration_s: f64, at: &str, from: Epoch, faults: &mut Faults) -> Option<f64> {
+    const LAST_YEAR: f64 = 2200.0;
+    let key = format!("{at}.duration");
+    let duration_s = faults.positive(&key, duration_s, "a duration")?;
+    let ends = from.decimal_year() + duration_s / (365.25 * DAY_S);
+    if ends > LAST_YEAR {
+        faults.push(&key, format!("this phase would end in the year {ends:.0}, and nothing is known of the time after 2200"), "shorten it");
+        return None;
+    }
+    Some(duration_s)
+}
+
 /// Waiting for the cheapest point of an orbit needs an orbit in which the attitude comes back.
 fn check_timing(timing: Timing, trajectory: &Trajectory, attitude: &Attitude, at: &str, faults: &mut Faults) {
     if timing == Timing::Cheapest && (trajectory.revolution_s().is_none() || attitude.law.dwell_s().is_some()) {
@@ -134,6 +152,7 @@ fn check_timing(timing: Timing, trajectory: &Trajectory, attitude: &Attitude, at
 }
 
 fn events(written: &config::Phase, at: &str, with: &mut Reading<'_>) -> Vec<Event> {
+    with.faults.unique(&format!("{at}.events"), written.events.iter().map(|event| event.name.as_str()));
     let listed = written.events.iter().enumerate();
     listed.filter_map(|(k, event)| event::read(event, &format!("{at}.events[{k}]"), with)).collect()
 }

@@ -99,7 +99,7 @@ fn law(written: &Written<'_>, at: &str, faults: &mut Faults) -> Option<Law> {
     }
     let to = written.to.unwrap_or(config::Direction::Nadir);
     let (second_axis, towards) = second(written, axis, to, at, faults)?;
-    let (to, towards) = (direction(&to), direction(&towards));
+    let (to, towards) = (direction(&to, &format!("{at}.to"), faults)?, direction(&towards, &format!("{at}.towards"), faults)?);
     if to.0 == towards.0 {
         let help = "point the second axis towards something else: `ecliptic_north`, `orbit_normal`, `earth`, `velocity`, `sun`";
         faults.push(at, "`to` and `towards` lie along one line, so the attitude about it is undefined", help);
@@ -147,7 +147,7 @@ fn second(
 
 fn survey(written: &Written<'_>, own: &config::Survey, axis: Vector3<f64>, at: &str, faults: &mut Faults) -> Option<Law> {
     let (second_axis, towards) = second(written, axis, config::Direction::Sun, at, faults)?;
-    let at = format!("{at}.survey");
+    let (attitude_at, at) = (at, format!("{at}.survey"));
     let half_turn = std::f64::consts::PI;
     let mut angle = |key: &str, value: f64| {
         if (0.0..=half_turn).contains(&value) {
@@ -170,13 +170,14 @@ fn survey(written: &Written<'_>, own: &config::Survey, axis: Vector3<f64>, at: &
         return None;
     }
     let (sun_angle_rad, shift) = ([from, to], survey::shift(own.seed.unwrap_or(1)));
-    Some(Law::Survey(Survey { axis, second_axis, towards: direction(&towards), sun_angle_rad, dwell_s: dwell?, shift }))
+    let towards = direction(&towards, &format!("{attitude_at}.towards"), faults)?;
+    Some(Law::Survey(Survey { axis, second_axis, towards, sun_angle_rad, dwell_s: dwell?, shift }))
 }
 
 /// The direction, and whether its opposite is meant.
-fn direction(written: &config::Direction) -> (Direction, bool) {
+fn direction(written: &config::Direction, at: &str, faults: &mut Faults) -> Option<(Direction, bool)> {
     use config::Direction as D;
-    match written {
+    let found = match written {
         D::Nadir => (Direction::Nadir, false),
         D::Zenith => (Direction::Nadir, true),
         D::Sun => (Direction::Sun, false),
@@ -188,10 +189,17 @@ fn direction(written: &config::Direction) -> (Direction, bool) {
         D::EclipticNorth => (Direction::EclipticNorth, false),
         D::CelestialNorth => (Direction::Fixed(Vector3::z()), false),
         D::Sky(sky) => {
-            let ((sa, ca), (sd, cd)) = (sky.right_ascension.0.sin_cos(), sky.declination.0.sin_cos());
+            let declination = sky.declination.0;
+            if declination.abs() > std::f64::consts::FRAC_PI_2 {
+                let message = "expected a declination from -90 to 90 deg";
+                faults.push(&format!("{at}.sky.declination"), message, "give the angle from the celestial equator");
+                return None;
+            }
+            let ((sa, ca), (sd, cd)) = (sky.right_ascension.0.sin_cos(), declination.sin_cos());
             (Direction::Fixed(Vector3::new(cd * ca, cd * sa, sd)), false)
         }
-    }
+    };
+    Some(found)
 }
 
 /// Notes an attitude whose two directions lie along one another for half of a phase or more. Where they only pass

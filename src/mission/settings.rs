@@ -143,6 +143,10 @@ pub(super) fn settings(written: &config::Budget, faults: &mut Faults) -> Option<
     let burns = faults.within("budget.burn_margin", written.burn_margin.map_or(burns, |margin| margin.0), 0.0, 100.0, "a margin");
     let confidence = faults.within("budget.confidence", written.confidence.map_or(0.95, |c| c.0), 0.5, 0.999_999, "a confidence");
     let tolerance = faults.within("budget.tolerance", written.tolerance.map_or(0.01, |share| share.0), 1e-3, 0.2, "a tolerance");
+    if let Some(number) = lifetimes.filter(|number| number.fract() > 0.0) {
+        let help = format!("write {:.0}", number.ceil());
+        faults.push("budget.lifetimes", format!("expected a whole number of lifetimes, got {number}"), help);
+    }
     let precision = precision(written.precision.as_ref(), faults);
     let sampling = sampling(written, faults);
     let lifetimes = whole(lifetimes?);
@@ -222,6 +226,14 @@ fn requirement(spec: &Spec, written: &config::Requirement, at: &str, faults: &mu
     };
     let (dimension, _, name, example) = written.figure.words();
     match units::parse(text, dimension, name, example) {
+        Ok(limit) if limit < 0.0 => {
+            faults.push(
+                &format!("{at}.{key}"),
+                format!("`{text}` bounds a figure that is never below zero"),
+                "give a bound of at least zero",
+            );
+            None
+        }
         Ok(limit) => {
             let scope = scope(spec, written, at, faults)?;
             Some(Requirement { name: written.name.clone(), figure: written.figure, scope, bound: make(limit) })

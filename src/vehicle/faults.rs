@@ -108,7 +108,9 @@ impl Faults {
     pub fn unique<'a>(&mut self, list: &str, names: impl Iterator<Item = &'a str>) {
         let mut seen: Vec<&str> = Vec::new();
         for (index, name) in names.enumerate() {
-            if let Some(first) = seen.iter().position(|known| *known == name) {
+            if name.trim().is_empty() {
+                self.push(&format!("{list}[{index}].name"), "expected a name, got nothing", "give it a name: results and messages use it");
+            } else if let Some(first) = seen.iter().position(|known| *known == name) {
                 self.push_also(
                     &format!("{list}[{index}].name"),
                     format!("the name `{name}` stands twice"),

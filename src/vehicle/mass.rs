@@ -58,6 +58,13 @@ impl MassProperties {
         let [xx, yy, zz] = diagonal;
         let [xy, xz, yz] = products;
         let inertia_kg_m2 = [xx, yy, zz, xy, xz, yz];
+        if written.centre_of_mass_box.is_some_and(|half| half.0.iter().any(|x| *x < 0.0)) {
+            faults.push(
+                "spacecraft.centre_of_mass_box",
+                "expected half widths of at least zero",
+                "give the distance to either side: `5 5 5 mm`",
+            );
+        }
         check_inertia(&symmetric(inertia_kg_m2.map(|element| element.nominal())), faults)?;
         Some(Self {
             mass_kg: parameters.register("spacecraft.dry_mass", "kg", mass?),

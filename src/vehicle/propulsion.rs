@@ -154,7 +154,13 @@ impl Propulsion {
         for (index, written) in spec.thrusters.iter().enumerate() {
             thrusters.extend(thruster(index, written, shared_written, shared_thrust, shared_speed, parameters, faults));
         }
-        let qualified_pulses = spec.propulsion.qualified_pulses.map(|pulses| pulses.0);
+        for (key, value, what) in [
+            ("propulsion.qualified_pulses", shared_written.qualified_pulses.map(|pulses| pulses.0), "a number of pulses"),
+            ("propulsion.qualified_throughput", shared_written.qualified_throughput.map(|mass| mass.0), "a mass"),
+        ] {
+            value.map(|value| faults.positive(key, value, what));
+        }
+        let qualified_pulses = shared_written.qualified_pulses.map(|pulses| pulses.0);
         let most = std::f64::consts::FRAC_PI_2;
         let alignment = shared_written.alignment.map_or(0.0, |angle| angle.0);
         let alignment = faults.within("propulsion.alignment", alignment, 0.0, most, "an angle in rad");
