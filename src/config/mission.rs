@@ -161,9 +161,37 @@ pub struct Requirement {
     #[serde(default)]
     pub net_force: super::NetForceChoice,
     /// Upper bound, in the unit of the figure.
-    pub at_most: Option<String>,
+    pub at_most: Option<BoundText>,
     /// Lower bound, in the unit of the figure.
-    pub at_least: Option<String>,
+    pub at_least: Option<BoundText>,
+}
+
+/// A bound as it is written; its unit depends on the figure.
+#[derive(Debug, Clone, PartialEq, Eq)]
+pub struct BoundText(pub String);
+
+impl<'de> Deserialize<'de> for BoundText {
+    fn deserialize<D: serde::Deserializer<'de>>(deserializer: D) -> Result<Self, D::Error> {
+        match serde_yaml::Value::deserialize(deserializer)? {
+            serde_yaml::Value::String(text) => Ok(Self(text)),
+            serde_yaml::Value::Number(number) => Ok(Self(number.to_string())),
+            _ => Err(serde::de::Error::custom("expected a number with its unit, such as `18 kg`")),
+        }
+    }
+}
+
+impl JsonSchema for BoundText {
+    fn schema_name() -> std::borrow::Cow<'static, str> {
+        "Bound".into()
+    }
+
+    fn json_schema(_: &mut schemars::SchemaGenerator) -> schemars::Schema {
+        schemars::json_schema!({ "type": ["string", "number"] })
+    }
+
+    fn inline_schema() -> bool {
+        true
+    }
 }
 
 /// A result that a requirement can bound.

@@ -153,6 +153,12 @@ impl<'a> Schema<'a> {
         }
     }
 
+    /// An example of a quantity of this kind.
+    pub(crate) fn quantity_example(&self) -> &'static str {
+        let name = self.get("x-quantity").and_then(Json::as_str).unwrap_or_default();
+        super::leaf::kind_named(name).map_or("1 N", |words| words.example)
+    }
+
     fn expected_here(&self) -> Vec<String> {
         if let Some(name) = self.get("x-quantity").and_then(Json::as_str) {
             return vec![spoken(name)];

@@ -189,10 +189,13 @@ fn remedy(schema: &Schema<'_>, value: &Value) -> String {
             let text = serde_yaml::to_string(value).unwrap_or_default();
             format!("put it in quotes: `\"{}\"`", text.trim())
         }
-        Value::Number(_) if wants("integer") => "write a number without a fraction".to_owned(),
-        Value::String(_) if wants("number") || wants("integer") => {
-            "write digits, with a decimal point if need be, without quotes and unit".to_owned()
+        Value::Mapping(_) if schema.is_quantity() => {
+            format!("this value takes no spread: write one value, such as `{}`", schema.quantity_example())
         }
+        _ if schema.is_quantity() => format!("write a value with its unit, such as `{}`", schema.quantity_example()),
+        Value::Number(_) if wants("integer") => "write a number without a fraction".to_owned(),
+        Value::String(_) if wants("integer") => "write a whole number in digits, such as `1`".to_owned(),
+        Value::String(_) if wants("number") => "write digits, with a decimal point if need be, without quotes and unit".to_owned(),
         Value::String(text) if wants("boolean") => match text.to_lowercase().as_str() {
             "yes" | "on" | "y" => "write `true`".to_owned(),
             "no" | "off" | "n" => "write `false`".to_owned(),

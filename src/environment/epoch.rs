@@ -65,13 +65,21 @@ pub enum EpochError {
     #[error("`{0}` is outside the years {first} to {last}, for which the models hold", first = YEARS.start(), last = YEARS.end())]
     OutOfRange(String),
     /// Not a date of the calendar in ISO 8601 form.
-    #[error("`{text}` is not a date such as `2028-03-01` or `2028-03-01T12:00:00Z`: {cause}")]
+    #[error("`{text}` is not a date: {}", plainly(cause))]
     NotADate {
         /// What was written.
         text: String,
         /// What is wrong with it.
         cause: String,
     },
+}
+
+/// The library's cause without what only programmers want to know.
+fn plainly(cause: &str) -> String {
+    let Some((_, rest)) = cause.rsplit_once(": parameter ") else { return cause.to_owned() };
+    let rest = rest.replace(['\'', '`'], "").replace("..=", " to ");
+    let rest = rest.replace("is not in the required range of", "must be in the range");
+    format!("its {}", rest.replace("is invalid, must be in range", "must be in the range"))
 }
 
 impl Epoch {

@@ -151,9 +151,12 @@ pub(super) fn read(written: &config::Event, at: &str, with: &mut Reading<'_>) ->
         written.axis_turn.is_some(),
         written.safe_mode.is_some(),
     ];
-    if given.iter().filter(|given| **given).count() != 1 {
+    let count = given.iter().filter(|given| **given).count();
+    if count != 1 {
         let message = "expected one of `rate_damping`, `slews`, `burn`, `deadband`, `spin`, `axis_turn` and `safe_mode`";
-        with.faults.push(at, message, "keep one of them, and write a second event for the other");
+        let message = if count == 0 { format!("{message}, got none") } else { format!("{message}, got {count}") };
+        let none = "say what happens, such as `slews: {axis: 0 0 1, angle: 90 deg, rate: 0.2 deg/s, count: 4}`";
+        with.faults.push(at, message, if count == 0 { none } else { "keep one of them, and write a second event for the other" });
         return None;
     }
     // With the phase: events of two phases may share a name, and must not share their draws.

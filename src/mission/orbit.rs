@@ -23,7 +23,11 @@ pub(super) fn read(written: &config::Orbit, at: &str, start: Epoch, files: &File
     let given: Vec<&str> = ways.iter().filter(|(_, given)| *given).map(|(key, _)| *key).collect();
     let sized = written.altitude.is_some() || written.perigee_altitude.is_some() || written.semi_major_axis.is_some();
     if given.len() + usize::from(sized) > 1 {
-        faults.push(at, format!("`{}` goes without another way of saying where the spacecraft goes", given.join("` and `")), "keep one");
+        let (list, verb) = (
+            given.join("` and `"),
+            if given.len() > 1 { "do not go together" } else { "goes without another way of saying where it flies" },
+        );
+        faults.push(at, format!("`{list}` {verb}"), "keep one; an overlay takes the others away with `null`, such as `altitude: null`");
         return None;
     }
     if let Some(way) = given.first() {

@@ -175,8 +175,12 @@ fn policy(written: Option<&config::Unload>, at: &str, has_wheels: bool, faults: 
         _ => {
             faults.push(
                 &format!("{at}.unload"),
-                "expected one of `every` and `at_fill`",
-                "keep one: `every: 1 d`, or `at_fill: 70 %`; an overlay takes the other away with `every: null`",
+                if written.every.is_some() {
+                    "expected one of `every` and `at_fill`, got both"
+                } else {
+                    "expected one of `every` and `at_fill`, got neither"
+                },
+                "give one: `every: 1 d`, or `at_fill: 70 %`; an overlay takes the other away with `every: null`",
             );
             None
         }

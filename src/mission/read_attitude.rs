@@ -77,6 +77,10 @@ fn mix(written: &config::Mix, at: &str, faults: &mut Faults) -> Option<Law> {
         parts.push(share.zip(law));
     }
     let parts = parts.into_iter().collect::<Option<Vec<_>>>()?;
+    if parts.is_empty() {
+        faults.push(&format!("{at}.of"), "expected at least one part, got an empty list", "describe each part with its `share`");
+        return None;
+    }
     let sum: f64 = parts.iter().map(|(share, _)| share).sum();
     if (sum - 1.0).abs() > SHARES_ROUNDING {
         faults.push(&format!("{at}.of"), format!("the shares add up to {sum:.4}"), "make the shares add up to 1 (100 %)");

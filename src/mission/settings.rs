@@ -205,7 +205,13 @@ fn scope(spec: &Spec, written: &config::Requirement, at: &str, faults: &mut Faul
         let names = ["any thruster", "any string"].into_iter();
         let thrusters = spec.thrusters.iter().map(|thruster| thruster.name.as_str());
         let strings = spec.thrusters.iter().filter_map(|thruster| thruster.string.as_deref());
-        let known = names.chain(thrusters).chain(strings);
+        let mut known: Vec<&str> = Vec::new();
+        for name in names.chain(thrusters).chain(strings) {
+            if !known.contains(&name) {
+                known.push(name);
+            }
+        }
+        let known = known.iter().copied();
         if !known.clone().any(|name| name == out) {
             let help = config::did_you_mean(out, known).unwrap_or_default();
             faults.push(&format!("{at}.out"), format!("`{out}` is no thruster and no string"), help);
@@ -217,15 +223,27 @@ fn scope(spec: &Spec, written: &config::Requirement, at: &str, faults: &mut Faul
 
 fn requirement(spec: &Spec, written: &config::Requirement, at: &str, faults: &mut Faults) -> Option<Requirement> {
     let (key, text, make): (&str, &str, fn(f64) -> Bound) = match (&written.at_most, &written.at_least) {
-        (Some(text), None) => ("at_most", text, Bound::AtMost),
-        (None, Some(text)) => ("at_least", text, Bound::AtLeast),
+        (Some(text), None) => ("at_most", &text.0, Bound::AtMost),
+        (None, Some(text)) => ("at_least", &text.0, Bound::AtLeast),
         _ => {
-            faults.push(at, "expected one of `at_most` and `at_least`", "keep one of them");
+            let (got, help) = match &written.at_most {
+                None => ("neither", "say what must hold, such as `at_most: 18 kg`"),
+                Some(_) => ("both", "keep one of them, and write a second requirement for the other"),
+            };
+            faults.push(at, format!("expected one of `at_most` and `at_least`, got {got}"), help);
             return None;
         }
     };
     let (dimension, _, name, example) = written.figure.words();
     match units::parse(text, dimension, name, example) {
+        Ok(limit) if limit > 1.0 && matches!(written.figure, Figure::ProbabilityEnough) => {
+            faults.push(
+                &format!("{at}.{key}"),
+                format!("`{text}` is no probability"),
+                format!("give a share up to 1; is `{text} %` meant?"),
+            );
+            None
+        }
         Ok(limit) if limit < 0.0 => {
             faults.push(
                 &format!("{at}.{key}"),

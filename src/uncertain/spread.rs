@@ -109,7 +109,10 @@ impl Spread {
             return Ok(Self::Lognormal { median, ln_sigma });
         }
         refuse(
-            format!("expected a median above zero and a factor above one, got {median} and {}", ln_sigma.exp()),
+            format!(
+                "expected a median above zero and a factor above one, got {median} and {}",
+                if ln_sigma.is_nan() { "one below zero".to_owned() } else { ln_sigma.exp().to_string() }
+            ),
             "`factor` is the ratio of the one-sigma value to the median, such as 1.3",
         )
     }

@@ -58,11 +58,21 @@ fn split_power(word: &str) -> (&str, Option<i8>) {
     (caret, power_text.parse().ok().filter(|power: &i8| *power != 0 && power.abs() <= 6))
 }
 
+/// Units with a prefix that are often meant.
+const PREFIXED: [&str; 10] = ["kg", "km", "cm", "mm", "ms", "mN", "kN", "kPa", "MPa", "mrad"];
+
 fn unknown(word: &str, range: Range<usize>) -> QuantityError {
+    // The right letters in the wrong case, with or without a prefix.
+    let same = PREFIXED
+        .iter()
+        .copied()
+        .chain(UNITS.iter().map(|unit| unit.name))
+        .find(|name| name.to_lowercase() == word.trim_end_matches('s').to_lowercase());
     let by_distance = UNITS.iter().map(|unit| (strsim::damerau_levenshtein(&unit.name.to_lowercase(), &word.to_lowercase()), unit.name));
-    let nearest = by_distance.min().filter(|(distance, name)| *distance <= 1.max(name.chars().count() / 3));
-    let help = match nearest {
-        Some((_, name)) => format!("did you mean `{name}`? Factors are separated by a space, `·` or `*`: `N m s`"),
+    let nearest =
+        by_distance.min().filter(|(distance, name)| *distance <= 1.max(name.chars().count() / 3) && *distance < word.chars().count());
+    let help = match same.or(nearest.map(|(_, name)| name)) {
+        Some(name) => format!("did you mean `{name}`? Factors are separated by a space, `·` or `*`: `N m s`"),
         None => "see the units in docs/config.md; factors are separated by a space, `·` or `*`: `N m s`".to_owned(),
     };
     QuantityError { range, message: format!("unknown unit `{word}`"), help }

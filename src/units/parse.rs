@@ -56,7 +56,10 @@ pub fn number_prefix(text: &str) -> Result<(f64, usize), QuantityError> {
     let fault = |message: String, help: &str| QuantityError { range: start..text.len().max(start), message, help: help.to_owned() };
     match rest.chars().next() {
         Some(',') if rest.get(1..).is_some_and(|r| r.starts_with(|c: char| c.is_ascii_digit())) && !written.is_empty() => {
-            return Err(fault(format!("`{}` uses a decimal comma", body.trim()), "write a decimal point: `1.5`"));
+            return Err(fault(
+                format!("`{}` uses a decimal comma", body.trim()),
+                "write a decimal point, `1.5`, and thousands without a separator, `1000`",
+            ));
         }
         Some('_' | 'x' | 'X') if !written.is_empty() => {
             return Err(fault(
@@ -85,6 +88,22 @@ fn clipped(text: &str) -> String {
 pub(crate) fn expect_unit(text: &str, expected: Dimension, name: &str, example: &str) -> Result<f64, QuantityError> {
     let start = text.len() - text.trim_start().len();
     let unit = text.trim();
+    for (sign, message) in [("..", "a range"), ("±", "a spread"), ("+/-", "a spread")] {
+        if unit.contains(sign) {
+            return Err(QuantityError {
+                range: start..start + unit.len(),
+                message: format!("{message} (`{sign}`) cannot stand here"),
+                help: "write one number with its unit; where a spread is allowed, `±` or `..`, not both".to_owned(),
+            });
+        }
+    }
+    if unit.starts_with(['-', '–', '—']) {
+        return Err(QuantityError {
+            range: start..start + unit.len(),
+            message: "a dash cannot stand behind a number".to_owned(),
+            help: "write a range with two points, such as `205 .. 225 s`".to_owned(),
+        });
+    }
     let (size, found) = unit_factor(unit).map_err(|error| error.shifted(start))?;
     if found == expected {
         return Ok(size);

@@ -5,6 +5,12 @@ use nalgebra::Vector3;
 use crate::config::{Diagnostic, Path};
 use crate::uncertain::Spread;
 
+/// A number with at most five digits that count.
+fn short(number: f64) -> String {
+    let rounded: f64 = format!("{number:.4e}").parse().unwrap_or(number);
+    if rounded.abs() > 0.0 && rounded.abs() < 1e-4 { format!("{rounded:e}") } else { rounded.to_string() }
+}
+
 /// The faults found so far.
 #[derive(Debug, Default)]
 pub struct Faults(Vec<Diagnostic>);
@@ -53,7 +59,13 @@ impl Faults {
         if (low..=high).contains(&value) {
             return Some(value);
         }
-        self.push(key, format!("expected {what} from {low} to {high}, got {value}"), format!("give a value from {low} to {high}"));
+        let (from, to, got) = (short(low), short(high), short(value));
+        let help = if high <= 1.0 && value >= 5.0 && value <= 100.0 && !what.contains("rad") {
+            format!("give a value from {from} to {to}; is `{got} %` meant?")
+        } else {
+            format!("give a value from {from} to {to}")
+        };
+        self.push(key, format!("expected {what} from {from} to {to}, got {got}"), help);
         None
     }
 
@@ -64,9 +76,10 @@ impl Faults {
         if least >= low && most <= high {
             return Some(spread);
         }
-        let range = if high.is_finite() { format!("from {low} to {high}") } else { format!("of at least {low}") };
+        let range =
+            if high.is_finite() { format!("from {} to {}", short(low), short(high)) } else { format!("of at least {}", short(low)) };
         let (message, help) = if spread.is_fixed() {
-            (format!("expected {what} {range}, got {least}"), "correct the value".to_owned())
+            (format!("expected {what} {range}, got {}", short(least)), format!("give a value {range}"))
         } else {
             (
                 format!("expected {what} {range}, but this spread reaches from {least:.4} to {most:.4} (a normal one counts to six sigma)"),
