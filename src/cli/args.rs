@@ -25,10 +25,16 @@ pub(super) enum Command {
     Momentum(Common),
     /// One unload as valve commands.
     Unload(UnloadArgs),
-    /// Validate the configuration and say nothing else.
-    Check(Common),
+    /// Validate the configuration; with --resolved print it with the origin of every value.
+    Check(CheckArgs),
+    /// Write a commented configuration to begin with, for a kind of mission.
+    New(NewArgs),
     /// Print the JSON Schema of the configuration, for editors.
     Schema(Output),
+    /// Print the completions for a shell.
+    Completions(CompletionArgs),
+    /// Print the manual page, or write those of all commands to a folder.
+    Man(ManArgs),
 }
 
 /// How results are written.
@@ -57,6 +63,10 @@ pub(super) struct Common {
     /// A YAML file laid over it, key by key; may be repeated.
     #[arg(long = "with", value_name = "OVERLAY")]
     pub(super) overlays: Vec<PathBuf>,
+
+    /// A set of assumptions that the configuration describes, laid over it by name; may be repeated.
+    #[arg(long, value_name = "NAME")]
+    pub(super) assume: Vec<String>,
 
     /// One key changed, such as --set wheels.capacity="8 N m s"; may be repeated.
     #[arg(long = "set", value_name = "KEY=VALUE")]
@@ -120,6 +130,42 @@ pub(super) struct JoinArgs {
     /// Write one row a lifetime (draws, ledger, total) to this .parquet or .csv file.
     #[arg(long, value_name = "FILE")]
     pub(super) lifetimes_out: Option<PathBuf>,
+}
+
+#[derive(Debug, Args)]
+pub(super) struct CheckArgs {
+    #[command(flatten)]
+    pub(super) common: Common,
+
+    /// Print the configuration with overlays, assumptions and settings in it and short forms written out, each value with its origin.
+    #[arg(long)]
+    pub(super) resolved: bool,
+}
+
+#[derive(Debug, Args)]
+pub(super) struct NewArgs {
+    /// Kind of mission: low-orbit, geostationary, elliptic, deep-space or cold-gas.
+    pub(super) kind: Option<String>,
+
+    /// File to write, `-` for standard output; nothing is overwritten. Default: the kind with .yaml.
+    pub(super) file: Option<PathBuf>,
+}
+
+#[derive(Debug, Args)]
+pub(super) struct CompletionArgs {
+    /// The shell.
+    #[arg(value_enum)]
+    pub(super) shell: clap_complete::Shell,
+
+    #[command(flatten)]
+    pub(super) output: Output,
+}
+
+#[derive(Debug, Args)]
+pub(super) struct ManArgs {
+    /// Folder for the pages of the program and of each command. Default: the program's page to standard output.
+    #[arg(long, value_name = "DIR")]
+    pub(super) dir: Option<PathBuf>,
 }
 
 #[derive(Debug, Args)]

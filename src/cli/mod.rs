@@ -8,6 +8,7 @@ mod check;
 mod interrupt;
 mod layout;
 mod momentum;
+mod new;
 mod output;
 mod scenario;
 mod unload;
@@ -46,6 +47,9 @@ pub fn main() -> ExitCode {
         Command::Momentum(run) => momentum::run(run),
         Command::Unload(run) => unload::run(run),
         Command::Check(run) => check::run(run),
+        Command::New(run) => new::run(run),
+        Command::Completions(run) => new::completions(run),
+        Command::Man(run) => new::man(run),
         Command::Schema(run) => check::schema(run),
     };
     match outcome {
@@ -65,6 +69,8 @@ fn answer(help: &clap::Error) -> ExitCode {
 }
 
 fn failed(failure: &Failure) -> ExitCode {
-    output::complain(failure.message());
+    if !failure.message().is_empty() {
+        output::complain(failure.message());
+    }
     ExitCode::from(failure.status())
 }

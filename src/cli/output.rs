@@ -15,6 +15,8 @@ use super::scenario::Loaded;
 pub(super) enum Failure {
     /// The input or the call is wrong.
     Input(String),
+    /// The input is wrong, and has been told as a result.
+    Told,
     /// The program or the machine is at fault.
     Machine(String),
     /// The user stopped it; what was complete by then has been reported.
@@ -25,12 +27,13 @@ impl Failure {
     pub(super) fn message(&self) -> &str {
         match self {
             Self::Input(message) | Self::Machine(message) | Self::Stopped(message) => message,
+            Self::Told => "",
         }
     }
 
     pub(super) const fn status(&self) -> u8 {
         match self {
-            Self::Input(_) => 2,
+            Self::Input(_) | Self::Told => 2,
             Self::Machine(_) => 3,
             Self::Stopped(_) => super::interrupt::STATUS,
         }

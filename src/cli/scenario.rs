@@ -2,9 +2,9 @@
 
 use indicatif::{ProgressBar, ProgressStyle};
 
-use super::args::Common;
-use super::output::{Failure, styled};
-use crate::config::{Diagnostic, Document, ResolutionChoice, read, render_all};
+use super::args::{Common, Format};
+use super::output::{Failure, complain, styled};
+use crate::config::{Diagnostic, Document, ResolutionChoice, read, render_all, to_json};
 use crate::environment::Trajectory;
 use crate::lifetime::{Plan, PlanError};
 use crate::mission::Scenario;
@@ -21,12 +21,35 @@ fn refused(faults: &[Diagnostic], document: Option<&Document>) -> Failure {
     Failure::Input(render_all(faults, document, styled()))
 }
 
-/// Reads and validates the configuration of a call.
+/// The document of a call, with other assumptions beside its own.
+pub(super) fn document_of(common: &Common, more: &[String]) -> Result<Document, Vec<Diagnostic>> {
+    let assumptions: Vec<&String> = common.assume.iter().chain(more).collect();
+    Document::load_assuming(&common.file, &common.overlays, &assumptions, &common.settings)
+}
+
+/// Reads and validates the configuration of a call, and tells what in it is worth a second look.
 pub(super) fn load(common: &Common) -> Result<Loaded, Failure> {
-    let document = Document::load(&common.file, &common.overlays, &common.settings).map_err(|faults| refused(&faults, None))?;
-    let spec = read(&document).map_err(|faults| refused(&faults, Some(&document)))?;
+    let (loaded, document) = load_quietly(common).map_err(|(faults, document)| match common.format {
+        Format::Json => {
+            let faults = to_json(&faults, document.as_ref());
+            Failure::Input(format!("{:#}", serde_json::json!({ "schema": "couplet/check/1", "faults": faults })))
+        }
+        Format::Text | Format::Csv => refused(&faults, document.as_ref()),
+    })?;
+    if !common.quiet && !loaded.scenario.warnings.is_empty() {
+        complain(&render_all(&loaded.scenario.warnings, Some(&document), styled()));
+    }
+    Ok(loaded)
+}
+
+/// Reads and validates the configuration of a call.
+pub(super) fn load_quietly(common: &Common) -> Result<(Loaded, Document), (Vec<Diagnostic>, Option<Document>)> {
+    let document = document_of(common, &[]).map_err(|faults| (faults, None))?;
     let folder = common.file.parent().unwrap_or_else(|| std::path::Path::new(""));
-    let mut scenario = Scenario::in_folder(&spec, folder).map_err(|faults| refused(&faults, Some(&document)))?;
+    let mut scenario = match read(&document).and_then(|spec| Scenario::in_folder(&spec, folder)) {
+        Ok(scenario) => scenario,
+        Err(faults) => return Err((faults, Some(document))),
+    };
     scenario.settings.seed = common.seed.unwrap_or(scenario.settings.seed);
     scenario.settings.lifetimes = common.lifetimes.unwrap_or(scenario.settings.lifetimes);
     let provenance = Provenance {
@@ -35,11 +58,12 @@ pub(super) fn load(common: &Common) -> Result<Loaded, Failure> {
         config_sha256: document.sha256(),
         ephemerides: ephemerides(&scenario),
         overlays: common.overlays.iter().map(|overlay| overlay.display().to_string()).collect(),
+        assumptions: common.assume.clone(),
         settings: common.settings.clone(),
         seed: scenario.settings.seed,
         lifetimes: scenario.settings.lifetimes,
     };
-    Ok(Loaded { scenario, provenance })
+    Ok((Loaded { scenario, provenance }, document))
 }
 
 /// Name and SHA-256 of every ephemeris file that a phase flies.

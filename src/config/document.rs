@@ -8,9 +8,9 @@ use serde_yaml::Value;
 use sha2::{Digest as _, Sha256};
 
 use super::diagnostic::{Diagnostic, Mark, Site};
-use super::node::{Body, Found, Node};
+use super::node::{Body, Entry, Found, Node};
 use super::overlay::lay;
-use super::path::{Path, Segment};
+use super::path::{Path, Segment, short};
 use super::setting;
 use super::source::{Place, Source};
 
@@ -32,6 +32,8 @@ use super::source::{Place, Source};
 pub struct Document {
     root: Node,
     value: Value,
+    /// Names of the assumption sets that the files describe.
+    assumptions: Vec<String>,
 }
 
 impl Document {
@@ -47,6 +49,20 @@ impl Document {
         overlays: &[impl AsRef<std::path::Path>],
         settings: &[impl AsRef<str>],
     ) -> Result<Self, Vec<Diagnostic>> {
+        Self::load_assuming(file, overlays, &[] as &[&str], settings)
+    }
+
+    /// As [`Document::load`], with some of the assumption sets that the files describe laid over them, in order, before the
+    /// settings are put in.
+    ///
+    /// # Errors
+    /// As [`Document::load`], and a set that no file describes.
+    pub fn load_assuming(
+        file: &std::path::Path,
+        overlays: &[impl AsRef<std::path::Path>],
+        assumptions: &[impl AsRef<str>],
+        settings: &[impl AsRef<str>],
+    ) -> Result<Self, Vec<Diagnostic>> {
         let files = [file].into_iter().chain(overlays.iter().map(AsRef::as_ref));
         let layers = files
             .enumerate()
@@ -55,7 +71,7 @@ impl Document {
                 read_layer(&source)
             })
             .collect();
-        Self::resolve(layers, settings)
+        Self::resolve(layers, assumptions, settings)
     }
 
     /// As [`Document::load`] from texts, each with the name that messages give it.
@@ -71,10 +87,10 @@ impl Document {
                 read_layer(&source)
             })
             .collect();
-        Self::resolve(layers, settings)
+        Self::resolve(layers, &[] as &[&str], settings)
     }
 
-    fn resolve(layers: Vec<Result<Node, Vec<Diagnostic>>>, settings: &[impl AsRef<str>]) -> Result<Self, Vec<Diagnostic>> {
+    fn resolve(layers: Vec<Result<Node, Vec<Diagnostic>>>, assumptions: &[impl AsRef<str>], settings: &[impl AsRef<str>]) -> Result<Self, Vec<Diagnostic>> {
         let mut faults = Vec::new();
         let rank = layers.len();
         let mut merged: Option<Node> = None;
@@ -90,14 +106,27 @@ impl Document {
         let Some(mut root) = merged.filter(|_| faults.is_empty()) else {
             return Err(faults);
         };
+        let known = assume(&mut root, assumptions, &mut faults);
         for (turn, setting) in settings.iter().enumerate() {
             if let Err(found) = setting::apply(&mut root, setting.as_ref(), rank + turn) {
                 faults.extend(found);
             }
         }
+        super::short_form::write_out(&mut root, &mut faults);
         super::sample::read_samples(&mut root, &mut faults);
         let value = root.to_value();
-        if faults.is_empty() { Ok(Self { root, value }) } else { Err(faults) }
+        if faults.is_empty() { Ok(Self { root, value, assumptions: known }) } else { Err(faults) }
+    }
+
+    /// The root of the merged configuration.
+    pub(crate) fn root(&self) -> &Node {
+        &self.root
+    }
+
+    /// Names of the assumption sets that the files describe.
+    #[must_use]
+    pub fn assumptions(&self) -> &[String] {
+        &self.assumptions
     }
 
     /// The merged configuration. Every key is text, every number finite, and nothing is tagged.
@@ -180,6 +209,41 @@ impl Document {
             }
         }
     }
+}
+
+/// Takes the assumption sets out, lays the chosen ones over the configuration and gives the names of all.
+fn assume(root: &mut Node, chosen: &[impl AsRef<str>], faults: &mut Vec<Diagnostic>) -> Vec<String> {
+    let taken = match &mut root.body {
+        Body::Map(map) => map.remove("assumptions"),
+        _ => None,
+    };
+    let sets = match &taken {
+        None => None,
+        Some(Entry { node: Node { body: Body::Map(sets), .. }, .. }) => Some(sets),
+        Some(entry) => {
+            let help = "write `assumptions: {solar maximum: {environment: {solar_activity: {level: high}}}}`";
+            faults.push(Diagnostic::error_at(entry.node.place.first_line(), "`assumptions` must be a map of named sets").help(help));
+            None
+        }
+    };
+    let known: Vec<String> = sets.map(|sets| sets.keys().map(str::to_owned).collect()).unwrap_or_default();
+    for name in chosen.iter().map(AsRef::as_ref) {
+        match sets.and_then(|sets| sets.get(name)) {
+            Some(set) if matches!(set.node.body, Body::Map(_)) => lay(root, set.node.clone(), faults),
+            Some(set) => {
+                let message = format!("the assumptions `{}` must be a map of keys", short(name));
+                faults.push(Diagnostic::error_at(set.node.place.first_line(), message).help("write what they change, key by key"));
+            }
+            None => {
+                let source = Source::new("command line", format!("--assume {name}"), usize::MAX);
+                let place = Place { range: 9..source.text().len(), source };
+                let help = super::did_you_mean(name, known.iter().map(String::as_str))
+                    .unwrap_or_else(|| "describe them under `assumptions` in the configuration".to_owned());
+                faults.push(Diagnostic::error_at(place, format!("no assumptions are named `{}`", short(name))).help(help));
+            }
+        }
+    }
+    known
 }
 
 fn read_layer(source: &Arc<Source>) -> Result<Node, Vec<Diagnostic>> {

@@ -25,9 +25,11 @@ mod path;
 mod reference;
 mod refuse;
 mod render;
+mod resolved;
 mod sample;
 mod schema;
 mod setting;
+mod short_form;
 mod source;
 mod spacecraft;
 mod spans;
@@ -51,8 +53,8 @@ pub use reference::reference;
 pub use render::{render_all, sort, to_json};
 pub use source::{Place, Source};
 pub use spacecraft::{
-    Blowdown, Engine, Failure, Material, NetForceChoice, OneTank, Plume, PressureLaw, PressurePoint, Propulsion, PulsePerformance, Shaded,
-    SmallUnload, Spacecraft, Surface, Tank, Thruster, Wheel, Wheels,
+    Blowdown, BodyAxis, Copies, Engine, Failure, Material, NetForceChoice, OneTank, Plume, PressureLaw, PressurePoint, Propulsion, PulsePerformance, Pyramid, Shaded,
+    SmallUnload, Spacecraft, Surface, Tank, Thruster, Wheel, WheelArray, Wheels,
 };
 pub use spec::{Spec, read, schema};
 pub use uncertainty::{Correlation, DrawnAnew, DriverGroup, Each, Uncertainty};

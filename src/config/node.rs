@@ -78,6 +78,14 @@ impl Map {
         self.entries.get_mut(*self.index.get(key)?)
     }
 
+    /// Takes an entry out.
+    pub(crate) fn remove(&mut self, key: &str) -> Option<Entry> {
+        let place = self.index.remove(key)?;
+        let entry = self.entries.remove(place);
+        self.index.values_mut().filter(|other| **other > place).for_each(|other| *other -= 1);
+        Some(entry)
+    }
+
     /// Puts an entry at the place of the one with the same key, or at the end.
     pub(crate) fn set(&mut self, entry: Entry) {
         if let Some(old) = self.get_mut(&entry.key) {

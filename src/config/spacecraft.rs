@@ -193,6 +193,8 @@ pub struct Thruster {
     pub push: Option<Triple<kind::Number>>,
     /// Direction in which the plume leaves, opposite to the push; or give `push`.
     pub plume: Option<Triple<kind::Number>>,
+    /// Copies of it by symmetry: it then stands for thrusters of its name with 1, 2 and so on behind it.
+    pub copies: Option<Copies>,
     /// Share of the thrust lost where the plume meets the spacecraft, such as `3 %`. Default: none.
     pub plume_loss: Option<Quantity<kind::Number>>,
     /// Thrust of this one. Default: `propulsion.thrust`.
@@ -201,6 +203,31 @@ pub struct Thruster {
     pub isp: Option<SpreadQuantity<kind::Time>>,
     /// Exhaust speed of this one. Default: that of `propulsion`.
     pub exhaust_speed: Option<SpreadQuantity<kind::Speed>>,
+}
+
+/// Copies of a thruster by symmetry: give `mirror` or `fold`.
+#[derive(Debug, Clone, Deserialize, JsonSchema)]
+#[serde(deny_unknown_fields)]
+pub struct Copies {
+    /// Axes along which position and push are mirrored, such as `[x, y]`, which makes four of one.
+    #[serde(default)]
+    pub mirror: Vec<BodyAxis>,
+    /// How many there are in all, evenly turned about an axis, such as `4`.
+    pub fold: Option<u64>,
+    /// That axis, through the origin. Default: `z`.
+    pub about: Option<BodyAxis>,
+}
+
+/// An axis of the body frame.
+#[derive(Debug, Clone, Copy, PartialEq, Eq, Deserialize, JsonSchema)]
+#[serde(rename_all = "snake_case")]
+pub enum BodyAxis {
+    /// x.
+    X,
+    /// y.
+    Y,
+    /// z.
+    Z,
 }
 
 /// The propellant: in one tank, given by `loaded` and `position`, or in several `tanks`.
@@ -307,8 +334,37 @@ pub struct Wheels {
     pub torque: Quantity<kind::Torque>,
     /// Momentum that must stay free for slews and bias, such as `2 N m s`. Default: none.
     pub reserve: Option<Quantity<kind::Momentum>>,
-    /// The wheels.
+    /// The wheels, one by one; or give `array`.
+    #[serde(default)]
     pub axes: Vec<Wheel>,
+    /// A common array: `orthogonal`, `orthogonal_and_skew` (the fourth along x + y + z), or `pyramid`; or give `axes`.
+    pub array: Option<WheelArray>,
+}
+
+/// A common array of wheels, which stands for `axes` W1, W2 and so on.
+#[derive(Debug, Clone, Deserialize, JsonSchema)]
+#[serde(rename_all = "snake_case")]
+pub enum WheelArray {
+    /// Along x, y and z.
+    Orthogonal,
+    /// Along x, y and z, and a fourth along x + y + z.
+    OrthogonalAndSkew,
+    /// Evenly on a cone.
+    Pyramid(Pyramid),
+}
+
+/// Wheels evenly on a cone.
+#[derive(Debug, Clone, Deserialize, JsonSchema)]
+#[serde(deny_unknown_fields)]
+pub struct Pyramid {
+    /// Axis of the cone in the body frame. Default: `0 0 1`.
+    pub about: Option<Triple<kind::Number>>,
+    /// Angle between it and each spin axis. Default: 54.74 deg, at which four wheels hold as much along it as across it.
+    pub half_angle: Option<Quantity<kind::Angle>>,
+    /// How many wheels. Default: 4.
+    pub count: Option<u64>,
+    /// Angle by which the first is turned about the axis from x (or y, where the axis is near x). Default: none.
+    pub turned: Option<Quantity<kind::Angle>>,
 }
 
 /// One wheel.

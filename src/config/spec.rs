@@ -44,10 +44,21 @@ pub struct Spec {
     /// How the budget is made.
     #[serde(default)]
     pub budget: Budget,
+    /// Named sets of assumptions, each laid over the configuration by `--assume NAME`. Default: none.
+    #[serde(default)]
+    pub assumptions: std::collections::BTreeMap<String, Assumptions>,
+    /// Names of warnings that are known and not to be told again. Default: none.
+    #[serde(default)]
+    pub silence: Vec<String>,
     /// What must hold; the exit status is 1 if something does not.
     #[serde(default)]
     pub requirements: Vec<Requirement>,
 }
+
+/// A set of assumptions: any keys of the configuration, as in an overlay.
+#[derive(Debug, Clone, Deserialize, JsonSchema)]
+#[serde(transparent)]
+pub struct Assumptions(pub std::collections::BTreeMap<String, serde_json::Value>);
 
 /// JSON Schema (draft 2020-12) of the configuration, made from the types above.
 #[must_use]

@@ -9,6 +9,7 @@ mod files;
 mod joint;
 mod orbit;
 mod phase;
+mod plausible;
 mod pointing;
 mod read_attitude;
 mod settings;
@@ -20,6 +21,7 @@ pub use attitude::{Attitude, Law, Moment};
 pub use event::{Band, BurnSource, Event, EventKind, When};
 pub use joint::DriverGroup;
 pub use phase::{Phase, UnloadPolicy};
+pub use plausible::WARNINGS;
 pub use pointing::{Direction, Pointing, Sky};
 pub use settings::{Bound, Margin, Precision, Requirement, Sampling, Settings};
 pub use surroundings::{Accommodation, BodyLightShares};
@@ -154,6 +156,8 @@ pub struct Scenario {
     pub requirements: Vec<Requirement>,
     /// Quantities that count as one driver.
     pub driver_groups: Vec<DriverGroup>,
+    /// Values worth a second look.
+    pub warnings: Vec<crate::config::Diagnostic>,
 }
 
 impl Scenario {
@@ -182,11 +186,12 @@ impl Scenario {
         if let Some(wheels) = vehicle.as_ref().and_then(|vehicle| vehicle.wheels.as_ref()) {
             check_reserve(wheels, &mut faults);
         }
+        let warnings = vehicle.as_ref().map_or_else(Vec::new, |vehicle| plausible::look(vehicle, &spec.silence, &mut faults));
         let settings = settings::settings(&spec.budget, &mut faults);
         let requirements = settings::requirements(spec, &mut faults);
         match (vehicle, mission, settings) {
             (Some(vehicle), Some(mission), Some(settings)) if faults.count() == 0 => {
-                Ok(Self { vehicle, mission, parameters, settings, requirements, driver_groups })
+                Ok(Self { vehicle, mission, parameters, settings, requirements, driver_groups, warnings })
             }
             _ => Err(faults.into_inner()),
         }

@@ -25,6 +25,8 @@ pub struct Provenance {
     pub ephemerides: std::collections::BTreeMap<String, String>,
     /// Overlay files in order.
     pub overlays: Vec<String>,
+    /// Assumption sets in order.
+    pub assumptions: Vec<String>,
     /// Settings of the command line in order.
     pub settings: Vec<String>,
     /// Seed of the draws.
