@@ -4,7 +4,7 @@ use super::Outcome;
 use super::args::{CheckArgs, Common, Format, Output};
 use super::budget::pretty;
 use super::output::{Failure, Target, complain, styled};
-use super::scenario::{Loaded, document_of, load_quietly};
+use super::scenario::{Loaded, Refused, document_of, load_quietly};
 use crate::config::{Diagnostic, Document, Severity, read, render_all, to_json};
 use crate::mission::Scenario;
 use crate::report::check_text;
@@ -33,15 +33,13 @@ pub(super) fn run(args: &CheckArgs) -> Outcome {
         }
         Err((faults, document)) if common.format == Format::Json => {
             let target = Target::open(&common.output, &[&common.file])?;
-            let faults = to_json(&faults, document.as_ref());
+            let faults = to_json(&faults, document.as_deref());
             target.finish(&pretty(&serde_json::json!({ "schema": "couplet/check/1", "faults": faults })))?;
             Err(Failure::Told)
         }
-        Err((faults, document)) => Err(Failure::Input(render_all(&faults, document.as_ref(), styled()))),
+        Err((faults, document)) => Err(Failure::Input(render_all(&faults, document.as_deref(), styled()))),
     }
 }
-
-type Refused = (Vec<Diagnostic>, Option<Document>);
 
 /// Checks the configuration as it is called, and each set of assumptions that it describes.
 fn checked(common: &Common) -> Result<(Loaded, Document), Refused> {
@@ -55,7 +53,7 @@ fn checked(common: &Common) -> Result<(Loaded, Document), Refused> {
                 fault.message = format!("with the assumptions `{name}`: {}", fault.message);
                 fault
             };
-            return Err((faults.into_iter().filter(|fault| fault.severity == Severity::Error).map(about).collect(), Some(other)));
+            return Err((faults.into_iter().filter(|fault| fault.severity == Severity::Error).map(about).collect(), Some(Box::new(other))));
         }
     }
     Ok((loaded, document))

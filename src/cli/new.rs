@@ -24,7 +24,10 @@ const STARTERS: [Starter; 5] = [
 pub(super) fn run(args: &NewArgs) -> Outcome {
     let list = || STARTERS.iter().map(|(kind, what, _)| format!("  {kind:14} {what}")).collect::<Vec<_>>().join("\n");
     let Some(kind) = &args.kind else {
-        return Err(Failure::Input(format!("error: say what kind of mission to begin with:\n{}\n  = help: `couplet new low-orbit`", list())));
+        return Err(Failure::Input(format!(
+            "error: say what kind of mission to begin with:\n{}\n  = help: `couplet new low-orbit`",
+            list()
+        )));
     };
     let Some((_, _, text)) = STARTERS.iter().find(|(name, ..)| name == kind) else {
         let help = did_you_mean(kind, STARTERS.iter().map(|(name, ..)| *name)).unwrap_or_else(|| "take one of these".to_owned());
@@ -63,9 +66,7 @@ pub(super) fn man(args: &ManArgs) -> Outcome {
         Target::open(&Output { out: None }, &[])?.finish(&page(whole)?)?;
         return Ok(true);
     };
-    let write = |name: String, command: clap::Command| {
-        Target::open(&Output { out: Some(folder.join(name)) }, &[])?.finish(&page(command)?)
-    };
+    let write = |name: String, command: clap::Command| Target::open(&Output { out: Some(folder.join(name)) }, &[])?.finish(&page(command)?);
     for sub in whole.get_subcommands() {
         let name = format!("couplet-{}", sub.get_name());
         // The pages are about commands as they are typed.

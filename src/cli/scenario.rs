@@ -31,10 +31,10 @@ pub(super) fn document_of(common: &Common, more: &[String]) -> Result<Document, 
 pub(super) fn load(common: &Common) -> Result<Loaded, Failure> {
     let (loaded, document) = load_quietly(common).map_err(|(faults, document)| match common.format {
         Format::Json => {
-            let faults = to_json(&faults, document.as_ref());
+            let faults = to_json(&faults, document.as_deref());
             Failure::Input(format!("{:#}", serde_json::json!({ "schema": "couplet/check/1", "faults": faults })))
         }
-        Format::Text | Format::Csv => refused(&faults, document.as_ref()),
+        Format::Text | Format::Csv => refused(&faults, document.as_deref()),
     })?;
     if !common.quiet && !loaded.scenario.warnings.is_empty() {
         complain(&render_all(&loaded.scenario.warnings, Some(&document), styled()));
@@ -42,13 +42,16 @@ pub(super) fn load(common: &Common) -> Result<Loaded, Failure> {
     Ok(loaded)
 }
 
+/// Faults, and the document they are in if it could be read.
+pub(super) type Refused = (Vec<Diagnostic>, Option<Box<Document>>);
+
 /// Reads and validates the configuration of a call.
-pub(super) fn load_quietly(common: &Common) -> Result<(Loaded, Document), (Vec<Diagnostic>, Option<Document>)> {
+pub(super) fn load_quietly(common: &Common) -> Result<(Loaded, Document), Refused> {
     let document = document_of(common, &[]).map_err(|faults| (faults, None))?;
     let folder = common.file.parent().unwrap_or_else(|| std::path::Path::new(""));
     let mut scenario = match read(&document).and_then(|spec| Scenario::in_folder(&spec, folder)) {
         Ok(scenario) => scenario,
-        Err(faults) => return Err((faults, Some(document))),
+        Err(faults) => return Err((faults, Some(Box::new(document)))),
     };
     scenario.settings.seed = common.seed.unwrap_or(scenario.settings.seed);
     scenario.settings.lifetimes = common.lifetimes.unwrap_or(scenario.settings.lifetimes);

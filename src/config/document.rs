@@ -90,7 +90,11 @@ impl Document {
         Self::resolve(layers, &[] as &[&str], settings)
     }
 
-    fn resolve(layers: Vec<Result<Node, Vec<Diagnostic>>>, assumptions: &[impl AsRef<str>], settings: &[impl AsRef<str>]) -> Result<Self, Vec<Diagnostic>> {
+    fn resolve(
+        layers: Vec<Result<Node, Vec<Diagnostic>>>,
+        assumptions: &[impl AsRef<str>],
+        settings: &[impl AsRef<str>],
+    ) -> Result<Self, Vec<Diagnostic>> {
         let mut faults = Vec::new();
         let rank = layers.len();
         let mut merged: Option<Node> = None;

@@ -22,6 +22,7 @@ mod offsets;
 mod orbit;
 mod overlay;
 mod path;
+mod ranges;
 mod reference;
 mod refuse;
 mod render;
@@ -49,12 +50,13 @@ pub use mission::{Axis, Budget, Figure, MarginRule, Mission, Phase, Precision, R
 pub use nearest::{did_you_mean, known, nearest};
 pub use orbit::{About, LagrangePoint, Orbit, OwnBody, Stationary};
 pub use path::{Path, Segment};
+pub use ranges::RANGES;
 pub use reference::reference;
 pub use render::{render_all, sort, to_json};
 pub use source::{Place, Source};
 pub use spacecraft::{
-    Blowdown, BodyAxis, Copies, Engine, Failure, Material, NetForceChoice, OneTank, Plume, PressureLaw, PressurePoint, Propulsion, PulsePerformance, Pyramid, Shaded,
-    SmallUnload, Spacecraft, Surface, Tank, Thruster, Wheel, WheelArray, Wheels,
+    Blowdown, BodyAxis, Copies, Engine, Failure, Material, NetForceChoice, OneTank, Plume, PressureLaw, PressurePoint, Propulsion,
+    PulsePerformance, Pyramid, Shaded, SmallUnload, Spacecraft, Surface, Tank, Thruster, Wheel, WheelArray, Wheels,
 };
 pub use spec::{Spec, read, schema};
 pub use uncertainty::{Correlation, DrawnAnew, DriverGroup, Each, Uncertainty};

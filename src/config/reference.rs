@@ -8,8 +8,7 @@ use super::spec::schema;
 
 /// Every key as Markdown: one table for each part of the configuration.
 ///
-/// Name, whether it must be given, the kind and SI unit of the value, and what the documentation of the
-/// key says (meaning, example, default). Made from the same types as the schema.
+/// Name, kind and SI unit of the value, range, example, default and meaning. Made from the schema.
 #[must_use]
 pub fn reference() -> String {
     let schema = schema();
@@ -70,7 +69,8 @@ fn variants<'a>(root: &'a Value, node: &'a Value) -> Vec<(&'a str, &'a Value)> {
 }
 
 /// Parts whose keys have a table elsewhere already.
-const TOLD_ELSEWHERE: [&str; 5] = [
+const TOLD_ELSEWHERE: [&str; 6] = [
+    "assumptions",
     "mission.phases[].orbit",
     "mission.phases[].attitude.towards",
     "mission.phases[].attitude.mix.of[].to",
@@ -94,10 +94,14 @@ fn section(root: &Value, node: &Value, path: &str, text: &mut String) {
     let title = if path.is_empty() { "The whole file".to_owned() } else { format!("`{path}`") };
     // Writing to a `String` cannot fail.
     let _ = writeln!(text, "\n### {title}\n\n{}\n", description(node));
-    text.push_str("| key | must be given | value | meaning |\n| --- | --- | --- | --- |\n");
+    text.push_str("| key | value | range | example | default | meaning |\n| --- | --- | --- | --- | --- | --- |\n");
     for (key, value) in properties {
-        let must = if required.contains(&key.as_str()) { "yes" } else { "" };
-        let _ = writeln!(text, "| `{key}` | {must} | {} | {} |", kind(root, value), description(value));
+        let word = |name: &str| value.get(name).and_then(Value::as_str).unwrap_or_default().replace('|', "\\|");
+        let default = if required.contains(&key.as_str()) { "must be given".to_owned() } else { word("x-default") };
+        let example =
+            value.get("examples").and_then(|list| list.get(0)).and_then(Value::as_str).map_or_else(String::new, |text| format!("`{text}`"));
+        let meaning = description(value).split(" Default: ").next().unwrap_or_default().to_owned();
+        let _ = writeln!(text, "| `{key}` | {} | {} | {example} | {default} | {meaning} |", kind(root, value), word("x-range"));
     }
     for (key, value) in properties {
         let inner = if path.is_empty() { key.clone() } else { format!("{path}.{key}") };

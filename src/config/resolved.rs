@@ -52,12 +52,14 @@ fn write(node: &Node, head: &str, depth: usize, text: &mut String) {
     let _ = match &node.body {
         Body::Scalar(value) => writeln!(text, "{indent}{head} {}   # {}", scalar(value), origin(node)),
         Body::List(items) if items.iter().all(|item| matches!(item.body, Body::Scalar(_))) => {
-            let list = items.iter().map(|item| inside(item)).collect::<Vec<_>>().join(", ");
+            let list = items.iter().map(inside).collect::<Vec<_>>().join(", ");
             writeln!(text, "{indent}{head} [{list}]   # {}", origin(node))
         }
         Body::List(items) => {
             let _ = writeln!(text, "{indent}{head}");
-            items.iter().for_each(|item| write(item, "-", depth + usize::from(head == "-"), text));
+            for item in items {
+                write(item, "-", depth + usize::from(head == "-"), text);
+            }
             Ok(())
         }
         Body::Map(map) if map.entries().is_empty() => writeln!(text, "{indent}{head} {{}}   # {}", origin(node)),
@@ -81,7 +83,11 @@ fn write(node: &Node, head: &str, depth: usize, text: &mut String) {
 fn inside(node: &Node) -> String {
     match &node.body {
         Body::Scalar(value @ Value::String(raw)) => {
-            if raw.contains([',', '[', ']', '{', '}']) { serde_json::Value::from(raw.as_str()).to_string() } else { scalar(value) }
+            if raw.contains([',', '[', ']', '{', '}']) {
+                serde_json::Value::from(raw.as_str()).to_string()
+            } else {
+                scalar(value)
+            }
         }
         Body::Scalar(value) => scalar(value),
         Body::List(_) | Body::Map(_) => String::new(),

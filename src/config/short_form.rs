@@ -57,7 +57,8 @@ fn triple<K: Kind>(map: &Map, key: &str, otherwise: Option<[f64; 3]>, place: &Pl
         return otherwise.map_or_else(|| refuse(place, format!("a short form needs `{key}`"), "give it, or write all out"), Ok);
     };
     let written = text(&entry.node).unwrap_or_default();
-    parse_triple(&written, K::DIMENSION, K::NAME, K::EXAMPLE).or_else(|error| refuse(&entry.node.place, format!("`{key}`: {}", error.message), &error.help))
+    parse_triple(&written, K::DIMENSION, K::NAME, K::EXAMPLE)
+        .or_else(|error| refuse(&entry.node.place, format!("`{key}`: {}", error.message), &error.help))
 }
 
 fn whole(map: &Map, key: &str, otherwise: Option<u64>, least: u64, place: &Place) -> Result<u64, Fault> {
@@ -66,7 +67,9 @@ fn whole(map: &Map, key: &str, otherwise: Option<u64>, least: u64, place: &Place
         (None, Some(number)) => Ok(number),
         (None, None) => refuse(place, format!("`{key}` is missing in this short form"), &help),
         (Some(entry), _) => match &entry.node.body {
-            Body::Scalar(Value::Number(number)) if number.as_u64().is_some_and(|n| (least..=MOST).contains(&n)) => Ok(number.as_u64().unwrap_or(least)),
+            Body::Scalar(Value::Number(number)) if number.as_u64().is_some_and(|n| (least..=MOST).contains(&n)) => {
+                Ok(number.as_u64().unwrap_or(least))
+            }
             _ => refuse(&entry.node.place, format!("`{key}` must be a whole number from {least} to {MOST}"), &help),
         },
     }
@@ -202,10 +205,14 @@ fn mirrors(node: &Node) -> Result<Vec<nalgebra::Matrix3<f64>>, Fault> {
     let mut all = vec![nalgebra::Matrix3::identity()];
     for word in &words {
         let Some(axis) = ["x", "y", "z"].iter().position(|axis| axis == word) else {
-            return refuse(&node.place, format!("`{word}` is no axis"), "write the axes whose sign changes: `x`, `y`, `z`, or a list such as `[x, y]`");
+            return refuse(
+                &node.place,
+                format!("`{word}` is no axis"),
+                "write the axes whose sign changes: `x`, `y`, `z`, or a list such as `[x, y]`",
+            );
         };
-        let mut mirror = nalgebra::Matrix3::identity();
-        mirror[(axis, axis)] = -1.0;
+        let signs = nalgebra::Vector3::from_fn(|row, _| if row == axis { -1.0 } else { 1.0 });
+        let mirror = nalgebra::Matrix3::from_diagonal(&signs);
         let mirrored: Vec<_> = all.iter().map(|other| mirror * other).collect();
         all.extend(mirrored);
     }

@@ -63,7 +63,46 @@ pub struct Assumptions(pub std::collections::BTreeMap<String, serde_json::Value>
 /// JSON Schema (draft 2020-12) of the configuration, made from the types above.
 #[must_use]
 pub fn schema() -> serde_json::Value {
-    schemars::schema_for!(Spec).to_value()
+    let mut schema = schemars::schema_for!(Spec).to_value();
+    enrich("Spec", &mut schema);
+    if let Some(definitions) = schema.get_mut("$defs").and_then(serde_json::Value::as_object_mut) {
+        for (name, definition) in definitions {
+            enrich(name, definition);
+        }
+    }
+    schema
+}
+
+/// Adds to each key of a type what its documentation and the table of ranges say: `examples`, `x-default`, `x-range`.
+fn enrich(name: &str, definition: &mut serde_json::Value) {
+    let Some(properties) = definition.get_mut("properties").and_then(serde_json::Value::as_object_mut) else { return };
+    for (key, property) in properties {
+        let described = property.get("description").and_then(serde_json::Value::as_str).unwrap_or_default().replace('\n', " ");
+        let said = |before: &str| described.split_once(before).map(|(_, rest)| rest.to_owned());
+        let example = said("such as `").and_then(|rest| rest.split_once('`').map(|(example, _)| example.to_owned()));
+        let example = example.or_else(|| {
+            property.get("x-quantity").and_then(serde_json::Value::as_str).and_then(leaf::kind_named).map(|words| {
+                let three = property.get("x-form").and_then(serde_json::Value::as_str).is_some_and(|form| form.starts_with("three"));
+                if three { triple_of(words.example) } else { words.example.to_owned() }
+            })
+        });
+        let Some(map) = property.as_object_mut() else { continue };
+        if let Some(example) = example {
+            map.insert("examples".to_owned(), serde_json::json!([example]));
+        }
+        if let Some(default) = said("Default: ") {
+            map.insert("x-default".to_owned(), serde_json::json!(default.trim().trim_end_matches('.')));
+        }
+        if let Some(range) = super::ranges::range(&format!("{name}.{key}")) {
+            map.insert("x-range".to_owned(), serde_json::json!(range));
+        }
+    }
+}
+
+/// An example of a vector out of one of a number.
+fn triple_of(example: &str) -> String {
+    let (number, unit) = example.split_once(' ').unwrap_or((example, ""));
+    format!("{number} 0 0 {unit}").trim_end().to_owned()
 }
 
 /// Reads the values of a document.
@@ -89,5 +128,30 @@ fn check_leaf(schema: &serde_json::Value, value: &Value, path: &Path) -> Vec<Dia
             let fault = Diagnostic::error(path.clone(), format!("`{path}`: {}", error.message)).help(error.help);
             vec![if value.is_string() && !error.range.is_empty() { fault.within(error.range) } else { fault }]
         }
+    }
+}
+
+#[cfg(test)]
+#[allow(clippy::indexing_slicing, reason = "a test fails by panicking")]
+mod tests {
+    use super::*;
+
+    /// Every example of a quantity that the schema shows can be read as one.
+    #[test]
+    fn examples_can_be_read() {
+        let schema = schema();
+        let mut count = 0;
+        let definitions = schema["$defs"].as_object().unwrap().iter().map(|(name, definition)| (name.as_str(), definition));
+        for (name, definition) in definitions.chain([("Spec", &schema)]) {
+            for (key, property) in definition["properties"].as_object().into_iter().flatten() {
+                let (Some(kind), Some(example)) = (property["x-quantity"].as_str(), property["examples"][0].as_str()) else { continue };
+                let words = leaf::kind_named(kind).unwrap();
+                let form = Form::named(property["x-form"].as_str().unwrap()).unwrap();
+                let value = Value::String(example.to_owned());
+                assert!(leaf::read(&value, words, form).is_ok(), "{name}.{key}: {example}");
+                count += 1;
+            }
+        }
+        assert!(count > 100, "{count}");
     }
 }

@@ -68,7 +68,9 @@ fn inertia(vehicle: &Vehicle, tell: &mut Tell<'_>) {
     let reach = reach_m(vehicle);
     let gyration = (most / mass).sqrt();
     if reach > 0.0 && gyration > 3.0 * reach {
-        let message = format!("{most} kg m2 puts the mass {gyration:.2} m from its centre in the mean, while nothing described lies farther than {reach:.2} m");
+        let message = format!(
+            "{most} kg m2 puts the mass {gyration:.2} m from its centre in the mean, while nothing described lies farther than {reach:.2} m"
+        );
         tell("inertia-large", "spacecraft.inertia", message);
     }
 }
@@ -79,11 +81,19 @@ fn thrusters(vehicle: &Vehicle, tell: &mut Tell<'_>) {
         let at = format!("thrusters[{index}]");
         let (thrust, speed) = (thruster.thrust_n(), thruster.exhaust_speed.nominal());
         if thrust / mass > 1.0 || thrust < 1e-6 {
-            tell("thrust", &at, format!("{thrust} N accelerate {mass} kg by {:.1e} m/s2; attitude thrusters give about 1e-4 to 1e-2 m/s2", thrust / mass));
+            tell(
+                "thrust",
+                &at,
+                format!("{thrust} N accelerate {mass} kg by {:.1e} m/s2; attitude thrusters give about 1e-4 to 1e-2 m/s2", thrust / mass),
+            );
         }
         let isp = speed / 9.806_65;
         if !(20.0..=5000.0).contains(&isp) {
-            tell("specific-impulse", &at, format!("a specific impulse of {isp:.1} s; cold gas has about 40 to 80 s, hydrazine 200 to 235 s"));
+            tell(
+                "specific-impulse",
+                &at,
+                format!("a specific impulse of {isp:.1} s; cold gas has about 40 to 80 s, hydrazine 200 to 235 s"),
+            );
         }
         if thruster.position_m.norm() > 30.0 {
             tell("arm", &at, format!("it stands {:.1} m from the origin of the body frame", thruster.position_m.norm()));

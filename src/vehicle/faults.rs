@@ -60,7 +60,7 @@ impl Faults {
             return Some(value);
         }
         let (from, to, got) = (short(low), short(high), short(value));
-        let help = if high <= 1.0 && value >= 5.0 && value <= 100.0 && !what.contains("rad") {
+        let help = if high <= 1.0 && (5.0..=100.0).contains(&value) && !what.contains("rad") {
             format!("give a value from {from} to {to}; is `{got} %` meant?")
         } else {
             format!("give a value from {from} to {to}")
