@@ -85,6 +85,10 @@ fn resolved_configurations_give_the_same_results() {
             told.to_string()
         };
         assert_eq!(run(file, &more), run("resolved.yaml", &[]), "{file}");
+        let page = |file: &str, more: &[&str]| ok(&couplet(folder.path(), &[&["momentum", file][..], more].concat()));
+        // But for the last lines, which say where it came from.
+        let body = |text: String| text.rsplit_once("\nFrom ").map(|(body, _)| body.to_owned()).unwrap();
+        assert_eq!(body(page(file, &more)), body(page("resolved.yaml", &[])), "{file}");
         // Resolved once more it is itself, but for where values came from.
         let again = ok(&couplet(folder.path(), &["check", "resolved.yaml", "--resolved"]));
         let bare =

@@ -15,7 +15,7 @@ use crate::montecarlo::{
     write_part,
 };
 use crate::report::{
-    Provenance, budget_json, budget_text, document, explain_json, explain_table, explain_text, ledger_table, row_named, row_names,
+    Provenance, budget_json, budget_text, document, explain_json, explain_table, explain_text, footer, ledger_table, row_named, row_names,
 };
 use crate::units::{Kind, kind, parse};
 
@@ -114,7 +114,7 @@ fn report(
     let momentum = plan.summary();
     let typical = plan.largest_unload().and_then(Result::ok);
     let text = match common.format {
-        Format::Text => budget_text(scenario, &budget, &momentum, typical.as_ref()),
+        Format::Text => budget_text(scenario, &budget, &momentum, typical.as_ref()) + &footer(&provenance),
         Format::Json => pretty(&budget_json(scenario, &budget, &momentum, typical.as_ref(), &provenance)),
         Format::Csv => ledger_table(&budget).to_csv(),
     };
@@ -199,7 +199,7 @@ fn explain(common: &Common, name: &str) -> Outcome {
     let plan = on_threads(common, || plan(loaded.scenario, common))??;
     let nominal = plan.fly(plan.nominal());
     let text = match common.format {
-        Format::Text => explain_text(&plan, row, &nominal),
+        Format::Text => explain_text(&plan, row, &nominal) + &footer(&loaded.provenance),
         Format::Json => pretty(&document("explain", &loaded.provenance, explain_json(&plan, row, &nominal))),
         Format::Csv => explain_table(&plan, row).to_csv(),
     };

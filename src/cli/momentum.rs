@@ -5,7 +5,7 @@ use super::args::{Common, Format};
 use super::budget::pretty;
 use super::output::Target;
 use super::scenario::{load, on_threads, plan};
-use crate::report::{momentum_json, momentum_table, momentum_text};
+use crate::report::{footer, momentum_json, momentum_table, momentum_text};
 
 pub(super) fn run(common: &Common) -> Outcome {
     let loaded = load(common)?;
@@ -13,7 +13,7 @@ pub(super) fn run(common: &Common) -> Outcome {
     let plan = on_threads(common, || plan(loaded.scenario, common))??;
     let phases = plan.summary();
     let text = match common.format {
-        Format::Text => momentum_text(&plan.vehicle().name, &phases),
+        Format::Text => momentum_text(&plan.vehicle().name, &phases) + &footer(&loaded.provenance),
         Format::Json => pretty(&momentum_json(&phases, &loaded.provenance)),
         Format::Csv => momentum_table(&phases).to_csv(),
     };

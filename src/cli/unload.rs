@@ -8,7 +8,7 @@ use super::budget::pretty;
 use super::output::{Failure, Target};
 use super::scenario::{load, on_threads, plan};
 use crate::pulses::ForceChoice;
-use crate::report::{unload_json, unload_table, unload_text};
+use crate::report::{footer, unload_json, unload_table, unload_text};
 use crate::uncertain::parse_triple;
 use crate::units::kind::{ImpulsePrice, Momentum};
 use crate::units::{Kind, parse};
@@ -32,7 +32,7 @@ pub(super) fn run(args: &UnloadArgs) -> Outcome {
     };
     let thrusters = &plan.vehicle().propulsion.thrusters;
     let text = match common.format {
-        Format::Text => unload_text(&unload, thrusters),
+        Format::Text => unload_text(&unload, thrusters) + &footer(&loaded.provenance),
         Format::Json => pretty(&unload_json(&unload, thrusters, &loaded.provenance)),
         Format::Csv => unload_table(&unload.command, thrusters).to_csv(),
     };

@@ -93,8 +93,19 @@ fn enrich(name: &str, definition: &mut serde_json::Value) {
         if let Some(default) = said("Default: ") {
             map.insert("x-default".to_owned(), serde_json::json!(default.trim().trim_end_matches('.')));
         }
-        if let Some(range) = super::ranges::range(&format!("{name}.{key}")) {
+        let unit = map
+            .get("x-unit")
+            .and_then(serde_json::Value::as_str)
+            .filter(|unit| !unit.is_empty())
+            .map(|unit| format!("In {unit} or any unit of that kind."));
+        let range = super::ranges::range(&format!("{name}.{key}"));
+        if let Some(range) = range {
             map.insert("x-range".to_owned(), serde_json::json!(range));
+        }
+        // What editors show beside a key.
+        let more: Vec<String> = unit.into_iter().chain(range.map(|range| format!("Range: {range}."))).collect();
+        if !more.is_empty() {
+            map.insert("markdownDescription".to_owned(), serde_json::json!(format!("{described}\n\n{}", more.join(" "))));
         }
     }
 }

@@ -16,7 +16,7 @@ mod words;
 pub use budget::budget_text;
 pub use budget::ledger_table;
 pub use budget_json::budget_json;
-pub use check::check_text;
+pub use check::{check_text, footer};
 pub use explain::{explain_json, explain_table, explain_text, row_named, row_names};
 pub use json::{Provenance, document, layout_json, momentum_json, unload_json};
 pub use layout::{layout_table, layout_text};

@@ -37,9 +37,9 @@ pub(crate) struct Demo {
     pub(crate) thrusters: Vec<Thruster>,
     /// How the tank is fed.
     pub(crate) feed: Option<Feed>,
-    /// Named assumptions.
+    /// Named conjectures.
     #[serde(default)]
-    pub(crate) assumptions: BTreeMap<String, Assumption>,
+    pub(crate) conjectures: BTreeMap<String, Conjecture>,
     /// A point or the name of one.
     pub(crate) target: Option<Target>,
 }
@@ -115,7 +115,7 @@ pub(crate) enum Target {
 
 #[derive(Debug, PartialEq, Deserialize, JsonSchema)]
 #[serde(deny_unknown_fields)]
-pub(crate) struct Assumption {
+pub(crate) struct Conjecture {
     pub(crate) factor: f64,
 }
 
@@ -136,7 +136,7 @@ thrusters:
   - name: A2
     thrust: {nominal: 1 N, sd: 3 %}
 feed: {blowdown: {start: 22.0, end: 5.5}}
-assumptions:
+conjectures:
   solar maximum: {factor: 1.5}
 target: [0, 0, 1]
 ";

@@ -35,9 +35,9 @@ fn unknown_keys() {
     assert_eq!(fault("thrusters:", "thrsters:"), ["unknown key `thrsters`", "thrsters", "did you mean `thrusters`?"]);
     assert_eq!(
         fault("feed: ", "fuel: 3\nfeed: "),
-        ["unknown key `fuel`", "fuel", "known here: `assumptions`, `feed`, `mission`, `name`, `target`, `thrusters`"]
+        ["unknown key `fuel`", "fuel", "known here: `conjectures`, `feed`, `mission`, `name`, `target`, `thrusters`"]
     );
-    let message = "unknown key `factr` in `assumptions.solar maximum`";
+    let message = "unknown key `factr` in `conjectures.solar maximum`";
     assert_eq!(fault("factor", "factr"), [message, "factr", "did you mean `factor`?"]);
     assert_eq!(fault("{blowdown:", "{blowdwn:"), ["unknown key `blowdwn` in `feed`", "blowdwn", "did you mean `blowdown`?"]);
 }
@@ -84,7 +84,7 @@ const WRONG_KINDS: [(&str, &str, &str); 19] = [
     ("thrust: 1 N", "thrust:", "`thrusters[0].thrust` must be a force, got nothing"),
     ("thrust: 1 N", "thrust: 1 lb", "`thrusters[0].thrust` must be a force, got `1 lb`"),
     (FEED, "[1]", "`feed` must be a map or `ideal`, got a list"),
-    ("{factor: 1.5}", "1.5", "`assumptions.solar maximum` must be a map, got the number `1.5`"),
+    ("{factor: 1.5}", "1.5", "`conjectures.solar maximum` must be a map, got the number `1.5`"),
 ];
 
 #[test]
@@ -167,7 +167,7 @@ fn a_value_that_only_serde_refuses_is_still_located() {
     assert_eq!(
         render_all(&faults, Some(&document), false),
         "\
-error: `assumptions.solar maximum.factor` cannot be used: invalid type: string \"high\", expected f64
+error: `conjectures.solar maximum.factor` cannot be used: invalid type: string \"high\", expected f64
   --> mission.yaml:17:27
    |
 17 |   solar maximum: {factor: high}
