@@ -14,19 +14,24 @@ fn files() -> Vec<(&'static str, Vec<u8>)> {
         let aliases = vec![format!("*{before}"); 10].join(", ");
         let _ = writeln!(bomb, "{name}: &{name} [{aliases}]");
     }
-    let copies: String =
-        (0..40_000).map(|k| format!("- {{name: T{k}, position: 0 0 1 m, push: 0 0 1, copies: {{mirror: [x, y, z]}}}}\n")).collect();
+    let (mut copies, mut keys) = ("thrusters:\n".to_owned(), String::new());
+    for k in 0..40_000 {
+        let _ = writeln!(copies, "- {{name: T{k}, position: 0 0 1 m, push: 0 0 1, copies: {{mirror: [x, y, z]}}}}");
+    }
+    for k in 0..200_000 {
+        let _ = writeln!(keys, "k{}: 1", k % 1000);
+    }
     let text = [
         ("brackets", "[".repeat(100_000) + &"]".repeat(100_000)),
         ("maps", format!("a: {}1{}", "{a: ".repeat(50_000), "}".repeat(50_000))),
         ("bomb", bomb),
         ("scalar", format!("a: \"{}\"\n", "x".repeat(3_000_000))),
         ("ten-megabytes", "a: 1\n".repeat(2_000_000)),
-        ("keys", (0..200_000).map(|k| format!("k{}: 1\n", k % 1000)).collect()),
+        ("keys", keys),
         ("tag", "!!python/object:os.system a: 1\n".to_owned()),
         ("tab", "spacecraft:\n\tname: x\n".to_owned()),
         ("sample", format!("spacecraft: {{dry_mass: {{empirical: {{values: [{}], unit: kg}}}}}}\n", vec!["1"; 900_000].join(","))),
-        ("copies", format!("thrusters:\n{copies}")),
+        ("copies", copies),
         ("count", "wheels: {array: {pyramid: {count: 100000000000}}}\n".to_owned()),
     ];
     let mut all: Vec<(&str, Vec<u8>)> = text.into_iter().map(|(name, text)| (name, text.into_bytes())).collect();

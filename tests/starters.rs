@@ -214,7 +214,7 @@ fn completions_and_manual_pages() {
         assert!(ok(&couplet(folder.path(), &["completions", shell])).contains("budget"), "{shell}");
     }
     ok(&couplet(folder.path(), &["man", "--dir", "."]));
-    for command in ["budget", "join", "layout", "momentum", "unload", "check", "new", "schema", "completions", "man"] {
+    for command in ["budget", "compare", "sweep", "join", "layout", "momentum", "unload", "check", "new", "schema", "completions", "man"] {
         let page = fs::read_to_string(folder.path().join(format!("couplet-{command}.1"))).unwrap();
         assert!(page.contains(".SH SYNOPSIS") && page.contains(command), "{command}");
     }

@@ -17,6 +17,10 @@ pub(super) struct Cli {
 pub(super) enum Command {
     /// The whole budget: layout, momentum, unloads, propellant with confidence, drivers, requirements.
     Budget(BudgetArgs),
+    /// What alternatives change: the file alone against each --with, each --assume, and all --set together.
+    Compare(Common),
+    /// Figures over one or two inputs, and where a requirement is just met.
+    Sweep(SweepArgs),
     /// Put the parts of a budget together that `budget --part` computed.
     Join(JoinArgs),
     /// Torque of the thruster layout on every axis and in every direction, in every failure case.
@@ -48,14 +52,14 @@ pub(super) enum Format {
     Csv,
 }
 
-#[derive(Debug, Args)]
+#[derive(Debug, Clone, Args)]
 pub(super) struct Output {
     /// Write the result to this file, whole or not at all. Default: standard output.
     #[arg(long, value_name = "FILE")]
     pub(super) out: Option<PathBuf>,
 }
 
-#[derive(Debug, Args)]
+#[derive(Debug, Clone, Args)]
 pub(super) struct Common {
     /// The configuration, such as configs/heron.yaml.
     pub(super) file: PathBuf,
@@ -130,6 +134,28 @@ pub(super) struct JoinArgs {
     /// Write one row a lifetime (draws, ledger, total) to this .parquet or .csv file.
     #[arg(long, value_name = "FILE")]
     pub(super) lifetimes_out: Option<PathBuf>,
+}
+
+#[derive(Debug, Args)]
+pub(super) struct SweepArgs {
+    #[command(flatten)]
+    pub(super) common: Common,
+
+    /// A key and its range or list, such as "wheels.capacity=4 .. 20 N m s" or "mission.start=2028-01-01 | 2031-01-01"; once or twice.
+    #[arg(long, value_name = "KEY=FROM..TO")]
+    pub(super) vary: Vec<String>,
+
+    /// Points of a range, both ends included.
+    #[arg(long, value_name = "N", default_value_t = 7, value_parser = clap::value_parser!(u16).range(2..=1000))]
+    pub(super) steps: u16,
+
+    /// A figure to show, such as `propellant_p95`; may be repeated. Default: propellant, its probability of being enough, fill of the wheels.
+    #[arg(long, value_name = "FIGURE")]
+    pub(super) show: Vec<String>,
+
+    /// Find where this is just met along the range, such as `propellant_p95 <= 38 kg`.
+    #[arg(long, value_name = "CONDITION")]
+    pub(super) until: Option<String>,
 }
 
 #[derive(Debug, Args)]

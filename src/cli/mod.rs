@@ -5,13 +5,16 @@
 mod args;
 mod budget;
 mod check;
+mod compare;
 mod interrupt;
 mod layout;
 mod momentum;
 mod new;
 mod output;
 mod scenario;
+mod sweep;
 mod unload;
+mod vary;
 
 use std::io::Write as _;
 use std::process::ExitCode;
@@ -42,6 +45,8 @@ pub fn main() -> ExitCode {
     };
     let outcome = match &cli.command {
         Command::Budget(run) => budget::run(run),
+        Command::Compare(run) => compare::run(run),
+        Command::Sweep(run) => sweep::run(run),
         Command::Join(run) => budget::run_join(run),
         Command::Layout(run) => layout::run(run),
         Command::Momentum(run) => momentum::run(run),

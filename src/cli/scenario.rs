@@ -17,7 +17,7 @@ pub(super) struct Loaded {
     pub(super) provenance: Provenance,
 }
 
-fn refused(faults: &[Diagnostic], document: Option<&Document>) -> Failure {
+pub(super) fn refused(faults: &[Diagnostic], document: Option<&Document>) -> Failure {
     Failure::Input(render_all(faults, document, styled()))
 }
 

@@ -8,7 +8,7 @@ use serde_yaml::Value;
 use sha2::{Digest as _, Sha256};
 
 use super::diagnostic::{Diagnostic, Mark, Site};
-use super::node::{Body, Entry, Found, Node};
+use super::node::{Body, Entry, Found, Map, Node};
 use super::overlay::lay;
 use super::path::{Path, Segment, short};
 use super::setting;
@@ -34,6 +34,10 @@ pub struct Document {
     value: Value,
     /// Names of the assumption sets that the files describe.
     assumptions: Vec<String>,
+    /// The sets themselves.
+    sets: Map,
+    /// The merged configuration before short forms were written out and samples read.
+    written: Node,
 }
 
 impl Document {
@@ -110,16 +114,38 @@ impl Document {
         let Some(mut root) = merged.filter(|_| faults.is_empty()) else {
             return Err(faults);
         };
-        let known = assume(&mut root, assumptions, &mut faults);
+        let sets = assume(&mut root, assumptions, &mut faults);
         for (turn, setting) in settings.iter().enumerate() {
             if let Err(found) = setting::apply(&mut root, setting.as_ref(), rank + turn) {
                 faults.extend(found);
             }
         }
+        Self::finished(root, sets, faults)
+    }
+
+    /// Writes short forms out and reads samples.
+    fn finished(written: Node, sets: Map, mut faults: Vec<Diagnostic>) -> Result<Self, Vec<Diagnostic>> {
+        let mut root = written.clone();
         super::short_form::write_out(&mut root, &mut faults);
         super::sample::read_samples(&mut root, &mut faults);
         let value = root.to_value();
-        if faults.is_empty() { Ok(Self { root, value, assumptions: known }) } else { Err(faults) }
+        let assumptions = sets.keys().map(str::to_owned).collect();
+        if faults.is_empty() { Ok(Self { root, value, assumptions, sets, written }) } else { Err(faults) }
+    }
+
+    /// The same sets of assumptions beside another configuration.
+    pub(crate) fn rewritten(&self, written: Node, faults: Vec<Diagnostic>) -> Result<Self, Vec<Diagnostic>> {
+        Self::finished(written, self.sets.clone(), faults)
+    }
+
+    /// The merged configuration as it is written, with short forms.
+    pub(crate) fn written(&self) -> &Node {
+        &self.written
+    }
+
+    /// A set of assumptions.
+    pub(crate) fn set(&self, name: &str) -> Option<&Node> {
+        self.sets.get(name).map(|entry| &entry.node)
     }
 
     /// The root of the merged configuration.
@@ -215,8 +241,8 @@ impl Document {
     }
 }
 
-/// Takes the assumption sets out, lays the chosen ones over the configuration and gives the names of all.
-fn assume(root: &mut Node, chosen: &[impl AsRef<str>], faults: &mut Vec<Diagnostic>) -> Vec<String> {
+/// Takes the assumption sets out, lays the chosen ones over the configuration and gives all of them.
+fn assume(root: &mut Node, chosen: &[impl AsRef<str>], faults: &mut Vec<Diagnostic>) -> Map {
     let taken = match &mut root.body {
         Body::Map(map) => map.remove("assumptions"),
         _ => None,
@@ -247,10 +273,10 @@ fn assume(root: &mut Node, chosen: &[impl AsRef<str>], faults: &mut Vec<Diagnost
             }
         }
     }
-    known
+    sets.cloned().unwrap_or_default()
 }
 
-fn read_layer(source: &Arc<Source>) -> Result<Node, Vec<Diagnostic>> {
+pub(crate) fn read_layer(source: &Arc<Source>) -> Result<Node, Vec<Diagnostic>> {
     let node = Node::read(source, &(0..source.text().len()))?;
     if let Body::Map(_) = node.body {
         return Ok(node);

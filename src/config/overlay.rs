@@ -59,7 +59,7 @@ fn lay_list(below: &mut Vec<Node>, above: Vec<Node>, faults: &mut Vec<Diagnostic
     }
 }
 
-fn all_named(node: &Node) -> bool {
+pub(crate) fn all_named(node: &Node) -> bool {
     match &node.body {
         Body::List(items) => !items.is_empty() && items.iter().all(|item| item.name().is_some()),
         _ => false,

@@ -4,7 +4,7 @@ use super::{LayoutCase, OutBecause, Verdict};
 use crate::config::{Axis, NetForceChoice};
 
 /// Which cases and directions a requirement looks at.
-#[derive(Debug, Clone, PartialEq, Eq)]
+#[derive(Debug, Clone, Default, PartialEq, Eq)]
 pub struct Scope {
     /// An axis, each axis, or every direction.
     pub axis: Option<Axis>,

@@ -109,6 +109,29 @@ impl Figure {
         }
     }
 
+    /// Figures of a budget, by their words in a configuration.
+    pub const NAMES: [(&'static str, Self); 10] = [
+        ("propellant_nominal", Self::PropellantNominal),
+        ("propellant_p95", Self::PropellantP95),
+        ("propellant_p99", Self::PropellantP99),
+        ("probability_enough", Self::ProbabilityEnough),
+        ("unload_interval", Self::UnloadInterval),
+        ("wheel_fill", Self::WheelFill),
+        ("valve_cycles", Self::ValveCycles),
+        ("throughput", Self::Throughput),
+        ("unload_delta_v_per_day", Self::UnloadDeltaVPerDay),
+        ("guaranteed_pure_torque", Self::GuaranteedPureTorque),
+    ];
+
+    /// Reads a bound in the unit of the figure, into SI.
+    ///
+    /// # Errors
+    /// As [`units::parse`].
+    pub fn parse_bound(self, text: &str) -> Result<f64, units::QuantityError> {
+        let (dimension, _, name, example) = self.words();
+        units::parse(text, dimension, name, example)
+    }
+
     /// What the figure is, in words.
     #[must_use]
     pub const fn name(self) -> &'static str {

@@ -90,6 +90,21 @@ impl Budget {
     /// # Errors
     /// The temporary file of the lifetimes cannot be read, or books do not balance: a fault of the program.
     pub fn of(plan: &Plan, sample: &mut Sample, watch: &Watch<'_>) -> io::Result<Self> {
+        let mut budget = Self::without_drivers(plan, sample)?;
+        (watch.progress)("drivers", 0, 1);
+        if sample.ended != Ended::Stopped {
+            budget.drivers = drivers(plan, sample.design.seed, watch);
+        }
+        budget.swings = swings(plan);
+        (watch.progress)("drivers", 1, 1);
+        Ok(budget)
+    }
+
+    /// The same without drivers and swings.
+    ///
+    /// # Errors
+    /// As [`Budget::of`].
+    pub fn without_drivers(plan: &Plan, sample: &mut Sample) -> io::Result<Self> {
         let confidence = plan.scenario().settings.confidence;
         let design = sample.design;
         let nominal = plan.fly(plan.nominal());
@@ -113,9 +128,6 @@ impl Budget {
         let served = within(Figure::Unserved, 0.0)?;
         let (life_s, fan) = (lives(store)?, fan(plan, store, &values)?);
         let lifetimes = store.rows() as u64;
-        (watch.progress)("drivers", 0, 1);
-        let found = if sample.ended == Ended::Stopped { Vec::new() } else { drivers(plan, design.seed, watch) };
-        (watch.progress)("drivers", 1, 1);
         let mut budget = Self {
             rows,
             attitude,
@@ -131,8 +143,8 @@ impl Budget {
             loaded_kg,
             enough,
             served,
-            drivers: found,
-            swings: swings(plan),
+            drivers: Vec::new(),
+            swings: Vec::new(),
             wheel_fill: super::wheels::nominal_fill(plan),
             timing: plan.timing_gain(),
             layout: intact(plan.vehicle()),

@@ -5,7 +5,9 @@
 //! samples and leave as estimates with the limits that the sample size supports.
 
 mod accumulate;
+mod attribution;
 mod budget;
+mod compare;
 mod distribution;
 mod drivers;
 mod export;
@@ -23,7 +25,9 @@ mod warnings;
 mod wheels;
 
 pub use accumulate::Moments;
+pub use attribution::{EXACT, attribute};
 pub use budget::{Budget, FAN_LINES, FanPoint};
+pub use compare::{Change, FigureChange, compare};
 pub use distribution::{Distribution, Histogram, QUANTILES};
 pub use drivers::{BASE, Driver, drivers};
 pub use export::{export_csv, export_parquet};

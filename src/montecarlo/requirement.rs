@@ -54,8 +54,19 @@ pub fn check_layout(requirements: &[Requirement], cases: &[LayoutCase]) -> Vec<C
 impl Budget {
     /// Checks one requirement; `cases` are those of the layout, for requirements about it.
     pub(super) fn check(&self, requirement: &Requirement, cases: &[LayoutCase]) -> Checked {
-        let upper = |p: f64| self.attitude.at(p).and_then(|estimate| estimate.upper);
         let value = match requirement.figure {
+            Figure::Torque => figure(cases, &requirement.scope).0,
+            Figure::Price => figure(cases, &requirement.scope).1,
+            other => self.value(other),
+        };
+        Checked::new(requirement, value)
+    }
+
+    /// A figure of the budget, SI; `None` if it does not exist, or is one of single cases of the layout.
+    #[must_use]
+    pub fn value(&self, figure: Figure) -> Option<f64> {
+        let upper = |p: f64| self.attitude.at(p).and_then(|estimate| estimate.upper);
+        match figure {
             Figure::PropellantNominal => Some(self.attitude.nominal),
             Figure::PropellantP95 => upper(0.95),
             Figure::PropellantP99 => upper(0.99),
@@ -65,11 +76,9 @@ impl Budget {
             Figure::ValveCycles => largest_p95(&self.cycles),
             Figure::Throughput => largest_p95(&self.throughput),
             Figure::UnloadDeltaVPerDay => Some(self.unload_delta_v.map_or(0.0, |push| push.per_day_m_per_s)),
-            Figure::Torque => figure(cases, &requirement.scope).0,
-            Figure::Price => figure(cases, &requirement.scope).1,
+            Figure::Torque | Figure::Price => None,
             Figure::GuaranteedPureTorque => self.layout.iter().map(|case| case.pure_torque.guaranteed_n_m).reduce(f64::min),
-        };
-        Checked::new(requirement, value)
+        }
     }
 }
 
